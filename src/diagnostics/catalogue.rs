@@ -1,0 +1,97 @@
+//! Every kind of finding the program can raise, with its code, its severity and one line on what it is.
+
+/// How grave a finding is.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Severity {
+    /// The model is wrong: nothing is computed from it.
+    Error,
+    /// The model is computed, but a reader should look here.
+    Warning,
+}
+
+impl Severity {
+    /// The word shown to people and machines.
+    pub fn word(self) -> &'static str {
+        match self {
+            Severity::Error => "error",
+            Severity::Warning => "warning",
+        }
+    }
+}
+
+macro_rules! catalogue {
+    ($($variant:ident $severity:ident $code:literal $summary:literal)*) => {
+        /// A kind of finding. Its written form is a short path in words, e.g. `unit/mismatch`, and is for ever.
+        #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+        pub enum Code {
+            $(#[doc = $summary] $variant,)*
+        }
+
+        impl Code {
+            /// Every code, in the order of the catalogue.
+            pub const ALL: &[Code] = &[$(Code::$variant,)*];
+
+            /// The written form.
+            pub fn name(self) -> &'static str {
+                match self { $(Code::$variant => $code,)* }
+            }
+
+            /// What it is, in one line.
+            pub fn summary(self) -> &'static str {
+                match self { $(Code::$variant => $summary,)* }
+            }
+
+            /// Error or warning.
+            pub fn severity(self) -> Severity {
+                match self { $(Code::$variant => Severity::$severity,)* }
+            }
+        }
+    };
+}
+
+catalogue! {
+    FileUnreadable Error "file/unreadable" "a file that cannot be read as text"
+    FileTooLarge Error "file/too-large" "a file larger than the program reads"
+    SyntaxUnexpected Error "syntax/unexpected" "text that the language has no place for here"
+    SyntaxNesting Error "syntax/nesting" "brackets nested deeper than the program follows"
+    LanguageVersion Error "language/version" "a language version this program does not know"
+    LanguageNotYet Error "language/not-yet" "a part of the language that this version does not compute yet"
+    NameUnknown Error "name/unknown" "a name that nothing declares"
+    NameRepeated Error "name/repeated" "a name declared twice"
+    NameReserved Error "name/reserved" "a word of the language used as a name"
+    NameCycle Error "name/cycle" "declarations that are defined by each other"
+    PartCycle Error "part/cycle" "files that use each other"
+    PartArgument Error "part/argument" "a part given a parameter it does not have, or not given one it needs"
+    ParameterRequired Error "parameter/required" "a parameter without a value"
+    CallUnknown Error "call/unknown" "a function that does not exist"
+    CallArgument Error "call/argument" "an argument that is missing, unknown, repeated or unnamed"
+    UnitUnknown Error "unit/unknown" "a unit that does not exist"
+    UnitMismatch Error "unit/mismatch" "a quantity of another dimension than the place asks for"
+    UnitAngle Error "unit/angle" "an angle, or a frequency in cycles or radians, taken for a plain number or the reverse"
+    ValueNotFinite Error "value/not-finite" "a value that is not a finite number"
+    ValueRange Error "value/range" "a value outside the range that makes sense at this place"
+    TypeMismatch Error "type/mismatch" "one kind of thing where another kind is needed"
+    TypeNonlinear Error "type/nonlinear" "an operation that would make a process non-Gaussian"
+    KernelNotOne Error "kernel/not-one" "a correlation function that is not 1 at lag 0"
+    KernelInvalid Error "kernel/invalid" "a kernel that no process can have"
+    KernelUnclear Error "kernel/unclear" "a kernel whose behaviour at lag 0 cannot be told"
+    KernelFluctuation Error "kernel/fluctuation" "a scale of fluctuation that no length gives"
+    KernelTwoLengths Warning "kernel/two-lengths" "a scale of fluctuation that two lengths give"
+    ProcessDescription Error "process/description" "a process described by nothing, or by two things at once"
+    ProcessMeanSquare Error "process/mean-square" "a raw autocorrelation that does not agree with the mean"
+    ProcessZeroMean Error "process/zero-mean" "a coefficient of variation of a process whose mean is zero"
+    ProcessNotDifferentiable Error "process/not-differentiable" "a process without a derivative where crossings are counted"
+    MarginNoProcess Error "margin/no-process" "a margin in which nothing varies"
+    LimitLine Error "limit/line" "a line that a limit state lacks or has twice"
+    LimitCondition Error "limit/condition" "a condition of failure that cannot be judged"
+    QuantityUnknown Error "quantity/unknown" "a quantity that does not exist or does not belong to the thing it is asked of"
+    ModelTooLarge Error "model/too-large" "a model larger than the program computes"
+    TableContent Error "table/content" "a data file whose content cannot be used"
+}
+
+impl Code {
+    /// The code of a written form.
+    pub fn find(name: &str) -> Option<Code> {
+        Self::ALL.iter().copied().find(|code| code.name() == name)
+    }
+}

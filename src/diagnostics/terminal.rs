@@ -1,0 +1,127 @@
+//! Diagnostics for people at a terminal, drawn by ariadne. No other module knows that crate.
+
+use super::{Diagnostic, Severity};
+use crate::source::{FileId, Files, Span, floor_boundary};
+use ariadne::{Color, Config, IndexType, Label, Report, ReportKind, Source};
+use std::collections::HashMap;
+use std::fmt::Display;
+use std::io::{self, Write};
+use std::ops::Range;
+
+type Place = (FileId, Range<usize>);
+
+/// Longer lines are named, not drawn: a drawing wider than any screen shows nothing.
+const LONGEST_LINE: usize = 500;
+
+/// More findings than this are counted, not drawn.
+const MOST_DRAWN: usize = 100;
+
+/// Writes the findings one after another, in the order given.
+///
+/// # Errors
+/// Whatever writing to `out` returns.
+pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], color: bool) -> io::Result<()> {
+    let mut cache = Cache {
+        files,
+        sources: HashMap::new(),
+    };
+    for diagnostic in diagnostics.iter().take(MOST_DRAWN) {
+        if fits(files, diagnostic) {
+            report(files, diagnostic, color).write(&mut cache, &mut *out)?;
+        } else {
+            plain(out, files, diagnostic)?;
+        }
+        writeln!(out)?;
+    }
+    if let Some(more) = diagnostics.len().checked_sub(MOST_DRAWN).filter(|more| *more > 0) {
+        writeln!(out, "... and {more} more; `check --json` lists them all")?;
+    }
+    Ok(())
+}
+
+/// Whether every place of the finding lies on lines short enough to draw.
+fn fits(files: &Files, diagnostic: &Diagnostic) -> bool {
+    let places = diagnostic.labels.iter().map(|label| label.place);
+    std::iter::once(diagnostic.place).chain(places).all(|span| {
+        let file = files.get(span.file);
+        let (first, last) = (files.place(span).line, files.place(span.after()).line);
+        [first, last].into_iter().all(|line| {
+            let range = file.lines().line_range(&file.text, line);
+            range.is_none_or(|range| range.len() <= LONGEST_LINE)
+        })
+    })
+}
+
+fn plain(out: &mut dyn Write, files: &Files, diagnostic: &Diagnostic) -> io::Result<()> {
+    let (severity, code) = (diagnostic.severity().word(), diagnostic.code.name());
+    writeln!(out, "[{code}] {severity}: {}", diagnostic.message)?;
+    let mut line = |span: Span, text: &str| {
+        let place = files.place(span);
+        let name = files.get(span.file).name();
+        writeln!(out, "    {name}:{}:{} {text}", place.line, place.column)
+    };
+    line(diagnostic.place, &diagnostic.here)?;
+    for label in &diagnostic.labels {
+        line(label.place, &label.text)?;
+    }
+    match &diagnostic.help {
+        Some(help) => writeln!(out, "    Help: {help}"),
+        None => Ok(()),
+    }
+}
+
+fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Report<'a, Place> {
+    let (word, tint) = match diagnostic.severity() {
+        Severity::Error => ("error", Color::Red),
+        Severity::Warning => ("warning", Color::Yellow),
+    };
+    let config = Config::default().with_index_type(IndexType::Byte).with_color(color);
+    let here = if diagnostic.here.is_empty() { "here" } else { &diagnostic.here };
+    let main = Label::new(place(files, diagnostic.place))
+        .with_color(tint)
+        .with_order(-1)
+        .with_message(here);
+    let mut builder = Report::build(ReportKind::Custom(word, tint), place(files, diagnostic.place))
+        .with_config(config)
+        .with_code(diagnostic.code.name())
+        .with_message(&diagnostic.message)
+        .with_label(main);
+    for label in &diagnostic.labels {
+        builder = builder.with_label(
+            Label::new(place(files, label.place))
+                .with_color(Color::Blue)
+                .with_message(&label.text),
+        );
+    }
+    if let Some(help) = &diagnostic.help {
+        builder = builder.with_help(help);
+    }
+    builder.finish()
+}
+
+/// The span with both ends on character boundaries inside the file: ariadne panics inside a character.
+fn place(files: &Files, span: Span) -> Place {
+    let text = &files.get(span.file).text;
+    let start = floor_boundary(text, span.start as usize);
+    let end = floor_boundary(text, span.end as usize).max(start);
+    (span.file, start..end)
+}
+
+struct Cache<'a> {
+    files: &'a Files,
+    sources: HashMap<FileId, Source<&'a str>>,
+}
+
+impl<'a> ariadne::Cache<FileId> for Cache<'a> {
+    type Storage = &'a str;
+
+    fn fetch(&mut self, id: &FileId) -> Result<&Source<&'a str>, impl std::fmt::Debug> {
+        let files = self.files;
+        let source = self.sources.entry(*id);
+        Ok::<_, io::Error>(source.or_insert_with(|| Source::from(files.get(*id).text.as_str())))
+    }
+
+    fn display<'b>(&self, id: &'b FileId) -> Option<impl Display + 'b> {
+        Some(self.files.get(*id).name())
+    }
+}

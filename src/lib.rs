@@ -1,0 +1,5 @@
+//! Outcross: a language and compiler for the reliability of structures and machines under random load.
+
+pub mod diagnostics;
+pub mod language;
+pub mod source;
