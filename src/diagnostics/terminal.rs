@@ -76,7 +76,11 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
         Severity::Warning => ("warning", Color::Yellow),
     };
     let config = Config::default().with_index_type(IndexType::Byte).with_color(color);
-    let here = if diagnostic.here.is_empty() { "here" } else { &diagnostic.here };
+    let here = if diagnostic.here.is_empty() {
+        "here"
+    } else {
+        &diagnostic.here
+    };
     let main = Label::new(place(files, diagnostic.place))
         .with_color(tint)
         .with_order(-1)
