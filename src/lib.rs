@@ -1,5 +1,6 @@
 //! Outcross: a language and compiler for the reliability of structures and machines under random load.
 
+pub mod covariance;
 pub mod diagnostics;
 pub mod language;
 pub mod source;

@@ -4,8 +4,10 @@
 //! ranges in a file.
 
 mod line_index;
+mod reader;
 
 pub use line_index::{LineColumn, LineIndex};
+pub use reader::{Disk, LARGEST_FILE, Reader, Unreadable};
 
 use std::path::{Path, PathBuf};
 

@@ -1,0 +1,3 @@
+//! The intermediate representation: sources, operators, linear forms, kernels and their moments.
+
+pub mod form;
