@@ -1,0 +1,135 @@
+//! Findings about dimensions: what is there, what the place asks for, and what would mend it.
+
+use super::Lowering;
+use crate::check::value::Scalar;
+use crate::diagnostics::{Code, Diagnostic};
+use crate::language::tree::Word;
+use crate::source::Span;
+use crate::units::{Dimension, Unit};
+use std::rc::Rc;
+
+impl Lowering<'_, '_, '_> {
+    /// A quantity of another dimension than the place asks for. `what` names what the quantity is for.
+    pub(super) fn mismatch(
+        &mut self,
+        place: Span,
+        found: &Scalar,
+        wanted: Dimension,
+        what: &str,
+        why: Option<(Span, &str)>,
+    ) {
+        let finding = if found.dimension.without_angle() == wanted.without_angle() {
+            angle(place, found.dimension, wanted, what)
+        } else {
+            let there = dimension_in_words(found.dimension, found.unit.as_ref());
+            let message = format!("{what} must be {}, not {there}", wanted.describe());
+            let mut finding = Diagnostic::new(Code::UnitMismatch, place, message).here(there);
+            finding.help = hint(found.dimension, wanted);
+            finding
+        };
+        let finding = match why {
+            Some((at, text)) => finding.label(at, text),
+            None => finding,
+        };
+        self.report(finding);
+    }
+
+    /// Two things that are added or compared and are not of one dimension.
+    pub(super) fn unlike(&mut self, first: (Span, Dimension), second: (Span, Dimension), verb: &str) {
+        let ((a_place, a), (b_place, b)) = (first, second);
+        let code = if a.without_angle() == b.without_angle() {
+            Code::UnitAngle
+        } else {
+            Code::UnitMismatch
+        };
+        let message = format!("{} cannot be {verb} {}", b.describe(), a.describe());
+        let mut finding = Diagnostic::new(code, b_place, message)
+            .here(format!("{}, in {}", b.describe(), b.si_name()))
+            .label(a_place, format!("{}, in {}", a.describe(), a.si_name()));
+        finding.help = if code == Code::UnitAngle {
+            Some(angle_help(b, a))
+        } else {
+            hint(b, a)
+        };
+        self.report(finding);
+    }
+
+    /// A value of another dimension than its declaration says.
+    pub(super) fn not_in_declared_unit(
+        &mut self,
+        name: &Word,
+        unit: &Unit,
+        place: Span,
+        found: Dimension,
+        found_unit: Option<&Rc<Unit>>,
+    ) {
+        let there = dimension_in_words(found, found_unit);
+        let declared = unit.dimension();
+        let code = if found.without_angle() == declared.without_angle() {
+            Code::UnitAngle
+        } else {
+            Code::UnitMismatch
+        };
+        let message = format!("`{}` is declared in {}, but its value is {there}", name.text, unit.text());
+        let mut finding = Diagnostic::new(code, place, message)
+            .here(there)
+            .label(name.span, format!("declared in {}: {}", unit.text(), declared.describe()));
+        finding.help = if code == Code::UnitAngle {
+            Some(angle_help(found, declared))
+        } else {
+            hint(found, declared)
+        };
+        self.report(finding);
+    }
+}
+
+/// An angle where none may be, or the reverse.
+fn angle(place: Span, found: Dimension, wanted: Dimension, what: &str) -> Diagnostic {
+    let message = format!("{what} must be {}, not {}", wanted.describe(), found.describe());
+    Diagnostic::new(Code::UnitAngle, place, message)
+        .here(found.describe())
+        .help(angle_help(found, wanted))
+}
+
+fn angle_help(found: Dimension, wanted: Dimension) -> String {
+    match (found, wanted) {
+        (Dimension::RATE, Dimension::ANGULAR_FREQUENCY) => {
+            "write `Hz` for cycles per second or `rad/s` for radians per second: `1/s` says neither, and the two differ by 2 pi"
+                .to_string()
+        }
+        (Dimension::ANGULAR_FREQUENCY, Dimension::RATE) => {
+            "a rate of events is per time, such as `/s` or `/year`: `Hz` and `rad/s` are for frequencies".to_string()
+        }
+        (Dimension::PLAIN, Dimension::ANGLE) => {
+            "multiply by `1 rad`, `1 deg` or `1 turn`, whichever the number counts".to_string()
+        }
+        (Dimension::ANGLE, Dimension::PLAIN) => {
+            "say how the angle is to be counted: `radians(...)` or `turns(...)`".to_string()
+        }
+        _ => "an angle counts as a dimension: `radians(...)` or `turns(...)` take it off, `1 rad` or `1 turn` put it on"
+            .to_string(),
+    }
+}
+
+/// What is likely meant where one dimension stands for another.
+fn hint(found: Dimension, wanted: Dimension) -> Option<String> {
+    if wanted.power_i32(2) == Some(found) {
+        return Some("this looks like a square, such as a variance: take its root with `sqrt(...)`".to_string());
+    }
+    if found.power_i32(2) == Some(wanted) {
+        return Some("this looks like a root, such as a standard deviation: square it with `^2`".to_string());
+    }
+    if found.is_plain() {
+        return Some(format!("write the unit behind the number, such as `{}`", wanted.si_name()));
+    }
+    let factor = wanted.over(found)?;
+    Some(format!("a factor in {} is missing, or a unit is wrong", factor.si_name()))
+}
+
+/// `a force (kN)`: a dimension in words, with the unit it was written in.
+fn dimension_in_words(dimension: Dimension, unit: Option<&Rc<Unit>>) -> String {
+    match unit {
+        Some(unit) if unit.text() != "1" => format!("{} ({})", dimension.describe(), unit.text()),
+        _ => dimension.describe(),
+    }
+}

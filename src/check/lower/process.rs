@@ -1,0 +1,462 @@
+//! Sources: `gaussian(...)`, by whichever description the engineer has.
+
+use super::arguments::Arguments;
+use super::{Lowering, Scope, unit_or_si};
+use crate::check::model::Kind;
+use crate::check::names::ItemId;
+use crate::check::value::{Covariance, Number, Scalar, Value};
+use crate::covariance::kernel::Kernel;
+use crate::covariance::source::{Smoothness, Source};
+use crate::diagnostics::{Code, Diagnostic};
+use crate::language::tree::{Call, Expression, ExpressionKind, Word};
+use crate::source::Span;
+use crate::units::{Dimension, Unit, show};
+use std::rc::Rc;
+
+/// A correlation function must be 1 at lag 0 to within this: weights such as `0.3` and `0.7` add up no better.
+const ONE: f64 = 1e-9;
+
+/// The agreement asked of a raw autocorrelation's constant part with the square of the mean.
+const MEAN_SQUARE: f64 = 1e-6;
+
+const ARGUMENTS: &[&str] = &[
+    "mean",
+    "standard_deviation",
+    "coefficient_of_variation",
+    "correlation",
+    "autocovariance",
+    "autocorrelation",
+    "spectrum",
+];
+
+/// What a source is called in messages, and what is known of it before its arguments are looked at.
+#[derive(Clone, Copy)]
+struct Subject<'a> {
+    name: &'a Word,
+    dimension: Option<Dimension>,
+    scope: Scope<'a>,
+}
+
+/// A process by its mean and its covariance function.
+struct Description {
+    mean: f64,
+    kernel: Kernel,
+    dimension: Dimension,
+    unit: Option<Rc<Unit>>,
+}
+
+impl Lowering<'_, '_, '_> {
+    /// The value of a process or margin: a fresh source, or an expression in others.
+    pub(super) fn process_or_margin(
+        &mut self,
+        item: ItemId,
+        kind: Kind,
+        name: &Word,
+        declared: Option<Option<Rc<Unit>>>,
+        expression: &Expression,
+    ) -> Value {
+        let scope = Scope::plain(self.names.item(item).instance);
+        let Some(call) = fresh_source(expression) else {
+            return self.value(expression, scope);
+        };
+        if kind == Kind::Margin {
+            return self.source_in_margin(expression.span, name);
+        }
+        let subject = Subject {
+            name,
+            dimension: declared.flatten().map(|unit| unit.dimension()),
+            scope,
+        };
+        let Some(description) = self.description(call, subject) else {
+            return Value::Fault;
+        };
+        self.sample_for_validity(&description.kernel, expression.span)
+            .and_then(|()| self.finish(item, name, description))
+            .unwrap_or(Value::Fault)
+    }
+
+    fn source_in_margin(&mut self, place: Span, name: &Word) -> Value {
+        let message = format!("the margin `{}` cannot make a process of its own", name.text);
+        self.report(
+            Diagnostic::new(Code::TypeMismatch, place, message)
+                .help("declare the process with `process NAME = gaussian(...)` and use NAME here"),
+        );
+        Value::Fault
+    }
+
+    fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
+        let source = Source::new(self.names.full_name(item), description.kernel, name.span);
+        if let Smoothness::Derivatives { unclear: true, why, .. } = source.smoothness() {
+            let message = format!("it cannot be told how smooth the process `{}` is", name.text);
+            let finding = Diagnostic::new(Code::KernelUnclear, name.span, message)
+                .here(why.clone())
+                .help("write the kernel so that its behaviour at lag 0 can be read off, without min, max or abs there");
+            self.report(finding);
+            return None;
+        }
+        let form = self.source(source, description.mean);
+        Some(self.form(form, description.dimension, description.unit))
+    }
+
+    fn description(&mut self, call: &Call, subject: Subject<'_>) -> Option<Description> {
+        let arguments = self.arguments(call, &[], ARGUMENTS)?;
+        let name = &subject.name.text;
+        if let Some(word) = arguments.word("spectrum") {
+            self.not_yet(word.span, "processes from spectra");
+            return None;
+        }
+        let given = |names: &[&str]| -> Vec<Span> {
+            names.iter().filter_map(|name| arguments.word(name)).map(|word| word.span).collect()
+        };
+        let ways = [
+            given(&["standard_deviation", "coefficient_of_variation", "correlation"]),
+            given(&["autocovariance"]),
+            given(&["autocorrelation"]),
+        ];
+        let used: Vec<&Span> = ways.iter().filter_map(|places| places.first()).collect();
+        match used.as_slice() {
+            [] => {
+                let message = format!("the process `{name}` has no description of how it varies");
+                self.report(Diagnostic::new(Code::ProcessDescription, call.brackets, message).help(
+                    "give `standard_deviation` (or `coefficient_of_variation`) with `correlation`, or \
+                     `autocovariance`, or `autocorrelation`",
+                ));
+                None
+            }
+            [_] if !ways[1].is_empty() => self.from_autocovariance(&arguments, subject),
+            [_] if !ways[2].is_empty() => self.from_autocorrelation(&arguments, subject),
+            [_] => self.from_correlation(call, &arguments, subject),
+            [first, second, ..] => {
+                let message = format!("the process `{name}` is described twice");
+                self.report(
+                    Diagnostic::new(Code::ProcessDescription, **second, message)
+                        .here("a second description")
+                        .label(**first, "a first one")
+                        .help("keep one of the two, and state the other as an `expect`"),
+                );
+                None
+            }
+        }
+    }
+
+    /// Standard deviation or coefficient of variation, and a correlation function.
+    fn from_correlation(&mut self, call: &Call, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
+        let (deviation, variation) = (arguments.get("standard_deviation"), arguments.get("coefficient_of_variation"));
+        if let (Some(_), Some(word)) = (deviation, arguments.word("coefficient_of_variation")) {
+            let message = format!("the process `{}` has its scatter given twice", subject.name.text);
+            self.report(
+                Diagnostic::new(Code::ProcessDescription, word.span, message)
+                    .help("keep `standard_deviation` or `coefficient_of_variation`, not both"),
+            );
+            return None;
+        }
+        if deviation.is_none() && variation.is_none() {
+            let message = format!("the process `{}` has a correlation but no scatter", subject.name.text);
+            self.report(
+                Diagnostic::new(Code::ProcessDescription, call.brackets, message)
+                    .help("add `standard_deviation: ...` or `coefficient_of_variation: ...`"),
+            );
+        }
+        let correlation = arguments.get("correlation");
+        if correlation.is_none() {
+            let message = format!("the process `{}` has no correlation function", subject.name.text);
+            self.report(
+                Diagnostic::new(Code::ProcessDescription, call.brackets, message)
+                    .help("add `correlation: ...`, such as `matern(smoothness: 5/2, length: 10 s)`"),
+            );
+        }
+        let mean = self.mean(arguments, subject);
+        let scatter = match (deviation, variation) {
+            (Some(expression), _) => self.deviation(expression, mean.as_ref(), subject),
+            (None, Some(expression)) => self.variation(expression, arguments, mean.as_ref(), subject),
+            (None, None) => None,
+        };
+        let kernel = correlation.and_then(|expression| {
+            let kernel = self.kernel(expression, subject.scope, Dimension::PLAIN, "a correlation function")?;
+            self.one_at_zero(&kernel, expression.span)?;
+            Some(kernel)
+        });
+        let (mean, deviation, kernel) = (mean?, scatter?, kernel?);
+        let mean_value = known(&mean)?;
+        let value = known(&deviation)?;
+        Some(Description {
+            mean: mean_value,
+            kernel: kernel.scaled(value * value),
+            dimension: deviation.dimension,
+            unit: mean.unit.clone().or(deviation.unit),
+        })
+    }
+
+    /// The mean; a bare 0 where none is given. `None` where it is at fault.
+    fn mean(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Scalar> {
+        let Some(expression) = arguments.get("mean") else {
+            let mut zero = Scalar::new(Number::Known(0.0), Dimension::PLAIN);
+            zero.bare_zero = true;
+            return Some(zero);
+        };
+        let what = format!("the mean of `{}`", subject.name.text);
+        match subject.dimension {
+            Some(dimension) => self.number(expression, subject.scope, dimension, &what, None),
+            None => {
+                let value = self.value(expression, subject.scope);
+                self.scalar(value, expression.span, &what)
+            }
+        }
+    }
+
+    fn deviation(&mut self, expression: &Expression, mean: Option<&Scalar>, subject: Subject<'_>) -> Option<Scalar> {
+        let what = format!("the standard deviation of `{}`", subject.name.text);
+        let wanted = subject.dimension.or(mean.filter(|mean| !mean.bare_zero).map(|mean| mean.dimension));
+        let deviation = match wanted {
+            Some(dimension) => self.number(expression, subject.scope, dimension, &what, None)?,
+            None => {
+                let value = self.value(expression, subject.scope);
+                self.scalar(value, expression.span, &what)?
+            }
+        };
+        self.positive(&deviation, expression.span, &what)?;
+        Some(deviation)
+    }
+
+    fn variation(
+        &mut self,
+        expression: &Expression,
+        arguments: &Arguments<'_>,
+        mean: Option<&Scalar>,
+        subject: Subject<'_>,
+    ) -> Option<Scalar> {
+        let what = format!("the coefficient of variation of `{}`", subject.name.text);
+        let variation = self.number(expression, subject.scope, Dimension::PLAIN, &what, None)?;
+        self.positive(&variation, expression.span, &what)?;
+        let mean = mean?;
+        let mean_value = known(mean)?;
+        if mean_value == 0.0 {
+            let message = format!("`{}` has a mean of 0, so a coefficient of variation says nothing", subject.name.text);
+            let mut finding = Diagnostic::new(Code::ProcessZeroMean, expression.span, message)
+                .here("this share of the mean is 0")
+                .help("give `standard_deviation` instead");
+            if let Some(place) = arguments.get("mean") {
+                finding = finding.label(place.span, "the mean");
+            }
+            self.report(finding);
+            return None;
+        }
+        let deviation = Number::Known(known(&variation)? * mean_value.abs());
+        Some(Scalar::new(deviation, mean.dimension).shown_in(mean.unit.clone()))
+    }
+
+    /// Refuses what is not greater than 0.
+    fn positive(&mut self, scalar: &Scalar, place: Span, what: &str) -> Option<()> {
+        match scalar.value {
+            Number::Known(value) if value > 0.0 => Some(()),
+            Number::Known(value) => {
+                let message = format!("{what} must be greater than 0");
+                let shown = show(value, &unit_or_si(scalar.unit.as_ref(), scalar.dimension), 6);
+                self.report(Diagnostic::new(Code::ValueRange, place, message).here(format!("this is {shown}")));
+                None
+            }
+            Number::Open(_) | Number::Unset => None,
+        }
+    }
+
+    /// A kernel of a dimension.
+    fn kernel(&mut self, expression: &Expression, scope: Scope<'_>, wanted: Dimension, what: &str) -> Option<Kernel> {
+        let covariance = self.covariance(expression, scope, what)?;
+        if covariance.dimension != wanted {
+            let found = Scalar::new(Number::Unset, covariance.dimension);
+            self.mismatch(expression.span, &found, wanted, what, None);
+            return None;
+        }
+        Some(covariance.kernel)
+    }
+
+    fn covariance(&mut self, expression: &Expression, scope: Scope<'_>, what: &str) -> Option<Covariance> {
+        match self.value(expression, scope.in_kernel()) {
+            Value::Kernel(covariance) => Some(covariance),
+            Value::Fault => None,
+            Value::Scalar(Scalar {
+                value: Number::Unset, ..
+            }) => None,
+            other => {
+                let help = format!("{what} is made of kernels, such as `exponential(length: 10 s)`");
+                self.wrong_kind(expression.span, other.kind(), "a kernel", &help);
+                None
+            }
+        }
+    }
+
+    fn one_at_zero(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
+        let at_zero = kernel.value(0.0)?;
+        if (at_zero - 1.0).abs() <= ONE {
+            return Some(());
+        }
+        let shown = crate::units::show_number(at_zero, 6);
+        self.report(
+            Diagnostic::new(
+                Code::KernelNotOne,
+                place,
+                format!("this correlation function is {shown} at lag 0, where it must be 1"),
+            )
+            .here(format!("{shown} at lag 0"))
+            .help("scale it so that its weights add up to 1, or give it as `autocovariance` with its unit"),
+        );
+        None
+    }
+
+    fn from_autocovariance(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
+        let mean = self.mean(arguments, subject);
+        let expression = arguments.get("autocovariance")?;
+        let covariance = self.covariance(expression, subject.scope, "an autocovariance")?;
+        let mean = mean?;
+        let dimension = self.root_dimension(&covariance, expression.span, &mean, subject)?;
+        self.positive_variance(&covariance.kernel, expression.span, "autocovariance")?;
+        Some(Description {
+            mean: known(&mean)?,
+            kernel: covariance.kernel,
+            dimension,
+            unit: mean.unit,
+        })
+    }
+
+    /// The process's dimension, whose square the kernel must have.
+    fn root_dimension(
+        &mut self,
+        covariance: &Covariance,
+        place: Span,
+        mean: &Scalar,
+        subject: Subject<'_>,
+    ) -> Option<Dimension> {
+        let wanted = subject.dimension.or((!mean.bare_zero).then_some(mean.dimension));
+        match (wanted, covariance.dimension.root(2)) {
+            (None, Some(root)) => Some(root),
+            (None, None) => {
+                self.dimension_too_large(place);
+                None
+            }
+            (Some(wanted), _) if wanted.power_i32(2) == Some(covariance.dimension) => Some(wanted),
+            (Some(wanted), _) => {
+                let square = wanted.power_i32(2)?;
+                let what = format!("a covariance of `{}`", subject.name.text);
+                let found = Scalar::new(Number::Unset, covariance.dimension);
+                self.mismatch(place, &found, square, &what, None);
+                None
+            }
+        }
+    }
+
+    fn positive_variance(&mut self, kernel: &Kernel, place: Span, what: &str) -> Option<()> {
+        let variance = kernel.value(0.0)?;
+        if variance > 0.0 && variance.is_finite() {
+            return Some(());
+        }
+        let message = format!("the variance, which is the {what} at lag 0, must be greater than 0");
+        let shown = crate::units::show_number(variance, 6);
+        self.report(Diagnostic::new(Code::ValueRange, place, message).here(format!("this is {shown} at lag 0")));
+        None
+    }
+
+    /// The raw second moment: the square of the mean is taken off, after it has been looked for.
+    fn from_autocorrelation(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
+        let mean = self.mean(arguments, subject);
+        let expression = arguments.get("autocorrelation")?;
+        let raw = self.covariance(expression, subject.scope, "a raw autocorrelation")?;
+        let mean = mean?;
+        let dimension = self.root_dimension(&raw, expression.span, &mean, subject)?;
+        let mean_value = known(&mean)?;
+        let square = mean_value * mean_value;
+        let unit = Unit::si(raw.dimension);
+        let at_zero = raw.kernel.value(0.0)?;
+        if at_zero <= square {
+            let (total, square) = (show(at_zero, &unit, 6), show(square, &unit, 6));
+            let message = format!("the mean square of `{}` must be larger than the square of its mean", subject.name.text);
+            self.report(
+                Diagnostic::new(Code::ProcessMeanSquare, expression.span, message)
+                    .here(format!("{total} at lag 0, against {square} from the mean"))
+                    .help("check the mean, or give the function as `autocovariance` if the mean has been taken off"),
+            );
+            return None;
+        }
+        let (constant, found_how) = match raw.kernel.constant_part() {
+            Some(constant) => (constant, "its constant part"),
+            None => (raw.kernel.at_long_lag(), "its value at a very long lag"),
+        };
+        if (constant - square).abs() > MEAN_SQUARE * at_zero {
+            let (constant, square) = (show(constant, &unit, 6), show(square, &unit, 6));
+            let message = format!(
+                "the autocorrelation of `{}` does not go down to the square of its mean",
+                subject.name.text
+            );
+            self.report(
+                Diagnostic::new(Code::ProcessMeanSquare, expression.span, message)
+                    .here(format!("{found_how} is {constant}, the square of the mean is {square}"))
+                    .help(
+                        "a raw autocorrelation E[X(t) X(t+tau)] holds the square of the mean: add it, or give the \
+                         function as `autocovariance`",
+                    ),
+            );
+            return None;
+        }
+        let kernel = raw.kernel.without_constant(constant);
+        self.positive_variance(&kernel, expression.span, "autocorrelation less the square of the mean")?;
+        Some(Description {
+            mean: mean_value,
+            kernel,
+            dimension,
+            unit: mean.unit,
+        })
+    }
+
+    /// What a handful of lags can already show: a kernel is never larger than at lag 0, and bends down there. Kernels of
+    /// the language pass by construction; this is for those written out or tabulated.
+    fn sample_for_validity(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
+        if kernel.valid_by_construction() {
+            return Some(());
+        }
+        let at_zero = kernel.value(0.0)?;
+        for lag in kernel.probing_lags() {
+            let Some(value) = kernel.value(lag) else { continue };
+            if value.abs() <= at_zero * (1.0 + 1e-9) {
+                continue;
+            }
+            let lag = crate::units::show_number(lag, 4);
+            let (message, here) = if value.is_finite() {
+                let ratio = crate::units::show_number(value / at_zero, 6);
+                (
+                    format!("no process has this kernel: at a lag of {lag} s it is larger than at lag 0"),
+                    format!("{ratio} times its value at lag 0"),
+                )
+            } else {
+                (
+                    format!("this kernel has no value at a lag of {lag} s"),
+                    "undefined or infinite there".to_string(),
+                )
+            };
+            self.report(
+                Diagnostic::new(Code::KernelInvalid, place, message)
+                    .here(here)
+                    .help("a correlation lies between -1 and 1 at every lag; check the signs and the brackets"),
+            );
+            return None;
+        }
+        Some(())
+    }
+}
+
+fn known(scalar: &Scalar) -> Option<f64> {
+    match scalar.value {
+        Number::Known(value) => Some(value),
+        Number::Open(_) | Number::Unset => None,
+    }
+}
+
+/// The call of `gaussian(...)` that an expression is, brackets aside.
+fn fresh_source(expression: &Expression) -> Option<&Call> {
+    match &expression.kind {
+        ExpressionKind::Bracket(inner) => fresh_source(inner),
+        ExpressionKind::Call(call) => match call.function.words.as_slice() {
+            [word] if &*word.text == "gaussian" => Some(call),
+            _ => None,
+        },
+        _ => None,
+    }
+}

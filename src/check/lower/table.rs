@@ -1,0 +1,242 @@
+//! Data files: CSV with a header of `name [unit]`, `#` comments, numbers below.
+
+use super::Lowering;
+use crate::check::names::{choice, near};
+use crate::check::parts::unreadable;
+use crate::diagnostics::{Code, Diagnostic};
+use crate::language::parser;
+use crate::language::tree::{Expression, ExpressionKind};
+use crate::source::{FileId, Span, beside};
+use crate::units::{self, Dimension, Unit};
+use std::rc::Rc;
+
+/// Rows of one file; more are refused.
+const MOST_ROWS: usize = 1_000_000;
+
+/// Findings in one file; further rows are not looked at.
+const MOST_FINDINGS: usize = 20;
+
+/// The content of a kernel's table, in SI units.
+pub(super) struct Table {
+    /// The lags in s, ascending from 0.
+    pub lags: Vec<f64>,
+    /// The correlation at each lag.
+    pub correlations: Vec<f64>,
+}
+
+/// A column that a table must have.
+struct Column {
+    name: &'static str,
+    dimension: Dimension,
+}
+
+const KERNEL_COLUMNS: [Column; 2] = [
+    Column {
+        name: "lag",
+        dimension: Dimension::TIME,
+    },
+    Column {
+        name: "correlation",
+        dimension: Dimension::PLAIN,
+    },
+];
+
+impl Lowering<'_, '_, '_> {
+    /// The table of a `tabulated("file.csv", ...)` kernel. Read once; its faults are reported once.
+    pub(super) fn kernel_table(&mut self, file: &Expression) -> Option<Rc<Table>> {
+        let ExpressionKind::String(text) = &file.kind else {
+            let help = "write the name in quotes: `tabulated(\"file.csv\", beyond: zero)`";
+            self.wrong_kind(file.span, "no text", "the name of a file", help);
+            return None;
+        };
+        let path = beside(&self.library.files().get(file.span.file).path, &text.value);
+        let identity = self.library.reader().identity(&path);
+        if let Some(known) = self.tables.get(&identity) {
+            return known.clone();
+        }
+        let table = match self.library.data(&path) {
+            Ok(id) => self.read_kernel_table(id, text.span),
+            Err(why) => {
+                self.report(unreadable(text.span, &path, &why));
+                None
+            }
+        };
+        let table = table.map(Rc::new);
+        self.tables.insert(identity, table.clone());
+        table
+    }
+
+    fn read_kernel_table(&mut self, file: FileId, named: Span) -> Option<Table> {
+        let [lags, correlations] = self.columns(file, named, &KERNEL_COLUMNS)?;
+        let rows: Vec<(f64, f64, Span)> = lags
+            .into_iter()
+            .zip(correlations)
+            .map(|((lag, place), (correlation, _))| (lag, correlation, place))
+            .collect();
+        let before = self.diagnostics.len();
+        match rows.first() {
+            Some((lag, correlation, place)) if *lag != 0.0 || (correlation - 1.0).abs() > 1e-9 => {
+                self.table_fault(*place, named, "the first row of a kernel's table must be lag 0 with correlation 1");
+            }
+            _ => {}
+        }
+        if rows.len() < 3 {
+            let end = Span::new(file, 0, 0);
+            self.table_fault(end, named, "a kernel's table needs at least three rows");
+        }
+        for pair in rows.windows(2) {
+            if let [(earlier, _, _), (later, _, place)] = pair {
+                if later <= earlier && self.diagnostics.len() < before + MOST_FINDINGS {
+                    self.table_fault(*place, named, "the lags must grow from row to row: this one does not");
+                }
+            }
+        }
+        for (_, correlation, place) in &rows {
+            if correlation.abs() > 1.0 + 1e-9 && self.diagnostics.len() < before + MOST_FINDINGS {
+                self.table_fault(*place, named, "a correlation lies between -1 and 1: this one does not");
+            }
+        }
+        (self.diagnostics.len() == before).then(|| Table {
+            lags: rows.iter().map(|row| row.0).collect(),
+            correlations: rows.iter().map(|row| row.1).collect(),
+        })
+    }
+
+    fn table_fault(&mut self, place: Span, named: Span, message: &str) {
+        self.report(Diagnostic::new(Code::TableContent, place, message).label(named, "the file is named here"));
+    }
+
+    /// The columns of a file in SI units, each number with its place.
+    fn columns<const N: usize>(
+        &mut self,
+        file: FileId,
+        named: Span,
+        wanted: &[Column; N],
+    ) -> Option<[Vec<(f64, Span)>; N]> {
+        let before = self.diagnostics.len();
+        let text = self.library.files().get(file).text.clone();
+        let mut reader = csv::ReaderBuilder::new()
+            .comment(Some(b'#'))
+            .trim(csv::Trim::All)
+            .from_reader(text.trim_start_matches('\u{feff}').as_bytes());
+        let offset = text.len() - text.trim_start_matches('\u{feff}').len();
+        let headers = match reader.headers() {
+            Ok(headers) => headers.clone(),
+            Err(error) => {
+                self.table_fault(Span::new(file, 0, 0), named, &format!("this is not a CSV file: {error}"));
+                return None;
+            }
+        };
+        let head = headers.position().map_or(0, |position| position.byte() as usize) + offset;
+        let head = line_from(&text, head).map_or(Span::new(file, 0, 0), |range| Span::new(file, range.0, range.1));
+        let found: Vec<Option<(usize, Rc<Unit>)>> =
+            wanted.iter().map(|column| self.column(&headers, head, named, column)).collect();
+        if self.diagnostics.len() > before {
+            return None;
+        }
+        let mut columns = [const { Vec::new() }; N];
+        for record in reader.records() {
+            if self.diagnostics.len() >= before + MOST_FINDINGS {
+                break;
+            }
+            let record = match record {
+                Ok(record) => record,
+                Err(error) => {
+                    let at = error.position().map_or(0, |position| position.byte() as usize) + offset;
+                    let place = line_from(&text, at).map_or(head, |range| Span::new(file, range.0, range.1));
+                    let message = format!("this row does not have the {} fields of the header", headers.len());
+                    self.table_fault(place, named, &message);
+                    continue;
+                }
+            };
+            let at = record.position().map_or(0, |position| position.byte() as usize) + offset;
+            let place = line_from(&text, at).map_or(head, |range| Span::new(file, range.0, range.1));
+            for (slot, (column, found)) in columns.iter_mut().zip(wanted.iter().zip(&found)) {
+                let Some((index, unit)) = found else { continue };
+                let field = record.get(*index).unwrap_or("");
+                match field.parse::<f64>().map(|value| unit.to_si(value)) {
+                    Ok(value) if value.is_finite() => slot.push((value, place)),
+                    _ => {
+                        let message = format!("`{field}` in the column `{}` is not a finite number", column.name);
+                        self.table_fault(place, named, &message);
+                    }
+                }
+            }
+            if columns.first().is_some_and(|column| column.len() > MOST_ROWS) {
+                self.table_fault(place, named, &format!("the file has more than {MOST_ROWS} rows"));
+                break;
+            }
+        }
+        (self.diagnostics.len() == before).then_some(columns)
+    }
+
+    /// Where a column stands, and its unit; its absence and a wrong unit are reported.
+    fn column(
+        &mut self,
+        headers: &csv::StringRecord,
+        head: Span,
+        named: Span,
+        wanted: &Column,
+    ) -> Option<(usize, Rc<Unit>)> {
+        let split = |header: &str| {
+            let (name, unit) = header.split_once('[').unwrap_or((header, ""));
+            (name.trim().to_string(), unit.trim().trim_end_matches(']').trim().to_string())
+        };
+        let names: Vec<(String, String)> = headers.iter().map(split).collect();
+        let Some(index) = names.iter().position(|(name, _)| name == wanted.name) else {
+            let message = format!("the file has no column `{}`", wanted.name);
+            let mut finding = Diagnostic::new(Code::TableContent, head, message).label(named, "the file is named here");
+            finding.help = match choice(&near(wanted.name, names.iter().map(|(name, _)| name.as_str()))) {
+                Some(near) => Some(format!("rename the column {near}")),
+                None => Some("the header is a row of `name [unit]`, such as `lag [s],correlation`".to_string()),
+            };
+            self.report(finding);
+            return None;
+        };
+        let text = &names.get(index)?.1;
+        let unit = if text.is_empty() {
+            Unit::one()
+        } else {
+            match parser::parse_unit(head.file, text).and_then(|unit| units::resolve(&unit).ok()) {
+                Some(unit) => unit,
+                None => {
+                    let message = format!("the unit `{text}` of the column `{}` cannot be read", wanted.name);
+                    self.table_fault(head, named, &message);
+                    return None;
+                }
+            }
+        };
+        if unit.dimension() != wanted.dimension {
+            let message = format!(
+                "the column `{}` must be {}, not {}",
+                wanted.name,
+                wanted.dimension.describe(),
+                unit.dimension().describe()
+            );
+            let help = format!("write its unit in the header: `{} [s]`", wanted.name);
+            let finding = Diagnostic::new(Code::UnitMismatch, head, message).label(named, "the file is named here");
+            self.report(if wanted.dimension == Dimension::TIME {
+                finding.help(help)
+            } else {
+                finding
+            });
+            return None;
+        }
+        Some((index, Rc::new(unit)))
+    }
+}
+
+/// The line a byte offset lies in, as offsets, comments and empty lines before it passed over.
+fn line_from(text: &str, offset: usize) -> Option<(usize, usize)> {
+    let mut start = crate::source::floor_boundary(text, offset);
+    loop {
+        let rest = text.get(start..)?;
+        let line = rest.split('\n').next()?;
+        let content = line.trim_end_matches('\r');
+        let skip = content.trim().is_empty() || content.trim_start().starts_with('#');
+        if !skip || line.len() == rest.len() {
+            return Some((start, start + content.len()));
+        }
+        start += line.len() + 1;
+    }
+}

@@ -1,0 +1,180 @@
+//! The checked model: what is left of the text once every name, unit and kind is known. All numbers are in coherent SI
+//! units; spans are kept beside them for findings.
+
+use crate::covariance::form::LinearForm;
+use crate::covariance::source::Source;
+use crate::reliability::crossings::FailureRegion;
+use crate::reliability::first_passage::Method;
+use crate::reliability::verdict::Demand;
+use crate::source::{FileId, Span};
+use crate::units::{Dimension, Unit};
+use std::rc::Rc;
+
+/// A model without faults.
+pub struct Model {
+    /// The file it was read from.
+    pub file: FileId,
+    /// `title`, where there is one.
+    pub title: Option<String>,
+    /// The parameters of the file and of its parts.
+    pub parameters: Vec<Parameter>,
+    /// Everything random, each independent of the others.
+    pub sources: Vec<Source>,
+    /// Processes and margins in the order of the text, parts after those who use them.
+    pub varying: Vec<Named>,
+    /// The limit states.
+    pub limit_states: Vec<LimitState>,
+    /// What the author expects.
+    pub expectations: Vec<Expectation>,
+}
+
+/// A parameter with the value it has in this run.
+pub struct Parameter {
+    /// Its full name.
+    pub name: String,
+    /// Its value.
+    pub value: f64,
+    /// The unit people see it in.
+    pub unit: Rc<Unit>,
+    /// Where the value comes from.
+    pub basis: Option<String>,
+}
+
+/// Whether something was declared as a process or as a margin.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[allow(missing_docs)]
+pub enum Kind {
+    Process,
+    Margin,
+}
+
+/// A process or a margin.
+pub struct Named {
+    /// Its full name.
+    pub name: String,
+    /// What it was declared as.
+    pub kind: Kind,
+    /// What it is made from.
+    pub form: Rc<LinearForm>,
+    /// Its dimension.
+    pub dimension: Dimension,
+    /// The unit people see it in.
+    pub unit: Rc<Unit>,
+    /// The comment above it.
+    pub documentation: Option<String>,
+    /// Where its numbers come from.
+    pub basis: Option<String>,
+    /// Where its name stands.
+    pub place: Span,
+}
+
+/// A limit state.
+pub struct LimitState {
+    /// Its full name.
+    pub name: String,
+    /// The condition as written.
+    pub failure_when: String,
+    /// The margin the condition speaks of.
+    pub margin: Rc<LinearForm>,
+    /// The margin's dimension.
+    pub dimension: Dimension,
+    /// The unit people see the margin in.
+    pub unit: Rc<Unit>,
+    /// Where the margin is failed.
+    pub region: FailureRegion,
+    /// The time over which failure counts.
+    pub reference_period: Time,
+    /// How crossings become survival.
+    pub method: Method,
+    /// What a code demands.
+    pub requirements: Vec<Requirement>,
+    /// The times at which survival is reported.
+    pub tabulate: Vec<Time>,
+    /// The comment above it.
+    pub documentation: Option<String>,
+    /// Where its name stands.
+    pub place: Span,
+}
+
+/// A time with the unit it was written in.
+#[derive(Clone)]
+pub struct Time {
+    /// In seconds.
+    pub seconds: f64,
+    /// The unit people see it in.
+    pub unit: Rc<Unit>,
+}
+
+/// What a limit state has that can be demanded.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[allow(missing_docs)]
+pub enum LimitQuantity {
+    Survival,
+    FailureProbability,
+    ReliabilityIndex,
+    UpcrossingRate,
+    MeanTimeToFailure,
+    InitialFailureProbability,
+}
+
+/// What a process or a margin has that can be expected.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[allow(missing_docs)]
+pub enum ProcessQuantity {
+    Mean,
+    StandardDeviation,
+    DerivativeStandardDeviation,
+    ZeroUpcrossingRate,
+    Bandwidth,
+    Irregularity,
+}
+
+/// A demand on a limit state.
+pub struct Requirement {
+    /// Without its `over` and `basis`, as written.
+    pub text: String,
+    /// Of what.
+    pub quantity: LimitQuantity,
+    /// How much.
+    pub demand: Demand,
+    /// The unit people see it in.
+    pub unit: Rc<Unit>,
+    /// Over which time.
+    pub over: Time,
+    /// Where the demand comes from.
+    pub basis: Option<String>,
+}
+
+/// A check by the author of the model.
+pub struct Expectation {
+    /// As written, without its basis.
+    pub text: String,
+    /// What is expected to be something.
+    pub subject: Subject,
+    /// What it should be.
+    pub expected: f64,
+    /// How near.
+    pub tolerance: Tolerance,
+    /// The unit people see it in.
+    pub unit: Rc<Unit>,
+    /// Where the expected value comes from.
+    pub basis: Option<String>,
+}
+
+/// What an expectation is about.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Subject {
+    /// A quantity of a process or margin, as an index into [`Model::varying`].
+    Varying(usize, ProcessQuantity),
+    /// A quantity of a limit state, as an index into [`Model::limit_states`], over a time in seconds.
+    LimitState(usize, LimitQuantity, f64),
+}
+
+/// How near a value must be.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Tolerance {
+    /// A share of the expected value.
+    Relative(f64),
+    /// A distance in coherent SI units.
+    Absolute(f64),
+}

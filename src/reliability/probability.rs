@@ -1,0 +1,95 @@
+//! A probability and its complement, each with full relative precision.
+
+use crate::numerics::normal;
+use std::f64::consts::LN_2;
+
+/// A probability of failure, kept as the logarithms of itself and of survival.
+///
+/// Neither is computed from the other where that would cancel: the smaller of the two is always the one that was
+/// computed first.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Probability {
+    ln_failure: f64,
+    ln_survival: f64,
+}
+
+impl Probability {
+    /// From both logarithms.
+    pub fn from_logarithms(ln_failure: f64, ln_survival: f64) -> Self {
+        Self {
+            ln_failure: ln_failure.min(0.0),
+            ln_survival: ln_survival.min(0.0),
+        }
+    }
+
+    /// The probability of failure; 0 below the smallest double.
+    pub fn failure(self) -> f64 {
+        self.ln_failure.exp()
+    }
+
+    /// The probability of survival; 0 below the smallest double.
+    pub fn survival(self) -> f64 {
+        self.ln_survival.exp()
+    }
+
+    /// The logarithm of the probability of failure.
+    pub fn ln_failure(self) -> f64 {
+        self.ln_failure
+    }
+
+    /// The logarithm of the probability of survival.
+    pub fn ln_survival(self) -> f64 {
+        self.ln_survival
+    }
+
+    /// The reliability index, `-Phi^-1(Pf)` (Hasofer and Lind 1974; EN 1990:2002, Annex C, eq. C.1), from the smaller
+    /// of the two probabilities. Finite far beyond the range in which the probability itself is a double.
+    pub fn reliability_index(self) -> f64 {
+        if self.ln_failure <= -LN_2 {
+            -normal::quantile_of_ln(self.ln_failure)
+        } else {
+            normal::quantile_of_ln(self.ln_survival)
+        }
+    }
+}
+
+/// `ln(e^a + e^b)` without leaving the range of doubles.
+pub fn ln_sum(a: f64, b: f64) -> f64 {
+    let (small, large) = if a < b { (a, b) } else { (b, a) };
+    if large == f64::NEG_INFINITY || small == f64::NEG_INFINITY {
+        return large;
+    }
+    large + (small - large).exp().ln_1p()
+}
+
+/// `ln(1 - e^a)` for `a <= 0` (Mächler 2012, "Accurately computing log(1 - exp(-|a|))").
+pub fn ln_complement(a: f64) -> f64 {
+    if a > -LN_2 { (-a.exp_m1()).ln() } else { (-a.exp()).ln_1p() }
+}
+
+/// `ln(1 - e^(-x))` for `x = e^ln_x`, however small `x` is.
+pub fn ln_chance_of_event(ln_x: f64) -> f64 {
+    if ln_x < -37.0 {
+        // 1 - e^-x = x (1 - x/2 + ...): the correction is below half a unit in the last place.
+        return ln_x;
+    }
+    ln_complement(-ln_x.exp())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn sums_and_complements_keep_their_digits() {
+        assert!((ln_sum(-1000.0, -1000.0) - (-1000.0 + LN_2)).abs() < 1e-12);
+        assert_eq!(ln_sum(f64::NEG_INFINITY, -3.0), -3.0);
+        assert_eq!(ln_sum(f64::NEG_INFINITY, f64::NEG_INFINITY), f64::NEG_INFINITY);
+        assert!((ln_complement(-1e-20) - 1e-20_f64.ln()).abs() < 1e-13);
+        assert!((ln_complement(-50.0) + (-50.0f64).exp()).abs() < 1e-36);
+        let x = 1e-16_f64;
+        assert!((ln_chance_of_event(x.ln()) - x.ln()).abs() < 1e-15);
+        assert!((ln_chance_of_event(1e-3_f64.ln()) - (-(-1e-3f64).exp_m1()).ln()).abs() < 1e-14);
+        assert_eq!(ln_chance_of_event(f64::INFINITY), 0.0);
+    }
+}
