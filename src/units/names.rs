@@ -65,7 +65,11 @@ static NAMED: [Named; 45] = [
     named(Dimension::MOMENT, "a moment (force*length)"),
     named(Dimension::of(2, 1, -2, 0, -1), "a rotational stiffness (moment/angle)"),
     named(Dimension::of(3, 1, -2, 0, 0), "a bending stiffness (force*length^2)"),
-    named(Dimension::of(-2, 1, -2, 0, 0), "a specific weight (force/volume)"),
+    Named {
+        dimension: Dimension::of(-2, 1, -2, 0, 0),
+        words: "a specific weight (force/volume)",
+        leading: Some("N"),
+    },
     named(Dimension::of(1, 1, -1, 0, 0), "an impulse (force*time)"),
     named(Dimension::of(1, 1, -3, 0, 0), "a force rate (force/time)"),
     named(Dimension::of(-1, 1, -3, 0, 0), "a stress rate (stress/time)"),
@@ -105,7 +109,7 @@ const fn leading(symbol: &'static str, word: &'static str, dimension: Dimension)
     }
 }
 
-/// Earlier ones win where two spellings have the same number of factors. The plain number stands for none: the base
+/// Earlier ones win where two spellings are as easy to read. The plain number stands for none: the base
 /// units alone.
 static LEADING: [Leading; 12] = [
     leading("N", "force", Dimension::FORCE),
@@ -153,7 +157,7 @@ impl Dimension {
             .collect()
     }
 
-    /// The spelling with the fewest factors, a leading unit before base units.
+    /// The spelling with the fewest factors, and of these the one with the smallest powers.
     fn spelling(self) -> Vec<Spelt> {
         let customary = NAMED
             .iter()
@@ -162,10 +166,9 @@ impl Dimension {
         let eligible = LEADING
             .iter()
             .filter(|leading| customary.is_none_or(|symbol| symbol == leading.symbol));
-        let one = Exponent::from_integer(1);
-        eligible
-            .filter_map(|leading| self.led_by(leading))
-            .min_by_key(|factors| (factors.len(), matches!(factors[..], [(_, _, power)] if power != one)))
+        let spellings = eligible.filter_map(|leading| self.led_by(leading));
+        spellings
+            .min_by(|a, b| effort(a).total_cmp(&effort(b)))
             .unwrap_or_else(|| self.in_base_units())
     }
 
@@ -207,4 +210,14 @@ impl Dimension {
             .filter(|(_, _, power)| *power.numer() != 0)
             .collect()
     }
+}
+
+/// How hard a spelling is to read: a factor more outweighs any powers, and a reciprocal alone (`1/ohm`) comes after a
+/// unit of its own (`S`).
+fn effort(factors: &[Spelt]) -> f64 {
+    const FACTOR: f64 = 1e6;
+    let size = |power: &Exponent| f64::from(power.numer().unsigned_abs()) / f64::from(*power.denom());
+    let powers: f64 = factors.iter().map(|(_, _, power)| size(power)).sum();
+    let reciprocal = matches!(factors, [(_, _, power)] if *power.numer() < 0);
+    FACTOR * factors.len() as f64 + powers + f64::from(u8::from(reciprocal))
 }

@@ -13,8 +13,8 @@ const TENS: [f64; 23] = [
 
 /// The size of a unit in coherent SI units: `numerator / denominator * 10^ten * π^pi`.
 ///
-/// Numerator and denominator are whole numbers, exact up to 2^53, so that a conversion rounds once: 36 mm is the
-/// double nearest to 0.036 m. Each factor of a product beyond that costs at most one rounding.
+/// Numerator and denominator are whole numbers, exact up to 2^53, so that a conversion rounds once: 36 mm is the double
+/// nearest to 0.036 m. A product beyond that, and π, cost a rounding more each.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Scale {
     numerator: f64,
@@ -100,46 +100,63 @@ impl Scale {
         }
     }
 
-    /// `value * numerator / denominator * 10^ten`, rounded once where the powers of ten fit beside the whole numbers.
+    /// `value * numerator / denominator * 10^ten`, carried at twice the precision and rounded at the end.
     fn times_fraction(self, value: f64) -> f64 {
-        let (mut numerator, mut denominator, mut ten) = (self.numerator, self.denominator, self.ten);
-        if let Some(&power) = TENS.get(ten.unsigned_abs() as usize) {
-            let side = if ten < 0 { &mut denominator } else { &mut numerator };
-            let product = *side * power;
-            if side.mul_add(power, -product) == 0.0 {
-                *side = product;
-                ten = 0;
-            }
-        }
-        times_ten(times_quotient(value, numerator, denominator), ten)
-    }
-}
-
-/// `value * numerator / denominator`, with the rounding errors of both operations fed back. The parts are at least 1.
-fn times_quotient(value: f64, numerator: f64, denominator: f64) -> f64 {
-    let product = value * numerator;
-    if !product.is_finite() {
-        return value / denominator * numerator;
-    }
-    let product_error = value.mul_add(numerator, -product);
-    let quotient = product / denominator;
-    let remainder = quotient.mul_add(-denominator, product) + product_error;
-    quotient + remainder / denominator
-}
-
-/// `value * 10^ten` by exact powers of ten, one rounding for every 22.
-fn times_ten(mut value: f64, ten: i32) -> f64 {
-    let mut left = ten.unsigned_abs() as usize;
-    while left > 0 && value != 0.0 && value.is_finite() {
-        let step = left.min(TENS.len() - 1);
-        value = if ten < 0 {
-            value / TENS[step]
+        /// Below it a product with a numerator cannot overflow.
+        const SMALL: f64 = 1e100;
+        let value = Pair { high: value, low: 0.0 };
+        let mut result = if value.high.abs() < SMALL {
+            value.times(self.numerator).over(self.denominator)
         } else {
-            value * TENS[step]
+            value.over(self.denominator).times(self.numerator)
         };
-        left -= step;
+        let mut left = self.ten.unsigned_abs() as usize;
+        while left > 0 && result.high != 0.0 && result.high.is_finite() {
+            let step = left.min(TENS.len() - 1);
+            result = if self.ten < 0 {
+                result.over(TENS[step])
+            } else {
+                result.times(TENS[step])
+            };
+            left -= step;
+        }
+        result.rounded()
     }
-    value
+}
+
+/// An unevaluated sum of two doubles, the low one an order of 2^53 smaller (T. J. Dekker, A floating-point technique for
+/// extending the available precision, Numerische Mathematik 18, 1971, with fused operations).
+#[derive(Clone, Copy)]
+struct Pair {
+    high: f64,
+    low: f64,
+}
+
+impl Pair {
+    fn times(self, factor: f64) -> Self {
+        let high = self.high * factor;
+        Self {
+            high,
+            low: self.high.mul_add(factor, -high) + self.low * factor,
+        }
+    }
+
+    fn over(self, divisor: f64) -> Self {
+        let high = self.high / divisor;
+        let remainder = high.mul_add(-divisor, self.high) + self.low;
+        Self {
+            high,
+            low: remainder / divisor,
+        }
+    }
+
+    fn rounded(self) -> f64 {
+        if self.high.is_finite() {
+            self.high + self.low
+        } else {
+            self.high
+        }
+    }
 }
 
 /// `value * π^power`.

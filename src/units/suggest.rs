@@ -1,5 +1,6 @@
 //! What may have been meant by a symbol that is not in the table.
 
+use super::dimension::Dimension;
 use super::table;
 
 /// How many suggestions are worth reading.
@@ -83,7 +84,7 @@ pub(super) fn note(symbol: &str) -> Option<&'static str> {
 
 /// Units that may have been meant, the likeliest first, at most three.
 pub(super) fn suggestions(symbol: &str) -> Vec<String> {
-    let stages: [fn(&str) -> Vec<String>; 5] = [everyday, other_case, by_name, split, near];
+    let stages: [fn(&str) -> Vec<String>; 7] = [everyday, moment, power, other_case, by_name, product, near];
     let mut found = stages
         .iter()
         .map(|stage| stage(symbol))
@@ -138,26 +139,48 @@ fn by_name(symbol: &str) -> Vec<String> {
         .unwrap_or_default()
 }
 
-/// Two symbols written as one (`kNm`), or a power without its sign (`mm2`, `m³`).
-fn split(symbol: &str) -> Vec<String> {
+/// A force with a length or a time, written as one word: `Nm`, `kNm`, `ftlbf`, `kNs`.
+fn moment(symbol: &str) -> Vec<String> {
+    let is = |part: &str, dimensions: &[Dimension]| table::find(part).is_some_and(|(own, _)| dimensions.contains(&own));
+    let (force, other) = ([Dimension::FORCE], [Dimension::LENGTH, Dimension::TIME]);
+    let products = cuts(symbol).into_iter();
+    let mut products = products.filter(|(a, b)| is(a, &force) && is(b, &other) || is(a, &other) && is(b, &force));
+    products
+        .next()
+        .map(|(first, second)| format!("{first}*{second}"))
+        .into_iter()
+        .collect()
+}
+
+/// Any two symbols written as one.
+fn product(symbol: &str) -> Vec<String> {
+    cuts(symbol)
+        .first()
+        .map(|(first, second)| format!("{first}*{second}"))
+        .into_iter()
+        .collect()
+}
+
+/// The ways of reading a word as two symbols, those with the fewest rare symbols first.
+fn cuts(symbol: &str) -> Vec<(&str, &str)> {
+    let cuts = symbol.char_indices().skip(1).map(|(at, _)| symbol.split_at(at));
+    let mut known: Vec<_> = cuts
+        .filter(|(a, b)| table::find(a).is_some() && table::find(b).is_some())
+        .collect();
+    known.sort_by_key(|(a, b)| usize::from(is_rare(a)) + usize::from(is_rare(b)));
+    known
+}
+
+/// A power without its sign: `mm2`, `m³`.
+fn power(symbol: &str) -> Vec<String> {
     let powers = [("2", "2"), ("3", "3"), ("4", "4"), ("²", "2"), ("³", "3"), ("⁴", "4")];
     let power = powers
         .iter()
         .find_map(|(end, power)| Some((symbol.strip_suffix(end)?, power)));
-    if let Some((base, power)) = power {
-        let known = table::find(base).map(|_| format!("{base}^{power}"));
-        return known.into_iter().collect();
-    }
-    let cuts = symbol.char_indices().skip(1).map(|(at, _)| symbol.split_at(at));
-    let mut products: Vec<(&str, &str)> = cuts
-        .filter(|(first, second)| table::find(first).is_some() && table::find(second).is_some())
-        .collect();
-    // `Nmm` is N*mm and `kNm` is kN*m: of several cuts, the one whose parts have the fewest rare prefixes.
-    products.sort_by_key(|(first, second)| usize::from(is_rare(first)) + usize::from(is_rare(second)));
-    products
+    let known = power.filter(|(base, _)| table::find(base).is_some());
+    known
+        .map(|(base, power)| format!("{base}^{power}"))
         .into_iter()
-        .map(|(first, second)| format!("{first}*{second}"))
-        .take(1)
         .collect()
 }
 
