@@ -4,3 +4,4 @@ pub mod covariance;
 pub mod diagnostics;
 pub mod language;
 pub mod source;
+pub mod units;

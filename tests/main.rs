@@ -1,1 +1,3 @@
+//! Checks of the program from outside, one binary for all of them.
 
+mod published;
