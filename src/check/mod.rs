@@ -62,3 +62,8 @@ pub fn check(
     }
     (model, diagnostics)
 }
+
+/// The names that look like one, in words: `` `a` or `b` ``.
+pub fn names_near<'a>(name: &str, known: impl Iterator<Item = &'a str>) -> Option<String> {
+    names::choice(&names::near(name, known))
+}

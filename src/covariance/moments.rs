@@ -1,0 +1,377 @@
+//! Moments of linear forms: what the theory of crossings needs to know of a process or a margin.
+//!
+//! A form is the sum of its parts over each source, which are independent. The part over one source has the one-sided
+//! density |A(omega)|² G(omega), A being the sum of a_i (i omega)^n_i exp(-i omega d_i) over its terms, and the
+//! autocovariance
+//!
+//! ```text
+//! C(tau) = sum over i, j of a_i a_j (-1)^n_i K^(n_i + n_j)(tau + d_i - d_j)
+//! ```
+//!
+//! (Cramér and Leadbetter 1967, Stationary and Related Stochastic Processes, sec. 7.6 and 9.3). Even moments are
+//! derivatives of C at lag 0; lambda_1 has no such form and is integrated where it is not known.
+
+use super::first_moment;
+use super::form::{Exact, LinearForm, Operator, SourceId, Term};
+use super::kernel::{self, Kernel, Smoothness, SpectralMoments};
+use super::source::Source;
+use std::cell::{OnceCell, RefCell};
+use std::collections::HashMap;
+use std::rc::Rc;
+
+/// The derivatives of kernels that are ever asked for: two terms, each differentiated four times, and the fourth of
+/// their covariance.
+const MOST_DERIVATIVES: usize = 12;
+
+/// A spectral moment of a form.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Moment {
+    /// Known, within an absolute error.
+    Finite {
+        /// In the square of the form's unit times (rad/s)^n.
+        value: f64,
+        /// In the same unit.
+        error: f64,
+    },
+    /// Infinite: the spectrum falls too slowly.
+    Infinite,
+    /// Finite, but not to be had to six digits.
+    Unreached,
+}
+
+impl Moment {
+    const ZERO: Self = Self::Finite { value: 0.0, error: 0.0 };
+
+    /// The number, infinity included; `None` where it was not reached.
+    pub fn value(&self) -> Option<f64> {
+        match self {
+            Self::Finite { value, .. } => Some(*value),
+            Self::Infinite => Some(f64::INFINITY),
+            Self::Unreached => None,
+        }
+    }
+
+    fn finite(&self) -> Option<f64> {
+        self.value().filter(|value| value.is_finite())
+    }
+
+    /// The sum; an infinite part makes it infinite whatever the others are.
+    pub(super) fn plus(self, other: Self) -> Self {
+        match (self, other) {
+            (Self::Infinite, _) | (_, Self::Infinite) => Self::Infinite,
+            (Self::Unreached, _) | (_, Self::Unreached) => Self::Unreached,
+            (Self::Finite { value: a, error: e }, Self::Finite { value: b, error: f }) => Self::Finite {
+                value: a + b,
+                error: e + f,
+            },
+        }
+    }
+
+    pub(super) fn times(self, factor: f64) -> Self {
+        match self {
+            Self::Finite { value, error } => Self::Finite {
+                value: value * factor,
+                error: error * factor.abs(),
+            },
+            other => other,
+        }
+    }
+}
+
+impl From<&kernel::Moment> for Moment {
+    fn from(moment: &kernel::Moment) -> Self {
+        match moment {
+            kernel::Moment::Finite { value, error } => Self::Finite {
+                value: *value,
+                error: *error,
+            },
+            kernel::Moment::Infinite => Self::Infinite,
+            kernel::Moment::Unreached { .. } | kernel::Moment::Unknown(_) => Self::Unreached,
+        }
+    }
+}
+
+/// The moments of a form.
+#[derive(Clone, Debug, PartialEq)]
+pub struct FormMoments {
+    /// lambda_0, lambda_1, lambda_2, lambda_4 of the one-sided density over omega in rad/s.
+    pub lambda: [Moment; 4],
+}
+
+impl FormMoments {
+    /// `sqrt(lambda_0)`, in the form's unit.
+    pub fn standard_deviation(&self) -> f64 {
+        self.lambda[0].value().map_or(f64::NAN, |variance| variance.max(0.0).sqrt())
+    }
+
+    /// `sqrt(lambda_2)`, in the form's unit per second; infinite where the form has no derivative, `None` where it could
+    /// not be computed.
+    pub fn derivative_standard_deviation(&self) -> Option<f64> {
+        self.lambda[2].value().map(|variance| variance.max(0.0).sqrt())
+    }
+
+    /// `sqrt(1 - lambda_1²/(lambda_0 lambda_2))` (Vanmarcke 1972, "Properties of spectral moments with applications to
+    /// random vibration", J. Eng. Mech. Div. 98): 0 for a single frequency, near 1 for a broad band. `None` where a
+    /// moment is infinite or not known.
+    pub fn bandwidth(&self) -> Option<f64> {
+        let [zeroth, first, second, _] = self.lambda.map(|moment| moment.finite());
+        let ratio = first?.powi(2) / (zeroth? * second?);
+        ratio.is_finite().then(|| (1.0 - ratio).max(0.0).sqrt())
+    }
+
+    /// `lambda_2 / sqrt(lambda_0 lambda_4)`, the rate of upcrossings of the mean over the rate of maxima (Cartwright and
+    /// Longuet-Higgins 1956). `None` where a moment is infinite or not known.
+    pub fn irregularity(&self) -> Option<f64> {
+        let [zeroth, _, second, fourth] = self.lambda.map(|moment| moment.finite());
+        let ratio = second? / (zeroth?.sqrt() * fourth?.sqrt());
+        ratio.is_finite().then_some(ratio)
+    }
+}
+
+/// The sources of a model with what has been found out about each: every kernel is asked once.
+pub struct MomentTable<'s> {
+    sources: &'s [Source],
+    of_sources: Vec<OnceCell<SpectralMoments>>,
+    at_zero: Vec<OnceCell<Vec<Moment>>>,
+    at_lags: RefCell<HashMap<(SourceId, u64), Rc<Vec<Moment>>>>,
+}
+
+impl<'s> MomentTable<'s> {
+    /// Nothing found out yet.
+    pub fn new(sources: &'s [Source]) -> Self {
+        Self {
+            sources,
+            of_sources: vec![OnceCell::new(); sources.len()],
+            at_zero: vec![OnceCell::new(); sources.len()],
+            at_lags: RefCell::new(HashMap::new()),
+        }
+    }
+
+    /// The moments of a form over these sources.
+    pub fn moments(&self, form: &LinearForm) -> FormMoments {
+        let mut sums = [Sum::default(); 4];
+        for (source, terms) in form.by_source() {
+            for (sum, part) in sums.iter_mut().zip(self.part(source, terms)) {
+                sum.add(part);
+            }
+        }
+        FormMoments {
+            lambda: sums.map(Sum::moment),
+        }
+    }
+
+    fn kernel(&self, source: SourceId) -> &'s Kernel {
+        &self.sources[source.0 as usize].kernel
+    }
+
+    /// The moments of the terms over one source.
+    fn part(&self, source: SourceId, terms: &[Term]) -> [Moment; 4] {
+        if let [term] = terms
+            && term.operator.derivatives == 0
+        {
+            let moments = self.of_sources[source.0 as usize].get_or_init(|| self.kernel(source).moments());
+            let square = term.coefficient() * term.coefficient();
+            return moments.lambda.each_ref().map(|moment| Moment::from(moment).times(square));
+        }
+        [
+            self.even(source, terms, 0),
+            self.first(source, terms),
+            self.even(source, terms, 2),
+            self.even(source, terms, 4),
+        ]
+    }
+
+    /// lambda_n for an even n: (-1)^(n/2) times the n-th derivative of the covariance at lag 0.
+    fn even(&self, source: SourceId, terms: &[Term], n: usize) -> Moment {
+        let sign = if n % 4 == 2 { -1.0 } else { 1.0 };
+        let mut sum = Sum::default();
+        for (index, one) in terms.iter().enumerate() {
+            for (other_index, other) in terms.iter().enumerate().skip(index) {
+                // The pair (j, i) gives what the pair (i, j) gives.
+                let both = if other_index == index { 1.0 } else { 2.0 };
+                let parity = if one.operator.derivatives % 2 == 1 { -1.0 } else { 1.0 };
+                let weight = sign * both * parity * one.coefficient() * other.coefficient();
+                let order = (one.operator.derivatives + other.operator.derivatives) as usize + n;
+                let lag = one.operator.delay - other.operator.delay;
+                sum.add(self.derivative(source, order, lag).times(weight));
+            }
+        }
+        match sum.cancelled() {
+            true if n == 0 => self.variance_by_differences(source, terms).unwrap_or_else(|| sum.moment()),
+            _ => sum.moment(),
+        }
+    }
+
+    /// The variance of terms that nearly cancel, such as `X(t) - X(t - d)` for a small d, from what the kernel loses
+    /// over each lag: sum a_i a_j K(d_ij) = (sum a)² K(0) - 2 sum over i < j of a_i a_j (K(0) - K(d_ij)). `None` where a
+    /// term is differentiated.
+    fn variance_by_differences(&self, source: SourceId, terms: &[Term]) -> Option<Moment> {
+        let kernel = self.kernel(source);
+        if terms.iter().any(|term| term.operator.derivatives > 0) {
+            return None;
+        }
+        let total = terms.iter().fold(Exact::default(), |sum, term| sum.plus(Exact::new(term.coefficient()))).value();
+        let mut sum = Sum::default();
+        sum.add(Moment::from(&kernel::Moment::Finite { value: total * total * kernel.value(0.0).ok()?, error: 0.0 }));
+        for (index, one) in terms.iter().enumerate() {
+            for other in &terms[index + 1..] {
+                let lost = kernel.drop(one.operator.delay - other.operator.delay).ok()?;
+                let weight = -2.0 * one.coefficient() * other.coefficient();
+                let value = weight * lost;
+                sum.add(Moment::Finite {
+                    value,
+                    error: value.abs() * CLOSED_FORM,
+                });
+            }
+        }
+        Some(sum.moment())
+    }
+
+    /// The derivative of an order of the kernel at a lag of either sign; infinite where it does not exist.
+    fn derivative(&self, source: SourceId, order: usize, lag: f64) -> Moment {
+        let size = lag.abs();
+        let found = if size == 0.0 {
+            let known = self.at_zero[source.0 as usize].get_or_init(|| derivatives_at_zero(&self.sources[source.0 as usize]));
+            known.get(order).copied()
+        } else {
+            let key = (source, size.to_bits());
+            let known = self.at_lags.borrow().get(&key).cloned();
+            let known = known.unwrap_or_else(|| {
+                let computed = Rc::new(derivatives_at(self.kernel(source), size));
+                self.at_lags.borrow_mut().insert(key, Rc::clone(&computed));
+                computed
+            });
+            known.get(order).copied()
+        };
+        // The kernel is even: its odd derivatives change sign with the lag.
+        let sign = if lag < 0.0 && order % 2 == 1 { -1.0 } else { 1.0 };
+        found.unwrap_or(Moment::Infinite).times(sign)
+    }
+
+    /// lambda_1 of the terms over one source, pair by pair.
+    fn first(&self, source: SourceId, terms: &[Term]) -> Moment {
+        let source = &self.sources[source.0 as usize];
+        let rough = terms.iter().any(|term| !first_moment_exists(source, term.operator));
+        if rough {
+            return Moment::Infinite;
+        }
+        first_moment::of_terms(&source.kernel, terms)
+    }
+}
+
+/// Whether the source, differentiated so often, has a finite lambda_1: its density must fall faster than omega^-2.
+fn first_moment_exists(source: &Source, operator: Operator) -> bool {
+    match source.smoothness() {
+        Smoothness::Unlimited => true,
+        Smoothness::Exactly { limiting, .. } => limiting.exponent > 1.0 + 2.0 * f64::from(operator.derivatives),
+        Smoothness::AtLeast { derivatives } => operator.derivatives < *derivatives,
+        Smoothness::Unclear { .. } => false,
+    }
+}
+
+/// The relative error of closed forms.
+pub(super) const CLOSED_FORM: f64 = 1e-13;
+
+/// The derivatives of a kernel at lag 0 by order, as far as they exist: odd ones are 0.
+fn derivatives_at_zero(source: &Source) -> Vec<Moment> {
+    let exists = |order: usize| match source.smoothness() {
+        Smoothness::Unlimited => true,
+        Smoothness::Exactly { limiting, .. } => (order as f64) < limiting.exponent,
+        Smoothness::AtLeast { derivatives } => order <= 2 * *derivatives as usize,
+        Smoothness::Unclear { .. } => order == 0,
+    };
+    let expansion = source.kernel.expansion(MOST_DERIVATIVES as f64 + 1.0);
+    let mut factorial = 1.0;
+    let mut derivatives = Vec::new();
+    for order in (0..=MOST_DERIVATIVES).take_while(|order| exists(*order)) {
+        factorial *= order.max(1) as f64;
+        derivatives.push(if order % 2 == 1 {
+            Moment::ZERO
+        } else {
+            match expansion.coefficient(order as f64) {
+                Some(coefficient) => exactly(factorial * coefficient),
+                None => Moment::Unreached,
+            }
+        });
+    }
+    derivatives
+}
+
+/// The derivatives of a kernel at a lag above 0 by order, as far as they exist.
+fn derivatives_at(kernel: &Kernel, lag: f64) -> Vec<Moment> {
+    let smooth_to = |order: &usize| kernel.taylor(lag, *order).ok();
+    let coefficients = smooth_to(&MOST_DERIVATIVES)
+        .or_else(|| (0..MOST_DERIVATIVES).rev().find_map(|order| smooth_to(&order)))
+        .unwrap_or_default();
+    let mut factorial = 1.0;
+    let derivative = |(order, coefficient): (usize, f64)| {
+        factorial *= order.max(1) as f64;
+        exactly(factorial * coefficient)
+    };
+    coefficients.into_iter().enumerate().map(derivative).collect()
+}
+
+fn exactly(value: f64) -> Moment {
+    if value.is_finite() {
+        Moment::Finite {
+            value,
+            error: value.abs() * CLOSED_FORM,
+        }
+    } else {
+        Moment::Unreached
+    }
+}
+
+/// A sum of moments to twice the working precision, so that the order of its terms leaves no trace.
+#[derive(Clone, Copy)]
+struct Sum {
+    value: Exact,
+    size: f64,
+    error: f64,
+    /// Set by the first part that is no finite number.
+    spoilt: Option<Moment>,
+}
+
+impl Default for Sum {
+    fn default() -> Self {
+        Self {
+            value: Exact::default(),
+            size: 0.0,
+            error: 0.0,
+            spoilt: None,
+        }
+    }
+}
+
+impl Sum {
+    fn add(&mut self, part: Moment) {
+        match part {
+            Moment::Finite { value, error } => {
+                self.value = self.value.plus(Exact::new(value));
+                self.size += value.abs();
+                self.error += error;
+            }
+            Moment::Infinite => self.spoilt = Some(Moment::Infinite),
+            Moment::Unreached => self.spoilt = self.spoilt.or(Some(Moment::Unreached)),
+        }
+    }
+
+    /// Whether more than three digits went in the sum.
+    fn cancelled(&self) -> bool {
+        self.spoilt.is_none() && self.value.value().abs() < 1e-3 * self.size
+    }
+
+    fn moment(self) -> Moment {
+        self.spoilt.unwrap_or_else(|| {
+            let value = self.value.value();
+            if value.is_finite() {
+                Moment::Finite {
+                    value,
+                    error: self.error + f64::EPSILON * value.abs(),
+                }
+            } else {
+                Moment::Unreached
+            }
+        })
+    }
+}

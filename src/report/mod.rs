@@ -1,0 +1,4 @@
+//! Results for people.
+
+mod columns;
+pub mod text;

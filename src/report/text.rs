@@ -1,0 +1,228 @@
+//! Results as plain text, in the units of the model.
+
+use super::columns::{Side, paragraph, write as columns};
+use crate::check::{Kind, LimitState, Model, Named};
+use crate::results::{LimitStateResult, Moments, Real, Results};
+use crate::units::{Unit, show, show_number, time_in_words};
+use std::io::{self, Write};
+
+/// Significant digits of values.
+const DIGITS: usize = 5;
+
+const CAUTION: &str = "\
+These results rest on the model and on the assumptions named above. They do not replace the code of practice that \
+applies, the judgement of a licensed engineer, or an independent check.";
+
+/// Writes everything found out about a model.
+///
+/// # Errors
+/// Whatever writing to `out` returns.
+pub fn write(out: &mut dyn Write, model: &Model, results: &Results) -> io::Result<()> {
+    head(out, results)?;
+    parameters(out, model)?;
+    moments(out, model, Kind::Process, &results.processes)?;
+    moments(out, model, Kind::Margin, &results.margins)?;
+    for result in &results.limit_states {
+        if let Some(limit_state) = model.limit_states.iter().find(|one| one.name == result.name) {
+            limit_state_section(out, limit_state, result)?;
+        }
+    }
+    expectations(out, results)?;
+    outcome(out, results)?;
+    if !results.limit_states.is_empty() {
+        writeln!(out)?;
+        paragraph(out, "", CAUTION)?;
+    }
+    Ok(())
+}
+
+fn head(out: &mut dyn Write, results: &Results) -> io::Result<()> {
+    if let Some(title) = &results.model.title {
+        writeln!(out, "{title}")?;
+    }
+    let digest: String = results.model.sha256.chars().take(12).collect();
+    let tool = &results.tool;
+    writeln!(out, "{} (SHA-256 {digest}...), {} {}", results.model.file, tool.name, tool.version)
+}
+
+fn heading(out: &mut dyn Write, text: &str) -> io::Result<()> {
+    writeln!(out, "\n{text}")
+}
+
+fn parameters(out: &mut dyn Write, model: &Model) -> io::Result<()> {
+    if model.parameters.is_empty() {
+        return Ok(());
+    }
+    heading(out, "Parameters")?;
+    let rows: Vec<Vec<String>> = model
+        .parameters
+        .iter()
+        .map(|parameter| {
+            let value = show(parameter.value, &parameter.unit, DIGITS + 1);
+            vec![parameter.name.clone(), value, parameter.basis.clone().unwrap_or_default()]
+        })
+        .collect();
+    columns(out, 2, &[Side::Left, Side::Right, Side::Left], &rows)
+}
+
+fn moments(out: &mut dyn Write, model: &Model, kind: Kind, results: &[Moments]) -> io::Result<()> {
+    if results.is_empty() {
+        return Ok(());
+    }
+    heading(out, if kind == Kind::Process { "Processes" } else { "Margins" })?;
+    let title = ["", "mean", "st. dev.", "st. dev. of derivative", "mean upcrossed", "bandwidth"];
+    let mut rows = vec![title.map(str::to_string).to_vec()];
+    let named = model.varying.iter().filter(|named| named.kind == kind);
+    rows.extend(named.zip(results).map(|(named, result)| moments_row(named, result)));
+    let sides = [Side::Left, Side::Right, Side::Right, Side::Right, Side::Right, Side::Right];
+    columns(out, 2, &sides, &rows)
+}
+
+fn moments_row(named: &Named, result: &Moments) -> Vec<String> {
+    let unit = &named.unit;
+    let rate = Unit::named("s").and_then(|second| unit.over(&second));
+    let derivative = result.derivative_standard_deviation.map(|value| match &rate {
+        Some(rate) => show(value.value(), rate, DIGITS),
+        None => show_number(value.value(), DIGITS),
+    });
+    vec![
+        result.name.clone(),
+        show(result.mean, unit, DIGITS),
+        show(result.standard_deviation, unit, DIGITS),
+        derivative.unwrap_or_default(),
+        result.zero_upcrossing_rate.map(per_second).unwrap_or_default(),
+        result.bandwidth.map(|bandwidth| show_number(bandwidth, 3)).unwrap_or_default(),
+    ]
+}
+
+fn per_second(rate: Real) -> String {
+    if rate.value().is_finite() {
+        format!("{} /s", show_number(rate.value(), DIGITS))
+    } else {
+        "infinitely often".to_string()
+    }
+}
+
+fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResult) -> io::Result<()> {
+    heading(out, &format!("Limit state {}: failure when {}", result.name, result.failure_when))?;
+    if let Some(words) = &limit_state.documentation {
+        for line in words.lines() {
+            writeln!(out, "  {line}")?;
+        }
+    }
+    let period = show(result.reference_period, &limit_state.reference_period.unit, DIGITS);
+    let rows = vec![
+        vec![format!("failure probability over {period}"), show_number(result.failure_probability, DIGITS)],
+        vec![format!("reliability index over {period}"), show_number(result.reliability_index.value(), DIGITS)],
+        vec![format!("survival over {period}"), survival(result.survival)],
+        vec!["failed at the start".to_string(), show_number(result.initial_failure_probability, DIGITS)],
+        vec!["entries into failure".to_string(), format!("{} /s", show_number(result.upcrossing_rate, DIGITS))],
+        vec!["mean time to failure".to_string(), long_time(result.mean_time_to_failure)],
+        vec!["first passage by".to_string(), result.first_passage.to_string()],
+        vec!["numerical error, relative".to_string(), show_number(result.relative_error, 1)],
+    ];
+    columns(out, 2, &[Side::Left, Side::Left], &rows)?;
+    table(out, limit_state, result)?;
+    if !result.requirements.is_empty() {
+        writeln!(out, "  Required")?;
+        let rows: Vec<Vec<String>> = result
+            .requirements
+            .iter()
+            .map(|requirement| {
+                vec![
+                    requirement.verdict.to_string(),
+                    format!("{} over {}", requirement.text, requirement.shown.over),
+                    format!("found {}", requirement.shown.value),
+                    requirement.basis.clone().unwrap_or_default(),
+                ]
+            })
+            .collect();
+        columns(out, 4, &[Side::Left, Side::Left, Side::Left, Side::Left], &rows)?;
+    }
+    writeln!(out, "  Rests on")?;
+    for assumption in &result.assumptions {
+        paragraph(out, "    - ", &assumption.text)?;
+    }
+    Ok(())
+}
+
+fn table(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResult) -> io::Result<()> {
+    if result.table.is_empty() {
+        return Ok(());
+    }
+    let title = ["time", "failure probability", "reliability index", "survival"];
+    let mut rows = vec![title.map(str::to_string).to_vec()];
+    rows.extend(limit_state.tabulate.iter().zip(&result.table).map(|(time, row)| {
+        vec![
+            show(row.t, &time.unit, DIGITS),
+            show_number(row.failure_probability, DIGITS),
+            show_number(row.reliability_index.value(), DIGITS),
+            survival(row.survival),
+        ]
+    }));
+    columns(out, 4, &[Side::Right, Side::Right, Side::Right, Side::Right], &rows)
+}
+
+/// Survival with as many digits as it needs to differ from 1, up to what a double holds.
+fn survival(value: f64) -> String {
+    let lost = 1.0 - value;
+    let digits = if lost > 0.0 && lost < 0.1 {
+        (3.0 - lost.log10().floor()) as usize
+    } else {
+        DIGITS
+    };
+    show_number(value, digits.clamp(DIGITS, 16))
+}
+
+fn long_time(seconds: Real) -> String {
+    if seconds.value().is_finite() {
+        time_in_words(seconds.value(), DIGITS)
+    } else {
+        "infinite".to_string()
+    }
+}
+
+fn expectations(out: &mut dyn Write, results: &Results) -> io::Result<()> {
+    if results.expectations.is_empty() {
+        return Ok(());
+    }
+    heading(out, "Expectations of the author")?;
+    let rows: Vec<Vec<String>> = results
+        .expectations
+        .iter()
+        .map(|expectation| {
+            vec![
+                if expectation.holds { "holds" } else { "does not hold" }.to_string(),
+                expectation.text.clone(),
+                format!("found {}", expectation.shown),
+                expectation.basis.clone().unwrap_or_default(),
+            ]
+        })
+        .collect();
+    columns(out, 2, &[Side::Left, Side::Left, Side::Left, Side::Left], &rows)
+}
+
+/// One line that says how it ended.
+fn outcome(out: &mut dyn Write, results: &Results) -> io::Result<()> {
+    let requirements = results.limit_states.iter().flat_map(|one| &one.requirements);
+    let verdicts: Vec<&str> = requirements.map(|one| one.verdict).collect();
+    let expectations = &results.expectations;
+    if verdicts.is_empty() && expectations.is_empty() {
+        return Ok(());
+    }
+    let count = |wanted: &str| verdicts.iter().filter(|verdict| **verdict == wanted).count();
+    let mut parts = Vec::new();
+    if !verdicts.is_empty() {
+        parts.push(format!("requirements: {} met", count("met")));
+        for (word, number) in [("not met", count("not met")), ("not established", count("not established"))] {
+            if number > 0 {
+                parts.push(format!("{number} {word}"));
+            }
+        }
+    }
+    if !expectations.is_empty() {
+        let holding = expectations.iter().filter(|one| one.holds).count();
+        parts.push(format!("expectations: {holding} of {} hold", expectations.len()));
+    }
+    heading(out, &format!("Outcome   {}", parts.join(", ")))
+}

@@ -1,0 +1,380 @@
+//! From the checked model to its results.
+
+use super::number::Real;
+use super::{
+    Assumption, ExpectationResult, LimitStateResult, ModelIdentity, Moments, ParameterValue, RequirementResult,
+    Results, Shown, TableRow, Tool, Warning,
+};
+use crate::check::{
+    Expectation, Kind, LimitQuantity, LimitState, Model, Named, ProcessQuantity, Requirement, Subject, Tolerance,
+};
+use crate::covariance::moments::{FormMoments, Moment, MomentTable};
+use crate::diagnostics::Diagnostic;
+use crate::reliability::crossings::{FailureRegion, GaussianMargin};
+use crate::reliability::first_passage::{FirstPassage, Method};
+use crate::reliability::probability::Probability;
+use crate::reliability::verdict::Verdict;
+use crate::source::Files;
+use crate::units::{Unit, show, show_number};
+use sha2::{Digest, Sha256};
+use std::f64::consts::PI;
+
+/// Digits of judged values in text.
+const DIGITS: usize = 5;
+
+/// Below this many standard deviations from mean to barrier, entries are no rare events and Poisson crossings prove
+/// nothing: the probability of being failed at an instant is above 2 % there.
+const LOW_BARRIER: f64 = 2.0;
+
+/// Below this bandwidth entries come in clumps (Vanmarcke 1975, "On the distribution of the first-passage time for
+/// normal stationary random processes", J. Appl. Mech. 42; the figure itself is common practice, no source).
+const NARROW_BAND: f64 = 0.3;
+
+/// What rounding leaves even where no moment cancels.
+const ROUNDING: f64 = 1e-14;
+
+/// Computes everything. `only` names the limit states wanted; empty for all.
+pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[String]) -> Results {
+    let table = MomentTable::new(&model.sources);
+    let varying: Vec<FormMoments> = model.varying.iter().map(|named| table.moments(&named.form)).collect();
+    let of_kind = |kind: Kind| {
+        let named = model.varying.iter().zip(&varying);
+        named.filter(|(named, _)| named.kind == kind).map(|(named, moments)| moments_of(named, moments)).collect()
+    };
+    let wanted = |limit_state: &&LimitState| only.is_empty() || only.contains(&limit_state.name);
+    let limit_states = model.limit_states.iter().filter(wanted);
+    Results {
+        format: "outcross-results",
+        version: 1,
+        tool: Tool {
+            name: "outcross",
+            version: env!("CARGO_PKG_VERSION"),
+        },
+        model: identity(files, model),
+        parameters: model
+            .parameters
+            .iter()
+            .map(|parameter| ParameterValue {
+                name: parameter.name.clone(),
+                value: parameter.value,
+                unit: parameter.unit.dimension().si_name(),
+            })
+            .collect(),
+        processes: of_kind(Kind::Process),
+        margins: of_kind(Kind::Margin),
+        limit_states: limit_states.map(|limit_state| Judged::new(&table, limit_state).result()).collect(),
+        expectations: model
+            .expectations
+            .iter()
+            .map(|expectation| expected(expectation, model, &varying, &table))
+            .collect(),
+        warnings: warnings.iter().map(|warning| warning_entry(files, warning)).collect(),
+    }
+}
+
+fn identity(files: &Files, model: &Model) -> ModelIdentity {
+    let file = files.get(model.file);
+    let digest = Sha256::digest(file.text.as_bytes());
+    ModelIdentity {
+        file: file.name(),
+        title: model.title.clone(),
+        sha256: digest.iter().map(|byte| format!("{byte:02x}")).collect(),
+    }
+}
+
+fn warning_entry(files: &Files, warning: &Diagnostic) -> Warning {
+    let place = files.place(warning.place);
+    Warning {
+        code: warning.code.name(),
+        message: warning.message.clone(),
+        file: files.get(warning.place.file).name(),
+        line: place.line,
+        column: place.column,
+    }
+}
+
+fn moments_of(named: &Named, moments: &FormMoments) -> Moments {
+    let spectral: Option<Vec<Real>> = moments.lambda.iter().map(|moment| Real::new(moment.value()?)).collect();
+    Moments {
+        name: named.name.clone(),
+        unit: named.dimension.si_name(),
+        mean: named.form.mean(),
+        standard_deviation: moments.standard_deviation(),
+        derivative_standard_deviation: moments.derivative_standard_deviation().and_then(Real::new),
+        zero_upcrossing_rate: zero_upcrossing_rate(moments).and_then(Real::new),
+        bandwidth: moments.bandwidth(),
+        irregularity: moments.irregularity(),
+        spectral_moments: spectral.and_then(|moments| moments.try_into().ok()),
+    }
+}
+
+/// The mean rate of upcrossings of the mean, `sqrt(lambda_2 / lambda_0) / (2 pi)`, in 1/s (Rice 1944-45).
+fn zero_upcrossing_rate(moments: &FormMoments) -> Option<f64> {
+    Some(moments.derivative_standard_deviation()? / (2.0 * PI * moments.standard_deviation()))
+}
+
+/// A limit state with everything that its results are read from.
+struct Judged<'m> {
+    limit_state: &'m LimitState,
+    margin: GaussianMargin,
+    passage: FirstPassage,
+    bandwidth: Option<f64>,
+    relative_error: f64,
+}
+
+impl<'m> Judged<'m> {
+    fn new(table: &MomentTable<'_>, limit_state: &'m LimitState) -> Self {
+        let moments = table.moments(&limit_state.margin);
+        let margin = GaussianMargin {
+            mean: limit_state.margin.mean(),
+            standard_deviation: moments.standard_deviation(),
+            derivative_standard_deviation: moments.derivative_standard_deviation().unwrap_or(f64::NAN),
+        };
+        Self {
+            limit_state,
+            margin,
+            passage: FirstPassage::new(&margin, limit_state.region, limit_state.method),
+            bandwidth: moments.bandwidth(),
+            relative_error: relative_error(&margin, limit_state.region, &moments),
+        }
+    }
+
+    fn reduced_barrier(&self) -> f64 {
+        self.margin.reduced_barrier(self.limit_state.region)
+    }
+
+    fn result(&self) -> LimitStateResult {
+        let limit_state = self.limit_state;
+        let period = limit_state.reference_period.seconds;
+        let over = self.passage.within(period);
+        LimitStateResult {
+            name: limit_state.name.clone(),
+            failure_when: limit_state.failure_when.clone(),
+            reference_period: period,
+            first_passage: limit_state.method.name(),
+            upcrossing_rate: self.passage.ln_rate.exp(),
+            initial_failure_probability: self.passage.initial.failure(),
+            survival: over.survival(),
+            failure_probability: over.failure(),
+            reliability_index: index(over),
+            mean_time_to_failure: real(self.passage.ln_mean_time_to_failure().exp()),
+            relative_error: self.relative_error,
+            table: limit_state.tabulate.iter().map(|time| self.row(time.seconds)).collect(),
+            requirements: limit_state.requirements.iter().map(|one| self.requirement(one)).collect(),
+            assumptions: self.assumptions(),
+        }
+    }
+
+    fn row(&self, time: f64) -> TableRow {
+        let over = self.passage.within(time);
+        TableRow {
+            t: time,
+            survival: over.survival(),
+            failure_probability: over.failure(),
+            reliability_index: index(over),
+            upcrossing_rate: self.passage.ln_rate.exp(),
+        }
+    }
+
+    /// A quantity over a time, as the formula has it.
+    fn quantity(&self, quantity: LimitQuantity, time: f64) -> f64 {
+        match quantity {
+            LimitQuantity::UpcrossingRate => self.passage.ln_rate.exp(),
+            LimitQuantity::MeanTimeToFailure => self.passage.ln_mean_time_to_failure().exp(),
+            LimitQuantity::InitialFailureProbability => self.passage.initial.failure(),
+            of_period => of_probability(of_period, self.passage.within(time)),
+        }
+    }
+
+    /// Judges a demand on all values that the numerical error leaves open. Where the barrier is low the formula proves
+    /// nothing: the demand is then judged on the bounds that hold whatever the dependence of the crossings.
+    fn requirement(&self, requirement: &Requirement) -> RequirementResult {
+        let quantity = requirement.quantity;
+        let time = requirement.over.seconds;
+        let value = self.quantity(quantity, time);
+        let by_formula = matches!(
+            quantity,
+            LimitQuantity::Survival | LimitQuantity::FailureProbability | LimitQuantity::ReliabilityIndex
+        );
+        let doubtful = self.reduced_barrier() < LOW_BARRIER;
+        let verdict = if doubtful && quantity == LimitQuantity::MeanTimeToFailure {
+            Verdict::NotEstablished
+        } else {
+            let (one, other) = if doubtful && by_formula {
+                let (least, most) = self.passage.bounds(time);
+                (of_probability(quantity, least), of_probability(quantity, most))
+            } else {
+                (value, value)
+            };
+            let low = one.min(other) - self.error(quantity, one.min(other));
+            let high = one.max(other) + self.error(quantity, one.max(other));
+            requirement.demand.judge(low, high)
+        };
+        RequirementResult {
+            text: requirement.text.clone(),
+            value: real(value),
+            limit: requirement.demand.limit(),
+            over: time,
+            verdict: verdict.words(),
+            shown: Shown {
+                value: show(value, &requirement.unit, DIGITS),
+                over: show(time, &requirement.over.unit, DIGITS),
+            },
+            basis: requirement.basis.clone(),
+        }
+    }
+
+    /// The numerical error of a quantity, in its own unit.
+    fn error(&self, quantity: LimitQuantity, value: f64) -> f64 {
+        match quantity {
+            // d beta = d Pf / phi(beta), and Pf / phi(beta) is about 1 / beta in the tail.
+            LimitQuantity::ReliabilityIndex => self.relative_error / value.abs().max(1.0),
+            LimitQuantity::Survival => self.relative_error * (1.0 - value).max(f64::EPSILON),
+            _ => self.relative_error * value.abs(),
+        }
+    }
+
+    fn assumptions(&self) -> Vec<Assumption> {
+        let mut assumptions = vec![
+            Assumption {
+                code: "stationary-gaussian",
+                text: "The processes are Gaussian, and their statistics stay the same during the whole time.".into(),
+            },
+            Assumption {
+                code: "poisson-crossings",
+                text: match self.limit_state.method {
+                    Method::Poisson => "Entries into failure are counted as a Poisson process, whatever the start: right \
+                                        for barriers far from the mean."
+                        .into(),
+                    Method::PoissonSafeStart => "Entries into failure are counted as a Poisson process among those that \
+                                                 are safe: right for barriers far from the mean."
+                        .into(),
+                },
+            },
+        ];
+        let reduced = self.reduced_barrier();
+        if reduced < LOW_BARRIER {
+            let time = self.limit_state.reference_period.seconds;
+            let (least, most) = self.passage.bounds(time);
+            let (least, most) = (show_number(least.failure(), DIGITS), show_number(most.failure(), DIGITS));
+            let distance = show_number(reduced, 3);
+            assumptions.push(Assumption {
+                code: "low-barrier",
+                text: format!(
+                    "The barrier is only {distance} standard deviations from the mean, so entries are not rare and the \
+                     formula is outside its range (2 or more). Requirements are judged on what holds in any case: the \
+                     failure probability over the reference period lies between {least} and {most}."
+                ),
+            });
+        }
+        if let Some(bandwidth) = self.bandwidth.filter(|bandwidth| *bandwidth < NARROW_BAND) {
+            let bandwidth = show_number(bandwidth, 3);
+            assumptions.push(Assumption {
+                code: "narrow-band",
+                text: format!(
+                    "The margin is narrow-banded (bandwidth {bandwidth}, below 0.3): entries come in clumps, so the \
+                     failure probability is likely overstated."
+                ),
+            });
+        }
+        assumptions
+    }
+}
+
+/// What rounding in the moments does to a failure probability. In the tail `d ln Pf = -(r + 1/r) dr`, and `r` feels the
+/// rounding of the difference between barrier and mean as well as half the relative error of the variance.
+fn relative_error(margin: &GaussianMargin, region: FailureRegion, moments: &FormMoments) -> f64 {
+    let reduced = margin.reduced_barrier(region).abs();
+    let level = match region {
+        FailureRegion::Below(level) | FailureRegion::Above(level) => level.abs(),
+        FailureRegion::Outside(lower, upper) => lower.abs().max(upper.abs()),
+    };
+    let [variance, _, derivative, _] = &moments.lambda;
+    let of_difference = f64::EPSILON * (level + margin.mean.abs()) / margin.standard_deviation;
+    let of_variance = 0.5 * reduced * variance.relative_error();
+    (reduced + 1.0) * (of_difference + of_variance) + 0.5 * derivative.relative_error() + ROUNDING * (1.0 + reduced * reduced)
+}
+
+fn of_probability(quantity: LimitQuantity, probability: Probability) -> f64 {
+    match quantity {
+        LimitQuantity::Survival => probability.survival(),
+        LimitQuantity::ReliabilityIndex => probability.reliability_index(),
+        _ => probability.failure(),
+    }
+}
+
+fn index(probability: Probability) -> Real {
+    real(probability.reliability_index())
+}
+
+/// The number, which the checks before have made one.
+fn real(value: f64) -> Real {
+    Real::new(value).unwrap_or(Real::INFINITE)
+}
+
+fn expected(
+    expectation: &Expectation,
+    model: &Model,
+    varying: &[FormMoments],
+    table: &MomentTable<'_>,
+) -> ExpectationResult {
+    let value = match expectation.subject {
+        Subject::Varying(index, quantity) => match (model.varying.get(index), varying.get(index)) {
+            (Some(named), Some(moments)) => of_varying(quantity, named, moments),
+            _ => None,
+        },
+        Subject::LimitState(index, quantity, time) => {
+            model.limit_states.get(index).map(|limit_state| Judged::new(table, limit_state).quantity(quantity, time))
+        }
+    };
+    let (tolerance, tolerance_kind, allowed) = match expectation.tolerance {
+        Tolerance::Relative(share) => (share, "relative", share * expectation.expected.abs()),
+        Tolerance::Absolute(distance) => (distance, "absolute", distance),
+    };
+    ExpectationResult {
+        text: expectation.text.clone(),
+        value: value.and_then(Real::new),
+        expected: expectation.expected,
+        tolerance,
+        tolerance_kind,
+        holds: value.is_some_and(|value| (value - expectation.expected).abs() <= allowed),
+        shown: value.map_or_else(|| "does not exist".to_string(), |value| show_in(value, &expectation.unit)),
+        basis: expectation.basis.clone(),
+    }
+}
+
+fn show_in(value: f64, unit: &Unit) -> String {
+    show(value, unit, DIGITS + 1)
+}
+
+fn of_varying(quantity: ProcessQuantity, named: &Named, moments: &FormMoments) -> Option<f64> {
+    match quantity {
+        ProcessQuantity::Mean => Some(named.form.mean()),
+        ProcessQuantity::StandardDeviation => Some(moments.standard_deviation()),
+        ProcessQuantity::DerivativeStandardDeviation => moments.derivative_standard_deviation(),
+        ProcessQuantity::ZeroUpcrossingRate => zero_upcrossing_rate(moments),
+        ProcessQuantity::Bandwidth => moments.bandwidth(),
+        ProcessQuantity::Irregularity => moments.irregularity(),
+    }
+}
+
+impl Results {
+    /// Whether every number reached its tolerance: no failure probability has a larger relative error, and every
+    /// spectral moment is known.
+    pub fn within_tolerance(&self, tolerance: f64) -> bool {
+        let moments = self.processes.iter().chain(&self.margins);
+        moments.into_iter().all(|one| one.spectral_moments.is_some())
+            && self.limit_states.iter().all(|one| one.relative_error <= tolerance)
+    }
+}
+
+impl Moment {
+    /// The relative error; 0 where the moment is infinite.
+    fn relative_error(&self) -> f64 {
+        match self {
+            Moment::Finite { value, error } if *value != 0.0 => (error / value).abs(),
+            Moment::Finite { .. } | Moment::Infinite => 0.0,
+            Moment::Unreached => f64::INFINITY,
+        }
+    }
+}
