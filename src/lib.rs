@@ -2,6 +2,7 @@
 
 pub mod covariance;
 pub mod diagnostics;
+pub mod expression;
 pub mod language;
 pub mod source;
 pub mod units;

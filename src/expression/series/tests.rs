@@ -1,0 +1,1 @@
+//! Series against reference values.
