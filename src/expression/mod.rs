@@ -11,6 +11,9 @@ mod series;
 mod show;
 mod tape;
 
+#[cfg(test)]
+mod properties;
+
 pub use arena::{Arena, Node, NodeId, Operand, Symbol};
 pub use function::Function;
 pub use number::Number;

@@ -124,6 +124,8 @@ impl Number for f64 {
     /// Correctly rounded at exponents -1, 1/2, 1 and 2, within 1 ulp elsewhere.
     fn power(&self, exponent: &Self) -> Self {
         match *exponent {
+            // The standard's pow hides NaN in NaN^0 and 1^NaN.
+            other if self.is_nan() || other.is_nan() => f64::NAN,
             -1.0 => 1.0 / self,
             0.5 => libm::sqrt(*self),
             2.0 => self * self,
@@ -229,6 +231,8 @@ mod tests {
 
     #[test]
     fn an_undefined_operand_stays_undefined() {
+        assert!(Number::power(&f64::NAN, &0.0).is_nan());
+        assert!(Number::power(&1.0, &f64::NAN).is_nan());
         assert!(Number::min(&f64::NAN, &1.0).is_nan());
         assert!(Number::min(&1.0, &f64::NAN).is_nan());
         assert!(Number::max(&f64::NAN, &1.0).is_nan());

@@ -1,6 +1,6 @@
 //! Expressions as people read them.
 
-use super::{Arena, Node, NodeId, Symbol};
+use super::{Arena, Function, Node, NodeId, Operand, Symbol};
 
 /// Where the text is cut: shared parts are written out each time, so a short model can have an endless expression.
 const LONGEST: usize = 10_000;
@@ -16,11 +16,15 @@ enum Strength {
 }
 
 enum Piece {
-    Text(&'static str),
+    Fixed(&'static str),
+    Own(String),
     /// A node, in brackets if it is weaker than that.
     Node(NodeId, Strength),
-    /// The same of the negative of a number or of a negative node.
-    Opposite(NodeId, Strength),
+}
+
+enum Opposite {
+    Number(f64),
+    Node(NodeId),
 }
 
 /// Writes an expression as text in the manner of the language with as few brackets as it takes, and an ellipsis where
@@ -33,99 +37,92 @@ pub fn show(arena: &Arena, root: NodeId, name: impl Fn(Symbol) -> String) -> Str
             text.push('…');
             break;
         }
-        match piece {
-            Piece::Text(piece) => text.push_str(piece),
+        let pieces = match piece {
+            Piece::Fixed(fixed) => {
+                text.push_str(fixed);
+                continue;
+            }
             Piece::Node(id, least) if strength(arena, id) < least => {
-                text.push('(');
-                stack.push(Piece::Text(")"));
-                stack.push(Piece::Node(id, Strength::Sum));
+                vec![Piece::Fixed("("), Piece::Node(id, Strength::Sum), Piece::Fixed(")")]
             }
-            Piece::Node(id, _) => {
-                let pieces = match arena.node(id) {
-                    Node::Number(value) => {
-                        text.push_str(&number(value));
-                        Vec::new()
-                    }
-                    Node::Symbol(symbol) => {
-                        text.push_str(&name(symbol));
-                        Vec::new()
-                    }
-                    Node::Sum([]) => vec![Piece::Text("0")],
-                    Node::Sum(operands) => {
-                        let mut pieces = Vec::with_capacity(2 * operands.len());
-                        for (place, operand) in operands.iter().enumerate() {
-                            let flipped = place > 0 && is_opposite(arena, operand.node);
-                            pieces.push(Piece::Text(match (place, operand.inverse != flipped) {
-                                (0, true) => "-",
-                                (0, false) => "",
-                                (_, true) => " - ",
-                                (_, false) => " + ",
-                            }));
-                            let least = if place == 0 && !operand.inverse {
-                                Strength::Sum
-                            } else {
-                                Strength::Product
-                            };
-                            pieces.push(if flipped {
-                                Piece::Opposite(operand.node, least)
-                            } else {
-                                Piece::Node(operand.node, least)
-                            });
-                        }
-                        pieces
-                    }
-                    Node::Product([]) => vec![Piece::Text("1")],
-                    Node::Product(operands) => {
-                        let mut pieces = Vec::with_capacity(2 * operands.len());
-                        for (place, operand) in operands.iter().enumerate() {
-                            pieces.push(Piece::Text(match (place, operand.inverse) {
-                                (0, false) => "",
-                                (0, true) => "1 / ",
-                                (_, false) => " * ",
-                                (_, true) => " / ",
-                            }));
-                            let least = match (place, operand.inverse) {
-                                (0, false) => Strength::Negative,
-                                _ => Strength::Power,
-                            };
-                            pieces.push(Piece::Node(operand.node, least));
-                        }
-                        pieces
-                    }
-                    Node::Negative(node) => vec![Piece::Text("-"), Piece::Node(node, Strength::Product)],
-                    Node::Power(base, exponent) => vec![
-                        Piece::Node(base, Strength::Atom),
-                        Piece::Text("^"),
-                        Piece::Node(exponent, Strength::Atom),
-                    ],
-                    Node::Apply(function, arguments) => {
-                        let mut pieces = vec![Piece::Text(function.name()), Piece::Text("(")];
-                        for (place, argument) in arguments.iter().enumerate() {
-                            pieces.push(Piece::Text(if place == 0 { "" } else { ", " }));
-                            pieces.push(Piece::Node(*argument, Strength::Sum));
-                        }
-                        pieces.push(Piece::Text(")"));
-                        pieces
-                    }
-                };
-                stack.extend(pieces.into_iter().rev());
-            }
-            Piece::Opposite(id, least) => match arena.node(id) {
-                Node::Number(value) => text.push_str(&number(-value)),
-                Node::Negative(node) => stack.push(Piece::Node(node, least)),
-                _ => stack.push(Piece::Node(id, least)),
+            Piece::Node(id, _) => match arena.node(id) {
+                Node::Number(value) => vec![Piece::Own(number(value))],
+                Node::Symbol(symbol) => vec![Piece::Own(name(symbol))],
+                Node::Sum(operands) => sum(arena, operands),
+                Node::Product(operands) => product(operands),
+                Node::Negative(node) => vec![Piece::Fixed("-"), Piece::Node(node, Strength::Product)],
+                Node::Power(base, exponent) => vec![
+                    Piece::Node(base, Strength::Atom),
+                    Piece::Fixed("^"),
+                    Piece::Node(exponent, Strength::Atom),
+                ],
+                Node::Apply(function, arguments) => application(function, arguments),
             },
-        }
+            Piece::Own(own) => {
+                text.push_str(&own);
+                continue;
+            }
+        };
+        stack.extend(pieces.into_iter().rev());
     }
     text
 }
 
-/// Whether its negative is the simpler thing to write.
-fn is_opposite(arena: &Arena, id: NodeId) -> bool {
+fn sum(arena: &Arena, operands: &[Operand]) -> Vec<Piece> {
+    let mut pieces = vec![Piece::Fixed(if operands.is_empty() { "0" } else { "" })];
+    for (place, operand) in operands.iter().enumerate() {
+        // a + (-b) is written a - b.
+        let opposite = if place > 0 { opposite(arena, operand.node) } else { None };
+        pieces.push(Piece::Fixed(match (place, operand.inverse != opposite.is_some()) {
+            (0, true) => "-",
+            (0, false) => "",
+            (_, true) => " - ",
+            (_, false) => " + ",
+        }));
+        let least = if place == 0 && !operand.inverse {
+            Strength::Sum
+        } else {
+            Strength::Product
+        };
+        pieces.push(match opposite {
+            Some(Opposite::Number(value)) => Piece::Own(number(value)),
+            Some(Opposite::Node(node)) => Piece::Node(node, least),
+            None => Piece::Node(operand.node, least),
+        });
+    }
+    pieces
+}
+
+fn product(operands: &[Operand]) -> Vec<Piece> {
+    let mut pieces = vec![Piece::Fixed(if operands.is_empty() { "1" } else { "" })];
+    for (place, operand) in operands.iter().enumerate() {
+        let (sign, least) = match (place, operand.inverse) {
+            (0, false) => ("", Strength::Negative),
+            (0, true) => ("1 / ", Strength::Power),
+            (_, false) => (" * ", Strength::Power),
+            (_, true) => (" / ", Strength::Power),
+        };
+        pieces.extend([Piece::Fixed(sign), Piece::Node(operand.node, least)]);
+    }
+    pieces
+}
+
+fn application(function: Function, arguments: &[NodeId]) -> Vec<Piece> {
+    let mut pieces = vec![Piece::Fixed(function.name()), Piece::Fixed("(")];
+    for (place, argument) in arguments.iter().enumerate() {
+        pieces.push(Piece::Fixed(if place == 0 { "" } else { ", " }));
+        pieces.push(Piece::Node(*argument, Strength::Sum));
+    }
+    pieces.push(Piece::Fixed(")"));
+    pieces
+}
+
+/// The negative of a node where that is the simpler thing to write.
+fn opposite(arena: &Arena, id: NodeId) -> Option<Opposite> {
     match arena.node(id) {
-        Node::Number(value) => value < 0.0,
-        Node::Negative(_) => true,
-        _ => false,
+        Node::Number(value) if value < 0.0 => Some(Opposite::Number(-value)),
+        Node::Negative(node) => Some(Opposite::Node(node)),
+        _ => None,
     }
 }
 
@@ -133,7 +130,7 @@ fn strength(arena: &Arena, id: NodeId) -> Strength {
     match arena.node(id) {
         Node::Sum([]) | Node::Product([]) | Node::Symbol(_) | Node::Apply(..) => Strength::Atom,
         Node::Sum(_) => Strength::Sum,
-        Node::Product([first, ..]) if !first.inverse && is_opposite(arena, first.node) => Strength::Negative,
+        Node::Product([first, ..]) if !first.inverse && opposite(arena, first.node).is_some() => Strength::Negative,
         Node::Product(_) => Strength::Product,
         Node::Power(..) => Strength::Power,
         Node::Negative(_) => Strength::Negative,
@@ -161,7 +158,6 @@ pub(super) fn number(value: f64) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::expression::{Function, Operand};
 
     fn name(symbol: Symbol) -> String {
         match symbol {

@@ -1,15 +1,11 @@
 //! Functions of a series: Taylor's formula about its constant term, and what takes its place at branch points.
 
-use super::expansion::{Expansion, MOST_TERMS};
+use super::expansion::{Expansion, MOST_TERMS, ORDER_OF_FLAT};
 use super::{SeriesTerm, Unknown, taylor};
 use crate::expression::Number;
 
 /// Functions of a sum without remainder are expanded up to here.
 const ORDER_OF_EXACT: f64 = 16.0;
-
-/// The order of what falls faster than any power of h: beyond all that is ever asked for, yet not exact, so that no
-/// sign is read from it.
-const ORDER_OF_FLAT: f64 = 1e6;
 
 /// Whole powers up to that are carried out by multiplication, which keeps exact sums exact.
 const MOST_MULTIPLIED: f64 = 64.0;
@@ -60,21 +56,24 @@ fn about(s: &Expansion, error: f64, coefficients: impl Fn(usize) -> Vec<f64>) ->
     } else {
         ((goal / step).ceil() as usize + 1).min(MOST_TERMS)
     };
-    let f = coefficients(count + 1);
-    let term = |k: usize| SeriesTerm {
-        error: f[k].abs() + (k + 1) as f64 * f[k + 1].abs() * error,
-        ..SeriesTerm::new(f[k], 0.0, 0)
-    };
+    let values = coefficients(count + 1);
+    let mut coefficients = values.windows(2).enumerate().map(|(k, pair)| SeriesTerm {
+        error: pair[0].abs() + (k + 1) as f64 * pair[1].abs() * error,
+        ..SeriesTerm::new(pair[0], 0.0, 0)
+    });
+    let mut terms: Vec<SeriesTerm> = coefficients.next().into_iter().collect();
     if s.is_zero() {
-        return Expansion::new(vec![term(0)], f64::INFINITY);
+        return Expansion::new(terms, f64::INFINITY);
     }
-    // The remainder of s enters through f_1 s, or where that is missing, as in cos(h), through f_2 s².
-    let remainder = if exact || f[1] != 0.0 { goal } else { goal + step };
-    let order = remainder.min((count + 1) as f64 * step);
-    let mut terms = vec![term(0)];
+    // The remainder of s enters through f_1 s, or where that is missing, as in cos(h), through f_2 s² and later.
+    let highest = if exact { goal } else { goal + step };
+    let mut order = highest.min((count + 1) as f64 * step);
     let mut power = s.with_order_at_most(order)?;
-    for k in 1..=count {
-        terms.extend(power.terms().iter().map(|one| one.times(&term(k))));
+    for coefficient in coefficients {
+        if coefficient.coefficient != 0.0 {
+            order = order.min(power.order());
+            terms.extend(power.terms().iter().map(|one| one.times(&coefficient)));
+        }
         if power.valuation() + step >= order {
             break;
         }
@@ -110,14 +109,14 @@ fn leading_and_ratio(argument: &Expansion, operation: &'static str) -> Result<(S
     Ok((leading, Expansion::new(rest, argument.order())?.scaled(&inverse)?))
 }
 
-/// A numeric power.
+/// A numeric power. A base of which only the remainder is known gives a remainder, in trust that it is not negative.
 pub(super) fn power(base: &Expansion, exponent: f64, operation: &'static str) -> Outcome {
     let whole = exponent.fract() == 0.0;
     if whole && (0.0..=MOST_MULTIPLIED).contains(&exponent) {
         return multiplied(base, exponent as u32);
     }
     if base.terms().is_empty() && exponent > 0.0 {
-        return Expansion::remainder(base.order() * exponent);
+        return base.remainder_of_power(exponent);
     }
     let (leading, ratio) = leading_and_ratio(base, operation)?;
     let a = leading.coefficient;

@@ -10,6 +10,10 @@ const SAME_EXPONENT: f64 = 1e-9;
 /// So many terms are kept. What needs more is cut, and its order lowered.
 pub(super) const MOST_TERMS: usize = 128;
 
+/// The order of what falls faster than any power of h: beyond all that is ever asked for, yet not exact, so that no
+/// sign is read from it.
+pub(super) const ORDER_OF_FLAT: f64 = 1e6;
+
 /// No power of the logarithm beyond it; it keeps (1 + ln h)^64^64 and its like from filling the memory.
 const MOST_LOGS: u32 = 4096;
 
@@ -64,6 +68,16 @@ impl Expansion {
     /// Nothing but O(h^order).
     pub fn remainder(order: f64) -> Result<Self, Unknown> {
         Self::new(Vec::new(), order)
+    }
+
+    /// A positive power of what has no known term: zero if exact.
+    pub fn remainder_of_power(&self, exponent: f64) -> Result<Self, Unknown> {
+        let order = self.order * exponent;
+        Self::remainder(if self.order.is_finite() {
+            order.min(ORDER_OF_FLAT)
+        } else {
+            order
+        })
     }
 
     pub fn terms(&self) -> &[SeriesTerm] {

@@ -36,7 +36,8 @@ use expansion::Expansion;
 /// "Rounding errors in algebraic processes"; Higham 2002, "Accuracy and stability of numerical algorithms", section
 /// 3.3). A coefficient within 256 times that bound of zero *is* zero from then on: sin² + cos² - 1 has no term left,
 /// where 1e-17 at h^1 would wrongly say kink. Exponents that agree within 1e-9 are one exponent, and one that close to a
-/// whole number is that number.
+/// whole number is that number. Just beside a removable singularity (sin(h)/h about 0.01) digits are lost from order to
+/// order, as in any arithmetic of series; what is lost altogether counts as zero.
 ///
 /// # One side
 ///
@@ -100,7 +101,7 @@ impl Series {
     }
 
     /// The coefficient of h^exponent without logarithm; `None` if the series is unknown or the exponent is not below
-    /// the order.
+    /// the order. Terms with logarithms of the same exponent, which outgrow it, are among the [terms](Self::terms).
     pub fn coefficient(&self, exponent: f64) -> Option<f64> {
         self.0.as_ref().ok()?.coefficient(exponent)
     }

@@ -213,7 +213,7 @@ fn place(argument: &Expansion, operation: &'static str) -> Result<Place, Unknown
     }
 }
 
-/// Near 1, acos x = 2 asin(sqrt((1 - x)/2)); near -1, acos x = pi - acos(-x) (Abramowitz and Stegun 1964, 4.4).
+/// Near 1, acos x = 2 asin(sqrt((1 - x)/2)); near -1, acos x = pi - acos(-x); the first is the half-angle formula.
 fn acos(argument: &Expansion, operation: &'static str) -> Outcome {
     match place(argument, operation)? {
         Place::Inside => smooth(argument, operation, taylor::acos),

@@ -1,8 +1,8 @@
 //! Taylor coefficients of the elementary functions about a number.
 //!
 //! Each function here returns f_0 ... f_n of f(c + s) = sum of f_k s^k, by the recurrence its differential equation
-//! gives (Griewank and Walther 2008, "Evaluating derivatives", 2nd edition, table 13.2, and the method of Knuth 1997,
-//! "The art of computer programming", volume 2, section 4.7, for powers).
+//! gives (Griewank and Walther 2008, "Evaluating derivatives", 2nd edition, chapter 13; for powers Knuth 1997, "The art
+//! of computer programming", volume 2, section 4.7; places from memory, values held against mpmath).
 
 /// exp, from f' = f.
 pub(super) fn exp(at: f64, n: usize) -> Vec<f64> {

@@ -1,1 +1,0 @@
-//! Series against reference values.
