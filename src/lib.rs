@@ -1,9 +1,14 @@
 //! Outcross: a language and compiler for the reliability of structures and machines under random load.
 
+pub mod check;
+pub mod commands;
 pub mod covariance;
 pub mod diagnostics;
 pub mod expression;
 pub mod language;
 pub mod numerics;
+pub mod reliability;
+pub mod report;
+pub mod results;
 pub mod source;
 pub mod units;

@@ -1,6 +1,7 @@
 //! The checked model: what is left of the text once every name, unit and kind is known. All numbers are in coherent SI
 //! units; spans are kept beside them for findings.
 
+use super::names::ItemId;
 use crate::covariance::form::LinearForm;
 use crate::covariance::source::Source;
 use crate::reliability::crossings::FailureRegion;
@@ -38,6 +39,8 @@ pub struct Parameter {
     pub unit: Rc<Unit>,
     /// Where the value comes from.
     pub basis: Option<String>,
+    /// Its place in the text.
+    pub(super) order: ItemId,
 }
 
 /// Whether something was declared as a process or as a margin.
@@ -159,6 +162,8 @@ pub struct Expectation {
     pub unit: Rc<Unit>,
     /// Where the expected value comes from.
     pub basis: Option<String>,
+    /// Its place in the text.
+    pub(super) order: ItemId,
 }
 
 /// What an expectation is about.
@@ -168,6 +173,34 @@ pub enum Subject {
     Varying(usize, ProcessQuantity),
     /// A quantity of a limit state, as an index into [`Model::limit_states`], over a time in seconds.
     LimitState(usize, LimitQuantity, f64),
+}
+
+impl Subject {
+    /// The same subject after processes, margins and limit states have been put into another order.
+    pub(super) fn renumber(&mut self, varying: &[usize], limit_states: &[usize]) {
+        let (index, order) = match self {
+            Self::Varying(index, _) => (index, varying),
+            Self::LimitState(index, _, _) => (index, limit_states),
+        };
+        if let Some(new) = order.get(*index) {
+            *index = *new;
+        }
+    }
+}
+
+impl Model {
+    /// A model of a file in which nothing has been looked at.
+    pub(super) fn empty(file: FileId) -> Self {
+        Self {
+            file,
+            title: None,
+            parameters: Vec::new(),
+            sources: Vec::new(),
+            varying: Vec::new(),
+            limit_states: Vec::new(),
+            expectations: Vec::new(),
+        }
+    }
 }
 
 /// How near a value must be.

@@ -2,7 +2,7 @@
 
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Argument, Declaration, DeclarationKind, Text, Tree, Word};
-use crate::language::parser;
+use crate::language::parse;
 use crate::source::{FileId, Files, LARGEST_FILE, Reader, Span, Unreadable, beside};
 use std::collections::HashMap;
 use std::path::{Path, PathBuf};
@@ -115,7 +115,7 @@ impl<'a> Library<'a> {
         }
         let read = self.reader.read(path).map(|text| {
             let file = self.files.add(path, text);
-            let (tree, found) = parser::parse(file, &self.files.get(file).text);
+            let (tree, found) = parse(file, &self.files.get(file).text);
             self.diagnostics.extend(found);
             Rc::new(tree)
         });

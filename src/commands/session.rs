@@ -3,7 +3,7 @@
 use super::{ColorChoice, ModelArguments, Status};
 use crate::check::{self, Model, Overrides, Settings};
 use crate::diagnostics::{Diagnostic, any_error, terminal};
-use crate::language::parser;
+use crate::language::parse_expression;
 use crate::language::tree::Word;
 use crate::source::{Disk, Files, Span};
 use std::io::{self, IsTerminal, Write};
@@ -81,7 +81,7 @@ fn override_of(files: &mut Files, set: &str) -> Result<Overrides, Vec<Diagnostic
     };
     // The name is blanked out, so that places in the value are places in the text.
     let text = format!("{}{value}", " ".repeat(name.len() + 1));
-    let value = parser::parse_expression(file, &text)?;
+    let value = parse_expression(file, &text)?;
     Ok(Overrides {
         name: Word {
             text: name.trim().into(),

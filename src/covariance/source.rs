@@ -36,6 +36,34 @@ impl Source {
         }
     }
 
+    /// Why it has no more derivatives than it has.
+    pub fn roughness_in_words(&self) -> String {
+        match &self.smoothness {
+            Smoothness::Unlimited => "smooth without limit".to_string(),
+            Smoothness::Exactly { derivatives, limiting } => {
+                let power = crate::units::show_number(limiting.exponent, 6);
+                let logarithm = if limiting.log > 0 { " ln(tau)" } else { "" };
+                let term = if power == "1" && logarithm.is_empty() {
+                    "tau".to_string()
+                } else {
+                    format!("tau^{power}{logarithm}")
+                };
+                match derivatives {
+                    0 if limiting.exponent <= 1.0 => {
+                        format!("its correlation has a kink at lag 0 (it falls like {term}), so it has no derivative")
+                    }
+                    0 => format!("its correlation falls like {term} at lag 0, slower than tau^2, so it has no derivative"),
+                    1 => format!("its correlation has a term {term} at lag 0, so it has one derivative and no more"),
+                    several => {
+                        format!("its correlation has a term {term} at lag 0, so it has {several} derivatives and no more")
+                    }
+                }
+            }
+            Smoothness::AtLeast { derivatives } => format!("{derivatives} derivatives are known to exist, no more"),
+            Smoothness::Unclear { reason } => reason.clone(),
+        }
+    }
+
     /// How smooth it is.
     pub fn smoothness(&self) -> &Smoothness {
         &self.smoothness

@@ -12,6 +12,16 @@ pub enum Method {
     PoissonSafeStart,
 }
 
+impl Method {
+    /// Its name in the language and in results.
+    pub fn name(self) -> &'static str {
+        match self {
+            Self::Poisson => "poisson",
+            Self::PoissonSafeStart => "poisson_safe_start",
+        }
+    }
+}
+
 /// A limit state of a stationary margin.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct FirstPassage {

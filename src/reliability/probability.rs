@@ -43,12 +43,13 @@ impl Probability {
     }
 
     /// The reliability index, `-Phi^-1(Pf)` (Hasofer and Lind 1974; EN 1990:2002, Annex C, eq. C.1), from the smaller
-    /// of the two probabilities. Finite far beyond the range in which the probability itself is a double.
+    /// of the two probabilities. Finite far beyond the range in which the probability itself is a double; infinite where one
+    /// of the two is exactly 0.
     pub fn reliability_index(self) -> f64 {
         if self.ln_failure <= -LN_2 {
-            -normal::quantile_of_ln(self.ln_failure)
+            normal::quantile_of_ln(self.ln_failure).map_or(f64::INFINITY, |quantile| -quantile)
         } else {
-            normal::quantile_of_ln(self.ln_survival)
+            normal::quantile_of_ln(self.ln_survival).unwrap_or(f64::NEG_INFINITY)
         }
     }
 }

@@ -23,7 +23,7 @@ impl Verdict {
 }
 
 /// Whether at least or at most so much is demanded.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, PartialEq)]
 pub enum Demand {
     /// At least this much.
     AtLeast(f64),

@@ -3,7 +3,7 @@
 use super::{Context, Lowering, Scope};
 use crate::check::value::{Covariance, Number, Scalar, Value, Varying};
 use crate::covariance::form::LinearForm;
-use crate::covariance::kernel::Kernel;
+use crate::covariance::kernel::{Kernel, User};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::{NodeId, Operand, Tape};
 use crate::language::tree::{
@@ -184,7 +184,7 @@ impl Lowering<'_, '_, '_> {
             let Some(kernel) = self.as_kernel(value) else {
                 return Value::Fault;
             };
-            if sign < 0.0 && (!is_number || kernel.value(0.0).is_none_or(|value| value != 0.0)) {
+            if sign < 0.0 && (!is_number || kernel != Kernel::zero()) {
                 self.report(
                     Diagnostic::new(Code::KernelInvalid, span, "a kernel cannot be subtracted")
                         .here("enters with a negative weight")
@@ -205,10 +205,11 @@ impl Lowering<'_, '_, '_> {
         match value {
             Value::Kernel(covariance) => Some(covariance.kernel),
             Value::Scalar(scalar) => match scalar.value {
-                Number::Known(value) => Some(Kernel::constant(value)),
+                // A negative constant is refused where it is used; here it only has to keep its value.
+                Number::Known(value) => Kernel::Constant.scaled(value.abs()).ok(),
                 Number::Open(node) => {
                     let tape = Arc::new(Tape::compile(&self.arena, node));
-                    Some(Kernel::user("", tape, Vec::new()))
+                    Some(User::new("an expression", tape, Vec::new()).into())
                 }
                 Number::Unset => None,
             },
@@ -244,7 +245,7 @@ impl Lowering<'_, '_, '_> {
             return Value::Fault;
         };
         if values.iter().any(|(_, _, value)| matches!(value, Value::Kernel(_))) {
-            return self.kernel_product(values, dimension);
+            return self.kernel_product(span, values, dimension);
         }
         let unit = product_unit(&values);
         let mut scalars = Vec::with_capacity(values.len());
@@ -345,7 +346,7 @@ impl Lowering<'_, '_, '_> {
         );
     }
 
-    fn kernel_product(&mut self, values: Vec<(bool, Span, Value)>, dimension: Dimension) -> Value {
+    fn kernel_product(&mut self, span: Span, values: Vec<(bool, Span, Value)>, dimension: Dimension) -> Value {
         let mut weight = 1.0;
         let mut kernels = Vec::new();
         for (inverse, place, value) in values {
@@ -372,10 +373,13 @@ impl Lowering<'_, '_, '_> {
                 },
             }
         }
-        Value::Kernel(Covariance {
-            kernel: Kernel::product(kernels).scaled(weight),
-            dimension,
-        })
+        match Kernel::product(kernels).scaled(weight) {
+            Ok(kernel) => Value::Kernel(Covariance { kernel, dimension }),
+            Err(_) => {
+                self.negative_weight(span);
+                Value::Fault
+            }
+        }
     }
 
     fn negative_weight(&mut self, place: Span) {
@@ -453,7 +457,7 @@ impl Lowering<'_, '_, '_> {
             .filter(|exponent| exponent.fract() == 0.0 && exponent.abs() < 100.0)
             .and_then(|exponent| base_value.unit.as_ref()?.power(exponent as i32).map(Rc::new));
         let value = match (base_value.value, exponent_value.value) {
-            (Number::Known(base), Number::Known(exponent)) => Number::Known(crate::expression::power(base, exponent)),
+            (Number::Known(base), Number::Known(exponent)) => Number::Known(crate::expression::Number::power(&base, &exponent)),
             (base, exponent) => match (self.node(base), self.node(exponent)) {
                 (Some(base), Some(exponent)) => Number::Open(self.arena.power(base, exponent)),
                 _ => Number::Unset,

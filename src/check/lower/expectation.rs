@@ -7,7 +7,6 @@ use crate::check::value::{Number, Scalar};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Declaration, Expression, ExpressionKind, Path};
 use crate::units::Dimension;
-use std::rc::Rc;
 
 const QUANTITIES: &[(&str, ProcessQuantity)] = &[
     ("mean", ProcessQuantity::Mean),

@@ -3,7 +3,10 @@
 use super::{Context, Lowering, Scope};
 use crate::check::names::ItemId;
 use crate::check::value::{Covariance, Number, Scalar, Value};
-use crate::covariance::kernel::{Beyond, Kernel, LengthOf};
+use crate::covariance::kernel::{
+    BandLimited, Beyond, DampedCosine, Exponential, Harmonic, InvalidParameter, Kernel, Length, LengthFamily, Matern,
+    Oscillator, RationalQuadratic, SquaredExponential, Tabulated, Triangular, User,
+};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::{Symbol, Tape};
 use crate::language::tree::{Call, DeclarationKind, Expression, FunctionParameter, UnitExpression, Word};
@@ -164,27 +167,27 @@ impl Lowering<'_, '_, '_> {
         if scalars.len() < definition.parameters.len() {
             return Value::Fault;
         }
-        let known: Option<Vec<f64>> = scalars
+        let known: Option<Vec<(String, f64)>> = scalars
             .iter()
-            .map(|(_, scalar)| match scalar.value {
-                Number::Known(value) => Some(value),
+            .map(|(name, scalar)| match scalar.value {
+                Number::Known(value) => Some((name.to_string(), value)),
                 _ => None,
             })
             .collect();
         match (&definition.body, known) {
             (Body::Fault, _) => Value::Fault,
             (Body::Tape(tape, dimension), Some(values)) => Value::Kernel(Covariance {
-                kernel: Kernel::user(&super::word_text(&call.function), Arc::clone(tape), values),
+                kernel: User::new(super::word_text(&call.function), Arc::clone(tape), values).into(),
                 dimension: *dimension,
             }),
             (Body::Kernels, Some(_)) => self.expanded(item, call, scalars),
             // Called inside another kernel's body: known when that one is called.
             (Body::Tape(_, dimension), None) => Value::Kernel(Covariance {
-                kernel: Kernel::constant(1.0),
+                kernel: Kernel::Constant,
                 dimension: *dimension,
             }),
             (Body::Kernels, None) => Value::Kernel(Covariance {
-                kernel: Kernel::constant(1.0),
+                kernel: Kernel::Constant,
                 dimension: Dimension::PLAIN,
             }),
         }
@@ -234,20 +237,20 @@ impl Lowering<'_, '_, '_> {
             ..scope
         };
         let kernel = match name {
-            "squared_exponential" => self.with_length(span, call, plain, &[], |[]| LengthOf::SquaredExponential),
-            "exponential" => self.with_length(span, call, plain, &[], |[]| LengthOf::Exponential),
-            "triangular" => self.with_length(span, call, plain, &[], |[]| LengthOf::Triangular),
+            "squared_exponential" => self.with_length(span, call, plain, &[], |[]| LengthFamily::SquaredExponential),
+            "exponential" => self.with_length(span, call, plain, &[], |[]| LengthFamily::Exponential),
+            "triangular" => self.with_length(span, call, plain, &[], |[]| LengthFamily::Triangular),
             "matern" => {
                 let others = [("smoothness", Dimension::PLAIN, "5/2")];
-                self.with_length(span, call, plain, &others, |[smoothness]| LengthOf::Matern { smoothness })
+                self.with_length(span, call, plain, &others, |[smoothness]| LengthFamily::Matern { smoothness })
             }
             "rational_quadratic" => {
                 let others = [("mixture", Dimension::PLAIN, "2")];
-                self.with_length(span, call, plain, &others, |[mixture]| LengthOf::RationalQuadratic { mixture })
+                self.with_length(span, call, plain, &others, |[mixture]| LengthFamily::RationalQuadratic { mixture })
             }
             "damped_cosine" => {
                 let others = [("frequency", Dimension::ANGULAR_FREQUENCY, "0.1 Hz")];
-                self.with_length(span, call, plain, &others, |[frequency]| LengthOf::DampedCosine { frequency })
+                self.with_length(span, call, plain, &others, |[frequency]| LengthFamily::DampedCosine { frequency })
             }
             "oscillator" => {
                 let wanted = [
@@ -255,19 +258,19 @@ impl Lowering<'_, '_, '_> {
                     ("damping", Dimension::PLAIN, "2 %"),
                 ];
                 self.with_numbers(span, call, plain, wanted, |[frequency, damping]| {
-                    Kernel::oscillator(frequency, damping)
+                    Oscillator::new(frequency, damping).map(Kernel::from)
                 })
             }
             "harmonic" => {
                 let wanted = [("frequency", Dimension::ANGULAR_FREQUENCY, "0.1 Hz")];
-                self.with_numbers(span, call, plain, wanted, |[frequency]| Kernel::harmonic(frequency))
+                self.with_numbers(span, call, plain, wanted, |[frequency]| Harmonic::new(frequency).map(Kernel::from))
             }
             "band_limited" => {
                 let wanted = [
                     ("lower", Dimension::ANGULAR_FREQUENCY, "0 Hz"),
                     ("upper", Dimension::ANGULAR_FREQUENCY, "2 Hz"),
                 ];
-                self.with_numbers(span, call, plain, wanted, |[lower, upper]| Kernel::band_limited(lower, upper))
+                self.with_numbers(span, call, plain, wanted, |[lower, upper]| BandLimited::new(lower, upper).map(Kernel::from))
             }
             _ => self.tabulated_kernel(call),
         };
@@ -308,12 +311,12 @@ impl Lowering<'_, '_, '_> {
         call: &Call,
         scope: Scope<'_>,
         wanted: [(&str, Dimension, &str); N],
-        build: impl FnOnce([f64; N]) -> Result<Kernel, crate::covariance::kernel::InvalidParameter>,
+        build: impl FnOnce([f64; N]) -> Result<Kernel, InvalidParameter>,
     ) -> Option<Kernel> {
         let arguments = self.arguments(call, &[], &wanted.map(|(name, _, _)| name))?;
         match self.numbers(&arguments, scope, &wanted).ok()? {
             Some(values) => self.valid(span, &arguments, build(values)),
-            None => Some(Kernel::constant(1.0)),
+            None => Some(Kernel::Constant),
         }
     }
 
@@ -322,7 +325,7 @@ impl Lowering<'_, '_, '_> {
         &mut self,
         span: Span,
         arguments: &super::arguments::Arguments<'_>,
-        kernel: Result<Kernel, crate::covariance::kernel::InvalidParameter>,
+        kernel: Result<Kernel, InvalidParameter>,
     ) -> Option<Kernel> {
         match kernel {
             Ok(kernel) => Some(kernel),
@@ -343,7 +346,7 @@ impl Lowering<'_, '_, '_> {
         call: &Call,
         scope: Scope<'_>,
         others: &[(&str, Dimension, &str); N],
-        build: impl FnOnce([f64; N]) -> LengthOf,
+        build: impl FnOnce([f64; N]) -> LengthFamily,
     ) -> Option<Kernel> {
         let mut known: Vec<&str> = others.iter().map(|(name, _, _)| *name).collect();
         known.extend(["length", "scale_of_fluctuation"]);
@@ -361,32 +364,35 @@ impl Lowering<'_, '_, '_> {
         };
         let length = self.number(expression, scope, Dimension::TIME, &format!("`{name}`"), None)?;
         let (Some(values), Number::Known(length)) = (values.ok()?, length.value) else {
-            return Some(Kernel::constant(1.0));
+            return Some(Kernel::Constant);
         };
         let family = build(values);
         if fluctuation.is_none() {
-            return self.valid(span, &arguments, family.kernel(length));
+            return self.valid(span, &arguments, with_length_of(family, length));
         }
-        match family.from_scale_of_fluctuation(length) {
-            Ok((kernel, None)) => Some(kernel),
-            Ok((kernel, Some([short, long]))) => {
-                let (short, long) = (show_number(short, 6), show_number(long, 6));
-                self.report(
-                    Diagnostic::new(
-                        Code::KernelTwoLengths,
-                        expression.span,
-                        format!("two lengths have this scale of fluctuation: {short} s and {long} s"),
-                    )
-                    .here(format!("taken as a length of {short} s"))
-                    .help("give `length` to say which one is meant"),
-                );
-                Some(kernel)
+        let length = match family.length(length) {
+            Length::Unique(length) => length,
+            Length::Two { short, long } => {
+                self.two_lengths(expression.span, short, long);
+                short
             }
-            Err(why) => {
-                self.report(Diagnostic::new(Code::KernelFluctuation, expression.span, why).help("give `length` instead"));
-                None
+            Length::None(why) => {
+                let finding = Diagnostic::new(Code::KernelFluctuation, expression.span, why.to_string());
+                self.report(finding.help("give `length` instead"));
+                return None;
             }
-        }
+        };
+        self.valid(span, &arguments, with_length_of(family, length))
+    }
+
+    fn two_lengths(&mut self, place: Span, short: f64, long: f64) {
+        let (short, long) = (show_number(short, 6), show_number(long, 6));
+        let message = format!("two lengths have this scale of fluctuation: {short} s and {long} s");
+        self.report(
+            Diagnostic::new(Code::KernelTwoLengths, place, message)
+                .here(format!("taken as a length of {short} s"))
+                .help("give `length` to say which one is meant"),
+        );
     }
 
     /// `tabulated("file.csv", beyond: POLICY)`
@@ -396,8 +402,8 @@ impl Lowering<'_, '_, '_> {
         let file = arguments.subjects.first().copied()?;
         let table = self.kernel_table(file);
         let (beyond, table) = (beyond?, table?);
-        match Kernel::tabulated(table.lags.clone(), table.correlations.clone(), beyond) {
-            Ok(kernel) => Some(kernel),
+        match Tabulated::new(table.name.clone(), &table.rows, beyond) {
+            Ok(kernel) => Some(kernel.into()),
             Err(why) => {
                 self.report(Diagnostic::new(Code::TableContent, file.span, why.to_string()));
                 None
@@ -427,5 +433,17 @@ impl Lowering<'_, '_, '_> {
                 None
             }
         }
+    }
+}
+
+/// The kernel of a family with its length in s.
+fn with_length_of(family: LengthFamily, length: f64) -> Result<Kernel, InvalidParameter> {
+    match family {
+        LengthFamily::SquaredExponential => SquaredExponential::new(length).map(Kernel::from),
+        LengthFamily::Exponential => Exponential::new(length).map(Kernel::from),
+        LengthFamily::Matern { smoothness } => Matern::new(smoothness, length).map(Kernel::from),
+        LengthFamily::RationalQuadratic { mixture } => RationalQuadratic::new(length, mixture).map(Kernel::from),
+        LengthFamily::DampedCosine { frequency } => DampedCosine::new(length, frequency).map(Kernel::from),
+        LengthFamily::Triangular => Triangular::new(length).map(Kernel::from),
     }
 }

@@ -4,10 +4,9 @@ use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::{LimitQuantity, LimitState, Requirement, Time};
 use crate::check::names::{self, ItemId, choice};
 use crate::check::value::{Number, Value, Varying};
-use crate::covariance::source::Smoothness;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{
-    Condition, ConditionKind, Declaration, Expression, ExpressionKind, LimitLine, LimitLineKind, RequireComparison,
+    Condition, ConditionKind, Expression, ExpressionKind, LimitLine, LimitLineKind, RequireComparison,
     Word,
 };
 use crate::reliability::crossings::FailureRegion;
@@ -15,7 +14,6 @@ use crate::reliability::first_passage::Method;
 use crate::reliability::verdict::Demand;
 use crate::source::Span;
 use crate::units::Dimension;
-use std::rc::Rc;
 
 /// The quantities of a limit state by name, with their dimension.
 const QUANTITIES: &[(&str, LimitQuantity, Dimension)] = &[
@@ -61,7 +59,6 @@ impl Lowering<'_, '_, '_> {
     pub(super) fn limit_state(
         &mut self,
         item: ItemId,
-        declaration: &Declaration,
         name: &Word,
         lines: &[LimitLine],
         close: Span,
@@ -125,7 +122,6 @@ impl Lowering<'_, '_, '_> {
             requirements,
             tabulate,
             documentation: self.documentation(item),
-            basis: declaration.basis.as_ref().map(|text| text.value.to_string()),
             place: name.span,
         });
         self.limit_states.insert(item, index);
@@ -380,7 +376,7 @@ impl Lowering<'_, '_, '_> {
             .iter()
             .filter(|term| {
                 let source = self.model.sources.get(term.source.0 as usize);
-                source.is_some_and(|source| !source.smoothness().allows(term.operator.derivatives + 1))
+                source.is_some_and(|source| !source.has_derivative(term.operator.derivatives + 1))
             })
             .map(|term| term.source)
             .collect();

@@ -92,23 +92,20 @@ fn angle(place: Span, found: Dimension, wanted: Dimension, what: &str) -> Diagno
 }
 
 fn angle_help(found: Dimension, wanted: Dimension) -> String {
-    match (found, wanted) {
-        (Dimension::RATE, Dimension::ANGULAR_FREQUENCY) => {
-            "write `Hz` for cycles per second or `rad/s` for radians per second: `1/s` says neither, and the two differ by 2 pi"
-                .to_string()
-        }
-        (Dimension::ANGULAR_FREQUENCY, Dimension::RATE) => {
-            "a rate of events is per time, such as `/s` or `/year`: `Hz` and `rad/s` are for frequencies".to_string()
-        }
-        (Dimension::PLAIN, Dimension::ANGLE) => {
-            "multiply by `1 rad`, `1 deg` or `1 turn`, whichever the number counts".to_string()
-        }
-        (Dimension::ANGLE, Dimension::PLAIN) => {
-            "say how the angle is to be counted: `radians(...)` or `turns(...)`".to_string()
-        }
-        _ => "an angle counts as a dimension: `radians(...)` or `turns(...)` take it off, `1 rad` or `1 turn` put it on"
-            .to_string(),
-    }
+    let (plain, angle) = (Dimension::PLAIN, Dimension::ANGLE);
+    let (rate, frequency) = (Dimension::RATE, Dimension::ANGULAR_FREQUENCY);
+    let help = if (found, wanted) == (rate, frequency) {
+        "write `Hz` for cycles per second or `rad/s` for radians per second: `1/s` says neither, and they differ by 2 pi"
+    } else if (found, wanted) == (frequency, rate) {
+        "a rate of events is per time, such as `/s` or `/year`: `Hz` and `rad/s` are for frequencies"
+    } else if (found, wanted) == (plain, angle) {
+        "multiply by `1 rad`, `1 deg` or `1 turn`, whichever the number counts"
+    } else if (found, wanted) == (angle, plain) {
+        "say how the angle is to be counted: `radians(...)` or `turns(...)`"
+    } else {
+        "an angle counts as a dimension: `radians(...)` or `turns(...)` take it off, `1 rad` or `1 turn` put it on"
+    };
+    help.to_string()
 }
 
 /// What is likely meant where one dimension stands for another.

@@ -213,7 +213,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, "correlated variables"),
             DeclarationKind::Accept { .. } => self.not_yet(declaration.keyword, "accepted warnings"),
             DeclarationKind::LimitState { name, lines, close } => {
-                self.limit_state(item, declaration, name, lines, *close);
+                self.limit_state(item, name, lines, *close);
             }
             DeclarationKind::Expect {
                 quantity,

@@ -2,7 +2,6 @@
 
 use super::{Lowering, Scope};
 use crate::check::value::{Number, Value, Varying};
-use crate::covariance::source::Smoothness;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Expression};
 use crate::units::Dimension;
@@ -66,7 +65,7 @@ impl Lowering<'_, '_, '_> {
             let Some(source) = self.model.sources.get(term.source.0 as usize) else {
                 continue;
             };
-            if !source.smoothness().allows(term.operator.derivatives) {
+            if !source.has_derivative(term.operator.derivatives) {
                 let finding = self.not_differentiable(subject.span, term.source, "has no derivative to use here");
                 self.report(finding);
                 return Value::Fault;
@@ -88,17 +87,13 @@ impl Lowering<'_, '_, '_> {
         consequence: &str,
     ) -> Diagnostic {
         let source = &self.model.sources[source.0 as usize];
-        let why = match source.smoothness() {
-            Smoothness::Derivatives { why, .. } => why.clone(),
-            Smoothness::Analytic => String::new(),
-        };
         Diagnostic::new(
             Code::ProcessNotDifferentiable,
             place,
             format!("the process `{}` {consequence}", source.name),
         )
         .here("needs its derivative")
-        .label(source.place, why)
+        .label(source.place, source.roughness_in_words())
         .help(
             "use a kernel that is smoother at lag 0, such as `matern(smoothness: 5/2, ...)` or \
              `squared_exponential(...)`, if the physics allows it: a rough kernel crosses any level infinitely often",

@@ -5,8 +5,8 @@ use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::Kind;
 use crate::check::names::ItemId;
 use crate::check::value::{Covariance, Number, Scalar, Value};
-use crate::covariance::kernel::Kernel;
-use crate::covariance::source::{Smoothness, Source};
+use crate::covariance::kernel::{Kernel, Smoothness, Unavailable};
+use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Expression, ExpressionKind, Word};
 use crate::source::Span;
@@ -86,10 +86,10 @@ impl Lowering<'_, '_, '_> {
 
     fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
         let source = Source::new(self.names.full_name(item), description.kernel, name.span);
-        if let Smoothness::Derivatives { unclear: true, why, .. } = source.smoothness() {
+        if let Smoothness::Unclear { reason } = source.smoothness() {
             let message = format!("it cannot be told how smooth the process `{}` is", name.text);
             let finding = Diagnostic::new(Code::KernelUnclear, name.span, message)
-                .here(why.clone())
+                .here(reason.clone())
                 .help("write the kernel so that its behaviour at lag 0 can be read off, without min, max or abs there");
             self.report(finding);
             return None;
@@ -181,7 +181,7 @@ impl Lowering<'_, '_, '_> {
         let value = known(&deviation)?;
         Some(Description {
             mean: mean_value,
-            kernel: kernel.scaled(value * value),
+            kernel: kernel.scaled(value * value).ok()?,
             dimension: deviation.dimension,
             unit: mean.unit.clone().or(deviation.unit),
         })
@@ -285,8 +285,20 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
+    /// The value at lag 0; its absence is reported.
+    fn at_zero(&mut self, kernel: &Kernel, place: Span) -> Option<f64> {
+        match kernel.value(0.0) {
+            Ok(value) => Some(value),
+            Err(why) => {
+                let message = "this kernel has no value at lag 0";
+                self.report(Diagnostic::new(Code::KernelUnclear, place, message).here(why.to_string()));
+                None
+            }
+        }
+    }
+
     fn one_at_zero(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
-        let at_zero = kernel.value(0.0)?;
+        let at_zero = self.at_zero(kernel, place)?;
         if (at_zero - 1.0).abs() <= ONE {
             return Some(());
         }
@@ -345,7 +357,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     fn positive_variance(&mut self, kernel: &Kernel, place: Span, what: &str) -> Option<()> {
-        let variance = kernel.value(0.0)?;
+        let variance = self.at_zero(kernel, place)?;
         if variance > 0.0 && variance.is_finite() {
             return Some(());
         }
@@ -365,7 +377,7 @@ impl Lowering<'_, '_, '_> {
         let mean_value = known(&mean)?;
         let square = mean_value * mean_value;
         let unit = Unit::si(raw.dimension);
-        let at_zero = raw.kernel.value(0.0)?;
+        let at_zero = self.at_zero(&raw.kernel, expression.span)?;
         if at_zero <= square {
             let (total, square) = (show(at_zero, &unit, 6), show(square, &unit, 6));
             let message = format!("the mean square of `{}` must be larger than the square of its mean", subject.name.text);
@@ -378,9 +390,9 @@ impl Lowering<'_, '_, '_> {
         }
         let (constant, found_how) = match raw.kernel.constant_part() {
             Some(constant) => (constant, "its constant part"),
-            None => (raw.kernel.at_long_lag(), "its value at a very long lag"),
+            None => (raw.kernel.at_long_lag().unwrap_or(f64::NAN), "its value at a very long lag"),
         };
-        if (constant - square).abs() > MEAN_SQUARE * at_zero {
+        if !((constant - square).abs() <= MEAN_SQUARE * at_zero) {
             let (constant, square) = (show(constant, &unit, 6), show(square, &unit, 6));
             let message = format!(
                 "the autocorrelation of `{}` does not go down to the square of its mean",
@@ -412,9 +424,13 @@ impl Lowering<'_, '_, '_> {
         if kernel.valid_by_construction() {
             return Some(());
         }
-        let at_zero = kernel.value(0.0)?;
+        let at_zero = self.at_zero(kernel, place)?;
         for lag in kernel.probing_lags() {
-            let Some(value) = kernel.value(lag) else { continue };
+            let value = match kernel.value(lag) {
+                Ok(value) => value,
+                Err(Unavailable::NoValue { .. }) => f64::NAN,
+                Err(_) => continue,
+            };
             if value.abs() <= at_zero * (1.0 + 1e-9) {
                 continue;
             }

@@ -4,9 +4,9 @@ use super::Lowering;
 use crate::check::names::{choice, near};
 use crate::check::parts::unreadable;
 use crate::diagnostics::{Code, Diagnostic};
-use crate::language::parser;
 use crate::language::tree::{Expression, ExpressionKind};
 use crate::source::{FileId, Span, beside};
+use crate::language::parse_expression;
 use crate::units::{self, Dimension, Unit};
 use std::rc::Rc;
 
@@ -18,10 +18,10 @@ const MOST_FINDINGS: usize = 20;
 
 /// The content of a kernel's table, in SI units.
 pub(super) struct Table {
-    /// The lags in s, ascending from 0.
-    pub lags: Vec<f64>,
-    /// The correlation at each lag.
-    pub correlations: Vec<f64>,
+    /// The file as the model names it.
+    pub name: String,
+    /// Lag in s and correlation, the lags ascending from 0.
+    pub rows: Vec<(f64, f64)>,
 }
 
 /// A column that a table must have.
@@ -55,7 +55,7 @@ impl Lowering<'_, '_, '_> {
             return known.clone();
         }
         let table = match self.library.data(&path) {
-            Ok(id) => self.read_kernel_table(id, text.span),
+            Ok(id) => self.read_kernel_table(id, &text.value, text.span),
             Err(why) => {
                 self.report(unreadable(text.span, &path, &why));
                 None
@@ -66,7 +66,7 @@ impl Lowering<'_, '_, '_> {
         table
     }
 
-    fn read_kernel_table(&mut self, file: FileId, named: Span) -> Option<Table> {
+    fn read_kernel_table(&mut self, file: FileId, name: &str, named: Span) -> Option<Table> {
         let [lags, correlations] = self.columns(file, named, &KERNEL_COLUMNS)?;
         let rows: Vec<(f64, f64, Span)> = lags
             .into_iter()
@@ -97,8 +97,8 @@ impl Lowering<'_, '_, '_> {
             }
         }
         (self.diagnostics.len() == before).then(|| Table {
-            lags: rows.iter().map(|row| row.0).collect(),
-            correlations: rows.iter().map(|row| row.1).collect(),
+            name: name.to_string(),
+            rows: rows.iter().map(|(lag, correlation, _)| (*lag, *correlation)).collect(),
         })
     }
 
@@ -197,7 +197,7 @@ impl Lowering<'_, '_, '_> {
         let unit = if text.is_empty() {
             Unit::one()
         } else {
-            match parser::parse_unit(head.file, text).and_then(|unit| units::resolve(&unit).ok()) {
+            match header_unit(head.file, text) {
                 Some(unit) => unit,
                 None => {
                     let message = format!("the unit `{text}` of the column `{}` cannot be read", wanted.name);
@@ -223,6 +223,15 @@ impl Lowering<'_, '_, '_> {
             return None;
         }
         Some((index, Rc::new(unit)))
+    }
+}
+
+/// The unit of a column, read as the language reads it behind a number.
+fn header_unit(file: FileId, text: &str) -> Option<Unit> {
+    let expression = parse_expression(file, &format!("1 {text}")).ok()?;
+    match &expression.kind {
+        ExpressionKind::Number(number) => units::resolve(number.unit.as_ref()?).ok(),
+        _ => None,
     }
 }
 
