@@ -1,4 +1,5 @@
 //! Checks of the program from outside, one binary for all of them.
 
+mod language;
 mod published;
 mod reference;

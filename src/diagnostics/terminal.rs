@@ -27,7 +27,9 @@ pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], col
     };
     for diagnostic in diagnostics.iter().take(MOST_DRAWN) {
         if fits(files, diagnostic) {
-            report(files, diagnostic, color).write(&mut cache, &mut *out)?;
+            let mut drawn = Vec::new();
+            report(files, diagnostic, color).write(&mut cache, &mut drawn)?;
+            out.write_all(if color { &drawn } else { unpainted(&mut drawn) })?;
         } else {
             plain(out, files, diagnostic)?;
         }
@@ -37,6 +39,20 @@ pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], col
         writeln!(out, "... and {more} more; `check --json` lists them all")?;
     }
     Ok(())
+}
+
+/// The drawing without the paint of its heading, which ariadne puts on even where colours are off.
+fn unpainted(drawn: &mut Vec<u8>) -> &[u8] {
+    const END: &[u8] = b"\x1b[0m";
+    if drawn.starts_with(b"\x1b[") {
+        if let Some(at) = drawn.windows(END.len()).position(|part| part == END) {
+            drawn.drain(at..at + END.len());
+        }
+        if let Some(at) = drawn.iter().position(|byte| *byte == b'm') {
+            drawn.drain(..=at);
+        }
+    }
+    drawn
 }
 
 /// Whether every place of the finding lies on lines short enough to draw.
