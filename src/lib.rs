@@ -4,5 +4,6 @@ pub mod covariance;
 pub mod diagnostics;
 pub mod expression;
 pub mod language;
+pub mod numerics;
 pub mod source;
 pub mod units;

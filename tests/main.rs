@@ -1,3 +1,4 @@
 //! Checks of the program from outside, one binary for all of them.
 
 mod published;
+mod reference;
