@@ -215,7 +215,7 @@ impl<'s> MomentTable<'s> {
         sum.add(Moment::from(&kernel::Moment::Finite { value: total * total * kernel.value(0.0).ok()?, error: 0.0 }));
         for (index, one) in terms.iter().enumerate() {
             for other in &terms[index + 1..] {
-                let lost = kernel.drop(one.operator.delay - other.operator.delay).ok()?;
+                let lost = kernel.loss(one.operator.delay - other.operator.delay).ok()?;
                 let weight = -2.0 * one.coefficient() * other.coefficient();
                 let value = weight * lost;
                 sum.add(Moment::Finite {

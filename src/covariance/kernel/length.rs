@@ -2,11 +2,12 @@
 
 use std::fmt;
 
-use super::family::{Matern, RationalQuadratic};
+use super::family::{DampedCosine, Exponential, Matern, RationalQuadratic, SquaredExponential, Triangular};
+use super::{InvalidParameter, Kernel};
 
 /// A family with a length, its other parameters set.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub enum LengthFamily {
+pub enum LengthOf {
     /// `squared_exponential`
     SquaredExponential,
     /// `exponential`
@@ -70,7 +71,19 @@ impl fmt::Display for NoLength {
     }
 }
 
-impl LengthFamily {
+impl LengthOf {
+    /// The kernel with that length, in s.
+    pub fn kernel(&self, length: f64) -> Result<Kernel, InvalidParameter> {
+        Ok(match *self {
+            Self::SquaredExponential => SquaredExponential::new(length)?.into(),
+            Self::Exponential => Exponential::new(length)?.into(),
+            Self::Matern { smoothness } => Matern::new(smoothness, length)?.into(),
+            Self::RationalQuadratic { mixture } => RationalQuadratic::new(length, mixture)?.into(),
+            Self::DampedCosine { frequency } => DampedCosine::new(length, frequency)?.into(),
+            Self::Triangular => Triangular::new(length)?.into(),
+        })
+    }
+
     /// The length that makes the integral over all lags `scale`, in s.
     pub fn length(&self, scale: f64) -> Length {
         if !(scale.is_finite() && scale > 0.0) {

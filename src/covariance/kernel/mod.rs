@@ -12,6 +12,7 @@
 //! computed with a stated error.
 
 mod algebra;
+mod constant;
 mod family;
 mod length;
 mod moments;
@@ -32,7 +33,7 @@ pub use family::{
     BandLimited, Correlation, DampedCosine, Exponential, Family, Harmonic, InvalidParameter, Kink, Matern, Oscillator,
     RationalQuadratic, Rough, SquaredExponential, Triangular,
 };
-pub use length::{Length, LengthFamily, NoLength};
+pub use length::{Length, LengthOf, NoLength};
 pub use moments::{Moment, SpectralMoments};
 pub use smoothness::Smoothness;
 pub use tabulated::{Beyond, InvalidTable, Tabulated};

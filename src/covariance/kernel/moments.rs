@@ -2,7 +2,7 @@
 
 use std::f64::consts::FRAC_2_PI;
 
-use super::{Correlation, Estimate, Kernel, Peak, Unavailable, transform};
+use super::{Correlation, Estimate, Kernel, Unavailable, transform};
 use crate::expression::{Series, SeriesTerm};
 use crate::numerics::quadrature::{self, Tolerance};
 
@@ -192,7 +192,7 @@ impl Kernel {
             return Ok(Estimate::closed(f64::INFINITY));
         }
         let integrand = |omega: f64| self.density(omega).map_or(f64::NAN, |density| omega * density.value);
-        let frequencies = around(&self.peaks()?);
+        let frequencies = self.frequency_grid()?;
         let integral = quadrature::to_infinity(integrand, &frequencies, Tolerance::relative(1e-11), 400_000);
         let continuous = integral.map_or(Estimate { value: 0.0, error: f64::INFINITY }, |integral| Estimate {
             value: integral.value,
@@ -251,22 +251,3 @@ fn leibniz(a: &SpectralMoments, b: &SpectralMoments) -> SpectralMoments {
     let fourth = a4.product(b0).plus(&a2.product(b2).times(6.0)).plus(&a0.product(b4));
     SpectralMoments { lambda: [a0.product(b0), a1.clone(), second, fourth] }
 }
-
-/// Frequencies graded towards each peak of a density, from 0 up.
-fn around(peaks: &[Peak]) -> Vec<f64> {
-    let mut frequencies = vec![0.0];
-    for peak in peaks {
-        frequencies.push(peak.frequency);
-        for power in 0..=GRADES {
-            let distance = peak.width * 8.0_f64.powi(power);
-            frequencies.extend([peak.frequency - distance, peak.frequency + distance]);
-        }
-    }
-    frequencies.retain(|frequency| *frequency >= 0.0 && frequency.is_finite());
-    frequencies.sort_by(f64::total_cmp);
-    frequencies.dedup();
-    frequencies
-}
-
-/// How often the distance from a peak grows eightfold.
-const GRADES: i32 = 3;

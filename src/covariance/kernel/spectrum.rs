@@ -8,6 +8,9 @@ use std::f64::consts::{FRAC_2_PI, PI};
 use super::family::Correlation;
 use super::{Estimate, Kernel, Line, Peak, Unavailable, transform};
 
+/// How often the distance from a peak grows eightfold.
+const GRADES: i32 = 3;
+
 /// More spectral lines than that are not kept.
 pub(super) const MOST_LINES: usize = 4096;
 
@@ -88,6 +91,23 @@ impl Kernel {
         })
     }
 
+    /// Rising frequencies from 0, graded towards each peak of the density: what an integral over frequency begins with.
+    /// Beyond the last of them the density only falls.
+    pub fn frequency_grid(&self) -> Result<Vec<f64>, Unavailable> {
+        let mut grid = vec![0.0];
+        for peak in self.peaks()? {
+            grid.push(peak.frequency);
+            for power in 0..=GRADES {
+                let distance = peak.width * 8.0_f64.powi(power);
+                grid.extend([peak.frequency - distance, peak.frequency + distance]);
+            }
+        }
+        grid.retain(|frequency| *frequency >= 0.0 && frequency.is_finite());
+        grid.sort_by(f64::total_cmp);
+        grid.dedup();
+        Ok(grid)
+    }
+
     /// Whether the spectrum has a continuous part.
     pub fn has_density(&self) -> bool {
         match self {
@@ -166,6 +186,9 @@ fn merged(mut lines: Vec<Line>) -> Vec<Line> {
             _ => sums.push(line),
         }
     }
+    // A constant that was taken off cancels up to rounding.
+    let total: f64 = sums.iter().map(|line| line.power.abs()).sum();
+    sums.retain(|line| line.power.abs() > 8.0 * f64::EPSILON * total);
     sums
 }
 

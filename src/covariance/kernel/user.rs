@@ -12,6 +12,8 @@ pub struct User {
     name: String,
     tape: Arc<Tape>,
     arguments: Vec<(String, f64)>,
+    /// Taken off the expression: the constant part it was given with.
+    constant: f64,
     times: Option<(f64, f64)>,
 }
 
@@ -24,7 +26,7 @@ impl fmt::Debug for User {
 /// Two user kernels are the same if they are one expression with the same arguments.
 impl PartialEq for User {
     fn eq(&self, other: &Self) -> bool {
-        Arc::ptr_eq(&self.tape, &other.tape) && self.name == other.name && self.arguments == other.arguments
+        Arc::ptr_eq(&self.tape, &other.tape) && self.name == other.name && self.arguments == other.arguments && self.constant == other.constant
     }
 }
 
@@ -32,7 +34,7 @@ impl User {
     /// From the name of the kernel, its expression in the lag (s) and arguments, and their names and values in SI
     /// units, in their order.
     pub fn new(name: impl Into<String>, tape: Arc<Tape>, arguments: Vec<(String, f64)>) -> Self {
-        let mut user = Self { name: name.into(), tape, arguments, times: None };
+        let mut user = Self { name: name.into(), tape, arguments, constant: 0.0, times: None };
         user.times = user.find_times();
         user
     }
@@ -42,10 +44,17 @@ impl User {
         &self.name
     }
 
+    /// The kernel less a constant.
+    pub(super) fn less(&self, constant: f64) -> Self {
+        let mut user = Self { constant: self.constant + constant, ..self.clone() };
+        user.times = user.find_times();
+        user
+    }
+
     /// Its value at a lag, which may be no number.
     fn evaluate(&self, lag: f64) -> f64 {
         let arguments: Vec<f64> = self.arguments.iter().map(|(_, value)| *value).collect();
-        self.tape.evaluate(&lag, &arguments)
+        self.tape.evaluate(&lag, &arguments) - self.constant
     }
 
     /// Its series right of a lag, or left of it in terms of the distance.
@@ -53,7 +62,7 @@ impl User {
         let arguments: Vec<Series> = self.arguments.iter().map(|(_, value)| Series::constant(*value)).collect();
         Series::expand(0.0, order, |distance| {
             let there = Series::constant(lag).add(&distance.mul(&Series::constant(direction)));
-            self.tape.evaluate(&there, &arguments)
+            self.tape.evaluate(&there, &arguments).sub(&Series::constant(self.constant))
         })
     }
 
@@ -146,6 +155,7 @@ impl fmt::Display for User {
             let comma = if place > 0 { ", " } else { "" };
             write!(out, "{comma}{name}: {value}")?;
         }
-        out.write_str(")")
+        out.write_str(")")?;
+        if self.constant == 0.0 { Ok(()) } else { write!(out, " - {}", self.constant) }
     }
 }
