@@ -226,7 +226,10 @@ pub struct Warning {
 impl Results {
     /// Whether every requirement is met and every expectation holds.
     pub fn all_hold(&self) -> bool {
-        let mut requirements = self.limit_states.iter().flat_map(|limit_state| &limit_state.requirements);
+        let mut requirements = self
+            .limit_states
+            .iter()
+            .flat_map(|limit_state| &limit_state.requirements);
         requirements.all(|requirement| requirement.verdict == "met")
             && self.expectations.iter().all(|expectation| expectation.holds)
     }

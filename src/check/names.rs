@@ -213,8 +213,12 @@ pub fn place(declaration: &Declaration) -> Span {
 
 fn reserved(word: &Word, meaning: &str) -> Diagnostic {
     let name = &word.text;
-    Diagnostic::new(Code::NameReserved, word.span, format!("`{name}` cannot be declared: it is {meaning}"))
-        .help(format!("choose another name, such as `{name}_1`"))
+    Diagnostic::new(
+        Code::NameReserved,
+        word.span,
+        format!("`{name}` cannot be declared: it is {meaning}"),
+    )
+    .help(format!("choose another name, such as `{name}_1`"))
 }
 
 fn count(length: usize) -> u32 {

@@ -87,7 +87,11 @@ fn circular(names: &Names<'_>, circle: &[ItemId]) -> Diagnostic {
     let message = match circle.len() {
         1 => format!("`{name}` is defined by itself"),
         _ => {
-            let chain: Vec<String> = circle.iter().take(8).map(|item| format!("`{}`", names.full_name(*item))).collect();
+            let chain: Vec<String> = circle
+                .iter()
+                .take(8)
+                .map(|item| format!("`{}`", names.full_name(*item)))
+                .collect();
             format!("these are defined by each other: {} -> `{name}`", chain.join(" -> "))
         }
     };
@@ -104,7 +108,7 @@ fn circular(names: &Names<'_>, circle: &[ItemId]) -> Diagnostic {
 fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
     let at = names.item(item);
     let mut found = Vec::new();
-    let mut look = |path: &Path, from: InstanceId, found: &mut Vec<ItemId>| {
+    let look = |path: &Path, from: InstanceId, found: &mut Vec<ItemId>| {
         if let Ok(Resolved::Item(need)) = names.resolve(path, from) {
             found.push(need);
         }
@@ -114,7 +118,9 @@ fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
     match &names.declaration(item).kind {
         DeclarationKind::Parameter { name, value, .. } => {
             if let Some((origin, _, arguments)) = names.parts().arguments(here) {
-                let set = arguments.iter().find(|one| one.name.as_ref().is_some_and(|word| word.text == name.text));
+                let set = arguments
+                    .iter()
+                    .find(|one| one.name.as_ref().is_some_and(|word| word.text == name.text));
                 if let Some(argument) = set {
                     expression(&argument.value, origin.user);
                     return found;
@@ -130,7 +136,9 @@ fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
         DeclarationKind::LimitState { lines, .. } => {
             for line in lines {
                 match &line.kind {
-                    LimitLineKind::FailureWhen(condition) => conditions(condition, &mut |value| expression(value, here)),
+                    LimitLineKind::FailureWhen(condition) => {
+                        conditions(condition, &mut |value| expression(value, here))
+                    }
                     LimitLineKind::ReferencePeriod(value) => expression(value, here),
                     LimitLineKind::Require { value, over, .. } => {
                         expression(value, here);

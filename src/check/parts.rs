@@ -1,8 +1,8 @@
 //! Files to instances: every `use` makes a fresh copy of another file's declarations.
 
 use crate::diagnostics::{Code, Diagnostic};
-use crate::language::tree::{Argument, Declaration, DeclarationKind, Text, Tree, Word};
 use crate::language::parse;
+use crate::language::tree::{Argument, Declaration, DeclarationKind, Text, Tree, Word};
 use crate::source::{FileId, Files, LARGEST_FILE, Reader, Span, Unreadable, beside};
 use std::collections::HashMap;
 use std::path::{Path, PathBuf};
@@ -254,9 +254,10 @@ pub fn unreadable(place: Span, path: &Path, why: &Unreadable) -> Diagnostic {
         Unreadable::Missing => finding.help("check the name; a path is relative to the file that names it"),
         Unreadable::Folder => finding.help("name a file in it"),
         Unreadable::NotAFile => finding.help("name an ordinary file"),
-        Unreadable::TooLarge => {
-            finding.help(format!("split it: at most {} MiB are read from one file", LARGEST_FILE >> 20))
-        }
+        Unreadable::TooLarge => finding.help(format!(
+            "split it: at most {} MiB are read from one file",
+            LARGEST_FILE >> 20
+        )),
         Unreadable::NotUtf8(_) => finding.help("save it as UTF-8 text"),
         Unreadable::Other(_) => finding,
     }

@@ -15,12 +15,20 @@ pub(super) fn run(arguments: &CheckArguments, color: ColorChoice) -> io::Result<
             status = Status::Wrong;
         }
         if arguments.model.json {
-            documents.push(serde_json::to_value(json::document(&session.files, &session.diagnostics))?);
+            documents.push(serde_json::to_value(json::document(
+                &session.files,
+                &session.diagnostics,
+            ))?);
             continue;
         }
         session.show(color)?;
         print(|out| match &session.model {
-            Some(model) => writeln!(out, "{}: {}", path.display(), contents(model, session.diagnostics.len())),
+            Some(model) => writeln!(
+                out,
+                "{}: {}",
+                path.display(),
+                contents(model, session.diagnostics.len())
+            ),
             None => Ok(()),
         })?;
     }

@@ -10,7 +10,10 @@ use std::io::{self, Write};
 
 pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Result<Status> {
     let files = &arguments.model.files;
-    let sessions: Vec<Session> = files.iter().map(|path| Session::open(path, &arguments.model, true)).collect();
+    let sessions: Vec<Session> = files
+        .iter()
+        .map(|path| Session::open(path, &arguments.model, true))
+        .collect();
     for session in &sessions {
         session.show(color)?;
     }
@@ -24,7 +27,12 @@ pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Resu
     let mut documents: Vec<Results> = Vec::new();
     for session in &sessions {
         let Some(model) = &session.model else { continue };
-        documents.push(results::evaluate(&session.files, model, &session.diagnostics, &arguments.only));
+        documents.push(results::evaluate(
+            &session.files,
+            model,
+            &session.diagnostics,
+            &arguments.only,
+        ));
     }
     if arguments.model.json {
         print(|out| write_documents(out, &documents))?;
@@ -64,7 +72,10 @@ fn unknown_limit_state(sessions: &[Session], only: &[String]) -> Option<String> 
     Some(match (near, known.as_slice()) {
         (Some(near), _) => format!("there is no limit state called `{unknown}`; did you mean {near}?"),
         (None, []) => "there are no limit states".to_string(),
-        (None, known) => format!("there is no limit state called `{unknown}`; there are `{}`", known.join("`, `")),
+        (None, known) => format!(
+            "there is no limit state called `{unknown}`; there are `{}`",
+            known.join("`, `")
+        ),
     })
 }
 

@@ -122,7 +122,11 @@ pub fn run(arguments: impl IntoIterator<Item = OsString>) -> ExitCode {
         Ok(line) => line,
         Err(error) => {
             // Help and version are asked for; anything else is a fault of the command line.
-            let status = if error.use_stderr() { Status::Wrong } else { Status::Holds };
+            let status = if error.use_stderr() {
+                Status::Wrong
+            } else {
+                Status::Holds
+            };
             // A closed pipe is nobody's fault here.
             let _ = error.print();
             return status.into();

@@ -61,7 +61,9 @@ impl Session {
         let color = match color {
             ColorChoice::Always => true,
             ColorChoice::Never => false,
-            ColorChoice::Auto => error.is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty()),
+            ColorChoice::Auto => {
+                error.is_terminal() && std::env::var_os("NO_COLOR").is_none_or(|value| value.is_empty())
+            }
         };
         let mut out = io::BufWriter::new(error.lock());
         terminal::write(&mut out, &self.files, &self.diagnostics, color)?;

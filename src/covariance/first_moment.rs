@@ -69,7 +69,10 @@ impl Pair {
             Ok(lines) => lines.iter().map(|line| line.power * self.weight(line.frequency)).sum(),
             Err(_) => return Moment::Unreached,
         };
-        let of_lines = Moment::Finite { value: lines, error: 0.0 };
+        let of_lines = Moment::Finite {
+            value: lines,
+            error: 0.0,
+        };
         if kernel.has_density() {
             of_lines.plus(self.of_density(kernel, scale))
         } else {

@@ -54,7 +54,11 @@ impl Exact {
     pub fn product(a: f64, b: f64) -> Self {
         let high = a * b;
         // Beyond the range of doubles the low part would be infinity minus infinity.
-        let low = if high.is_finite() { f64::mul_add(a, b, -high) } else { 0.0 };
+        let low = if high.is_finite() {
+            f64::mul_add(a, b, -high)
+        } else {
+            0.0
+        };
         Self { high, low }
     }
 

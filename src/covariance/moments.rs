@@ -101,7 +101,9 @@ pub struct FormMoments {
 impl FormMoments {
     /// `sqrt(lambda_0)`, in the form's unit.
     pub fn standard_deviation(&self) -> f64 {
-        self.lambda[0].value().map_or(f64::NAN, |variance| variance.max(0.0).sqrt())
+        self.lambda[0]
+            .value()
+            .map_or(f64::NAN, |variance| variance.max(0.0).sqrt())
     }
 
     /// `sqrt(lambda_2)`, in the form's unit per second; infinite where the form has no derivative, `None` where it could
@@ -171,7 +173,10 @@ impl<'s> MomentTable<'s> {
         {
             let moments = self.of_sources[source.0 as usize].get_or_init(|| self.kernel(source).moments());
             let square = term.coefficient() * term.coefficient();
-            return moments.lambda.each_ref().map(|moment| Moment::from(moment).times(square));
+            return moments
+                .lambda
+                .each_ref()
+                .map(|moment| Moment::from(moment).times(square));
         }
         [
             self.even(source, terms, 0),
@@ -197,7 +202,9 @@ impl<'s> MomentTable<'s> {
             }
         }
         match sum.cancelled() {
-            true if n == 0 => self.variance_by_differences(source, terms).unwrap_or_else(|| sum.moment()),
+            true if n == 0 => self
+                .variance_by_differences(source, terms)
+                .unwrap_or_else(|| sum.moment()),
             _ => sum.moment(),
         }
     }
@@ -210,9 +217,15 @@ impl<'s> MomentTable<'s> {
         if terms.iter().any(|term| term.operator.derivatives > 0) {
             return None;
         }
-        let total = terms.iter().fold(Exact::default(), |sum, term| sum.plus(Exact::new(term.coefficient()))).value();
+        let total = terms
+            .iter()
+            .fold(Exact::default(), |sum, term| sum.plus(Exact::new(term.coefficient())))
+            .value();
         let mut sum = Sum::default();
-        sum.add(Moment::from(&kernel::Moment::Finite { value: total * total * kernel.value(0.0).ok()?, error: 0.0 }));
+        sum.add(Moment::from(&kernel::Moment::Finite {
+            value: total * total * kernel.value(0.0).ok()?,
+            error: 0.0,
+        }));
         for (index, one) in terms.iter().enumerate() {
             for other in &terms[index + 1..] {
                 let lost = kernel.loss(one.operator.delay - other.operator.delay).ok()?;
@@ -231,7 +244,8 @@ impl<'s> MomentTable<'s> {
     fn derivative(&self, source: SourceId, order: usize, lag: f64) -> Moment {
         let size = lag.abs();
         let found = if size == 0.0 {
-            let known = self.at_zero[source.0 as usize].get_or_init(|| derivatives_at_zero(&self.sources[source.0 as usize]));
+            let known =
+                self.at_zero[source.0 as usize].get_or_init(|| derivatives_at_zero(&self.sources[source.0 as usize]));
             known.get(order).copied()
         } else {
             let key = (source, size.to_bits());

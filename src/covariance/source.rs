@@ -52,10 +52,14 @@ impl Source {
                     0 if limiting.exponent <= 1.0 => {
                         format!("its correlation has a kink at lag 0 (it falls like {term}), so it has no derivative")
                     }
-                    0 => format!("its correlation falls like {term} at lag 0, slower than tau^2, so it has no derivative"),
+                    0 => format!(
+                        "its correlation falls like {term} at lag 0, slower than tau^2, so it has no derivative"
+                    ),
                     1 => format!("its correlation has a term {term} at lag 0, so it has one derivative and no more"),
                     several => {
-                        format!("its correlation has a term {term} at lag 0, so it has {several} derivatives and no more")
+                        format!(
+                            "its correlation has a term {term} at lag 0, so it has {several} derivatives and no more"
+                        )
                     }
                 }
             }

@@ -87,9 +87,9 @@ fn plain(out: &mut dyn Write, files: &Files, diagnostic: &Diagnostic) -> io::Res
 }
 
 fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Report<'a, Place> {
-    let (word, tint) = match diagnostic.severity() {
-        Severity::Error => ("error", Color::Red),
-        Severity::Warning => ("warning", Color::Yellow),
+    let (kind, tint) = match diagnostic.severity() {
+        Severity::Error => (ReportKind::Error, Color::Red),
+        Severity::Warning => (ReportKind::Warning, Color::Yellow),
     };
     let config = Config::default().with_index_type(IndexType::Byte).with_color(color);
     let here = if diagnostic.here.is_empty() {
@@ -101,7 +101,7 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
         .with_color(tint)
         .with_order(-1)
         .with_message(here);
-    let mut builder = Report::build(ReportKind::Custom(word, tint), place(files, diagnostic.place))
+    let mut builder = Report::build(kind, place(files, diagnostic.place))
         .with_config(config)
         .with_code(diagnostic.code.name())
         .with_message(&diagnostic.message)

@@ -65,7 +65,11 @@ pub fn ln_sum(a: f64, b: f64) -> f64 {
 
 /// `ln(1 - e^a)` for `a <= 0` (Mächler 2012, "Accurately computing log(1 - exp(-|a|))").
 pub fn ln_complement(a: f64) -> f64 {
-    if a > -LN_2 { (-a.exp_m1()).ln() } else { (-a.exp()).ln_1p() }
+    if a > -LN_2 {
+        (-a.exp_m1()).ln()
+    } else {
+        (-a.exp()).ln_1p()
+    }
 }
 
 /// `ln(1 - e^(-x))` for `x = e^ln_x`, however small `x` is.

@@ -72,7 +72,11 @@ mod tests {
 
     #[test]
     fn columns_align_by_characters() {
-        let rows = [vec!["µ".into(), "1".into()], vec!["long".into(), "10".into()], vec!["end".into()]];
+        let rows = [
+            vec!["µ".into(), "1".into()],
+            vec!["long".into(), "10".into()],
+            vec!["end".into()],
+        ];
         let text = written(|out| super::write(out, 2, &[Side::Left, Side::Right], &rows));
         assert_eq!(text, "  µ       1\n  long   10\n  end\n");
     }

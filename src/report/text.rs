@@ -42,7 +42,11 @@ fn head(out: &mut dyn Write, results: &Results) -> io::Result<()> {
     }
     let digest: String = results.model.sha256.chars().take(12).collect();
     let tool = &results.tool;
-    writeln!(out, "{} (SHA-256 {digest}...), {} {}", results.model.file, tool.name, tool.version)
+    writeln!(
+        out,
+        "{} (SHA-256 {digest}...), {} {}",
+        results.model.file, tool.name, tool.version
+    )
 }
 
 fn heading(out: &mut dyn Write, text: &str) -> io::Result<()> {
@@ -59,7 +63,11 @@ fn parameters(out: &mut dyn Write, model: &Model) -> io::Result<()> {
         .iter()
         .map(|parameter| {
             let value = show(parameter.value, &parameter.unit, DIGITS + 1);
-            vec![parameter.name.clone(), value, parameter.basis.clone().unwrap_or_default()]
+            vec![
+                parameter.name.clone(),
+                value,
+                parameter.basis.clone().unwrap_or_default(),
+            ]
         })
         .collect();
     columns(out, 2, &[Side::Left, Side::Right, Side::Left], &rows)
@@ -70,11 +78,25 @@ fn moments(out: &mut dyn Write, model: &Model, kind: Kind, results: &[Moments]) 
         return Ok(());
     }
     heading(out, if kind == Kind::Process { "Processes" } else { "Margins" })?;
-    let title = ["", "mean", "st. dev.", "st. dev. of derivative", "mean upcrossed", "bandwidth"];
+    let title = [
+        "",
+        "mean",
+        "st. dev.",
+        "st. dev. of derivative",
+        "mean upcrossed",
+        "bandwidth",
+    ];
     let mut rows = vec![title.map(str::to_string).to_vec()];
     let named = model.varying.iter().filter(|named| named.kind == kind);
     rows.extend(named.zip(results).map(|(named, result)| moments_row(named, result)));
-    let sides = [Side::Left, Side::Right, Side::Right, Side::Right, Side::Right, Side::Right];
+    let sides = [
+        Side::Left,
+        Side::Right,
+        Side::Right,
+        Side::Right,
+        Side::Right,
+        Side::Right,
+    ];
     columns(out, 2, &sides, &rows)
 }
 
@@ -91,7 +113,10 @@ fn moments_row(named: &Named, result: &Moments) -> Vec<String> {
         show(result.standard_deviation, unit, DIGITS),
         derivative.unwrap_or_default(),
         result.zero_upcrossing_rate.map(per_second).unwrap_or_default(),
-        result.bandwidth.map(|bandwidth| show_number(bandwidth, 3)).unwrap_or_default(),
+        result
+            .bandwidth
+            .map(|bandwidth| show_number(bandwidth, 3))
+            .unwrap_or_default(),
     ]
 }
 
@@ -104,7 +129,10 @@ fn per_second(rate: Real) -> String {
 }
 
 fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResult) -> io::Result<()> {
-    heading(out, &format!("Limit state {}: failure when {}", result.name, result.failure_when))?;
+    heading(
+        out,
+        &format!("Limit state {}: failure when {}", result.name, result.failure_when),
+    )?;
     if let Some(words) = &limit_state.documentation {
         for line in words.lines() {
             writeln!(out, "  {line}")?;
@@ -112,14 +140,32 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
     }
     let period = show(result.reference_period, &limit_state.reference_period.unit, DIGITS);
     let rows = vec![
-        vec![format!("failure probability over {period}"), show_number(result.failure_probability, DIGITS)],
-        vec![format!("reliability index over {period}"), show_number(result.reliability_index.value(), DIGITS)],
+        vec![
+            format!("failure probability over {period}"),
+            show_number(result.failure_probability, DIGITS),
+        ],
+        vec![
+            format!("reliability index over {period}"),
+            show_number(result.reliability_index.value(), DIGITS),
+        ],
         vec![format!("survival over {period}"), survival(result.survival)],
-        vec!["failed at the start".to_string(), show_number(result.initial_failure_probability, DIGITS)],
-        vec!["entries into failure".to_string(), format!("{} /s", show_number(result.upcrossing_rate, DIGITS))],
-        vec!["mean time to failure".to_string(), long_time(result.mean_time_to_failure)],
+        vec![
+            "failed at the start".to_string(),
+            show_number(result.initial_failure_probability, DIGITS),
+        ],
+        vec![
+            "entries into failure".to_string(),
+            format!("{} /s", show_number(result.upcrossing_rate, DIGITS)),
+        ],
+        vec![
+            "mean time to failure".to_string(),
+            long_time(result.mean_time_to_failure),
+        ],
         vec!["first passage by".to_string(), result.first_passage.to_string()],
-        vec!["numerical error, relative".to_string(), show_number(result.relative_error, 1)],
+        vec![
+            "numerical error, relative".to_string(),
+            show_number(result.relative_error, 1),
+        ],
     ];
     columns(out, 2, &[Side::Left, Side::Left], &rows)?;
     table(out, limit_state, result)?;
@@ -214,7 +260,10 @@ fn outcome(out: &mut dyn Write, results: &Results) -> io::Result<()> {
     let mut parts = Vec::new();
     if !verdicts.is_empty() {
         parts.push(format!("requirements: {} met", count("met")));
-        for (word, number) in [("not met", count("not met")), ("not established", count("not established"))] {
+        for (word, number) in [
+            ("not met", count("not met")),
+            ("not established", count("not established")),
+        ] {
             if number > 0 {
                 parts.push(format!("{number} {word}"));
             }

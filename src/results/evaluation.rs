@@ -39,7 +39,10 @@ pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[S
     let varying: Vec<FormMoments> = model.varying.iter().map(|named| table.moments(&named.form)).collect();
     let of_kind = |kind: Kind| {
         let named = model.varying.iter().zip(&varying);
-        named.filter(|(named, _)| named.kind == kind).map(|(named, moments)| moments_of(named, moments)).collect()
+        named
+            .filter(|(named, _)| named.kind == kind)
+            .map(|(named, moments)| moments_of(named, moments))
+            .collect()
     };
     let wanted = |limit_state: &&LimitState| only.is_empty() || only.contains(&limit_state.name);
     let limit_states = model.limit_states.iter().filter(wanted);
@@ -62,7 +65,9 @@ pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[S
             .collect(),
         processes: of_kind(Kind::Process),
         margins: of_kind(Kind::Margin),
-        limit_states: limit_states.map(|limit_state| Judged::new(&table, limit_state).result()).collect(),
+        limit_states: limit_states
+            .map(|limit_state| Judged::new(&table, limit_state).result())
+            .collect(),
         expectations: model
             .expectations
             .iter()
@@ -160,7 +165,11 @@ impl<'m> Judged<'m> {
             mean_time_to_failure: real(self.passage.ln_mean_time_to_failure().exp()),
             relative_error: self.relative_error,
             table: limit_state.tabulate.iter().map(|time| self.row(time.seconds)).collect(),
-            requirements: limit_state.requirements.iter().map(|one| self.requirement(one)).collect(),
+            requirements: limit_state
+                .requirements
+                .iter()
+                .map(|one| self.requirement(one))
+                .collect(),
             assumptions: self.assumptions(),
         }
     }
@@ -243,12 +252,16 @@ impl<'m> Judged<'m> {
             Assumption {
                 code: "poisson-crossings",
                 text: match self.limit_state.method {
-                    Method::Poisson => "Entries into failure are counted as a Poisson process, whatever the start: right \
+                    Method::Poisson => {
+                        "Entries into failure are counted as a Poisson process, whatever the start: right \
                                         for barriers far from the mean."
-                        .into(),
-                    Method::PoissonSafeStart => "Entries into failure are counted as a Poisson process among those that \
+                            .into()
+                    }
+                    Method::PoissonSafeStart => {
+                        "Entries into failure are counted as a Poisson process among those that \
                                                  are safe: right for barriers far from the mean."
-                        .into(),
+                            .into()
+                    }
                 },
             },
         ];
@@ -256,7 +269,10 @@ impl<'m> Judged<'m> {
         if reduced < LOW_BARRIER {
             let time = self.limit_state.reference_period.seconds;
             let (least, most) = self.passage.bounds(time);
-            let (least, most) = (show_number(least.failure(), DIGITS), show_number(most.failure(), DIGITS));
+            let (least, most) = (
+                show_number(least.failure(), DIGITS),
+                show_number(most.failure(), DIGITS),
+            );
             let distance = show_number(reduced, 3);
             assumptions.push(Assumption {
                 code: "low-barrier",
@@ -292,7 +308,9 @@ fn relative_error(margin: &GaussianMargin, region: FailureRegion, moments: &Form
     let [variance, _, derivative, _] = &moments.lambda;
     let of_difference = f64::EPSILON * (level + margin.mean.abs()) / margin.standard_deviation;
     let of_variance = 0.5 * reduced * variance.relative_error();
-    (reduced + 1.0) * (of_difference + of_variance) + 0.5 * derivative.relative_error() + ROUNDING * (1.0 + reduced * reduced)
+    (reduced + 1.0) * (of_difference + of_variance)
+        + 0.5 * derivative.relative_error()
+        + ROUNDING * (1.0 + reduced * reduced)
 }
 
 fn of_probability(quantity: LimitQuantity, probability: Probability) -> f64 {
@@ -323,9 +341,10 @@ fn expected(
             (Some(named), Some(moments)) => of_varying(quantity, named, moments),
             _ => None,
         },
-        Subject::LimitState(index, quantity, time) => {
-            model.limit_states.get(index).map(|limit_state| Judged::new(table, limit_state).quantity(quantity, time))
-        }
+        Subject::LimitState(index, quantity, time) => model
+            .limit_states
+            .get(index)
+            .map(|limit_state| Judged::new(table, limit_state).quantity(quantity, time)),
     };
     let (tolerance, tolerance_kind, allowed) = match expectation.tolerance {
         Tolerance::Relative(share) => (share, "relative", share * expectation.expected.abs()),
@@ -338,7 +357,10 @@ fn expected(
         tolerance,
         tolerance_kind,
         holds: value.is_some_and(|value| (value - expectation.expected).abs() <= allowed),
-        shown: value.map_or_else(|| "does not exist".to_string(), |value| show_in(value, &expectation.unit)),
+        shown: value.map_or_else(
+            || "does not exist".to_string(),
+            |value| show_in(value, &expectation.unit),
+        ),
         basis: expectation.basis.clone(),
     }
 }

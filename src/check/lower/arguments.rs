@@ -69,13 +69,19 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// The argument of a name; its absence is reported.
-    pub(super) fn required<'t>(&mut self, arguments: &Arguments<'t>, name: &str, example: &str) -> Option<&'t Expression> {
+    pub(super) fn required<'t>(
+        &mut self,
+        arguments: &Arguments<'t>,
+        name: &str,
+        example: &str,
+    ) -> Option<&'t Expression> {
         let found = arguments.get(name);
         if found.is_none() {
             let message = format!("`{}` needs its argument `{name}`", arguments.function);
             self.report(
-                Diagnostic::new(Code::CallArgument, arguments.brackets, message)
-                    .help(format!("write `{name}: {example}` between the brackets, with your value")),
+                Diagnostic::new(Code::CallArgument, arguments.brackets, message).help(format!(
+                    "write `{name}: {example}` between the brackets, with your value"
+                )),
             );
         }
         found
@@ -83,12 +89,20 @@ impl Lowering<'_, '_, '_> {
 
     fn unnamed(&mut self, function: &str, known: &[&str], value: &Expression) {
         let finding = if known.is_empty() {
-            Diagnostic::new(Code::CallArgument, value.span, format!("`{function}` has an argument too many"))
-                .help("remove it")
+            Diagnostic::new(
+                Code::CallArgument,
+                value.span,
+                format!("`{function}` has an argument too many"),
+            )
+            .help("remove it")
         } else {
             let names = choice(known).unwrap_or_default();
-            Diagnostic::new(Code::CallArgument, value.span, format!("this argument of `{function}` needs its name"))
-                .help(format!("write `name: value`, the name being {names}"))
+            Diagnostic::new(
+                Code::CallArgument,
+                value.span,
+                format!("this argument of `{function}` needs its name"),
+            )
+            .help(format!("write `name: value`, the name being {names}"))
         };
         self.report(finding);
     }

@@ -112,7 +112,11 @@ impl Lowering<'_, '_, '_> {
             .iter()
             .map(|(inverse, number)| {
                 let node = self.node(*number)?;
-                Some(if *inverse { Operand::inverse(node) } else { Operand::direct(node) })
+                Some(if *inverse {
+                    Operand::inverse(node)
+                } else {
+                    Operand::direct(node)
+                })
             })
             .collect();
         match nodes {
@@ -150,12 +154,7 @@ impl Lowering<'_, '_, '_> {
         alike.then(|| first.map_or(Dimension::PLAIN, |(_, dimension)| dimension))
     }
 
-    fn sum_of_forms(
-        &mut self,
-        values: Vec<(f64, Span, Value)>,
-        dimension: Dimension,
-        unit: Option<Rc<Unit>>,
-    ) -> Value {
+    fn sum_of_forms(&mut self, values: Vec<(f64, Span, Value)>, dimension: Dimension, unit: Option<Rc<Unit>>) -> Value {
         let mut parts: Vec<(f64, Rc<LinearForm>)> = Vec::with_capacity(values.len());
         for (sign, _, value) in values {
             match value {
@@ -340,9 +339,13 @@ impl Lowering<'_, '_, '_> {
 
     fn divided_by_process(&mut self, place: Span) {
         self.report(
-            Diagnostic::new(Code::TypeNonlinear, place, "a quantity divided by a process is not Gaussian")
-                .here("this varies in time")
-                .help("the divisor would have to be a constant"),
+            Diagnostic::new(
+                Code::TypeNonlinear,
+                place,
+                "a quantity divided by a process is not Gaussian",
+            )
+            .here("this varies in time")
+            .help("the divisor would have to be a constant"),
         );
     }
 
@@ -384,8 +387,12 @@ impl Lowering<'_, '_, '_> {
 
     fn negative_weight(&mut self, place: Span) {
         self.report(
-            Diagnostic::new(Code::KernelInvalid, place, "a kernel can only be scaled by a positive number")
-                .help("only sums, products and non-negative multiples of kernels are kernels"),
+            Diagnostic::new(
+                Code::KernelInvalid,
+                place,
+                "a kernel can only be scaled by a positive number",
+            )
+            .help("only sums, products and non-negative multiples of kernels are kernels"),
         );
     }
 
@@ -411,13 +418,7 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    pub(super) fn power(
-        &mut self,
-        span: Span,
-        base: &Expression,
-        exponent: &Expression,
-        scope: Scope<'_>,
-    ) -> Value {
+    pub(super) fn power(&mut self, span: Span, base: &Expression, exponent: &Expression, scope: Scope<'_>) -> Value {
         let base_value = self.value(base, scope);
         let exponent_value = self.number(exponent, scope, Dimension::PLAIN, "an exponent", None);
         let (base_value, exponent_value) = match (base_value, exponent_value) {
@@ -448,8 +449,9 @@ impl Lowering<'_, '_, '_> {
         let Some(dimension) = dimension else {
             let message = format!("{} cannot have this power", base_value.dimension.describe());
             self.report(
-                Diagnostic::new(Code::UnitMismatch, exponent.span, message)
-                    .help("a quantity with a unit takes whole powers and simple fractions, known when the file is read"),
+                Diagnostic::new(Code::UnitMismatch, exponent.span, message).help(
+                    "a quantity with a unit takes whole powers and simple fractions, known when the file is read",
+                ),
             );
             return Value::Fault;
         };
@@ -457,7 +459,9 @@ impl Lowering<'_, '_, '_> {
             .filter(|exponent| exponent.fract() == 0.0 && exponent.abs() < 100.0)
             .and_then(|exponent| base_value.unit.as_ref()?.power(exponent as i32).map(Rc::new));
         let value = match (base_value.value, exponent_value.value) {
-            (Number::Known(base), Number::Known(exponent)) => Number::Known(crate::expression::Number::power(&base, &exponent)),
+            (Number::Known(base), Number::Known(exponent)) => {
+                Number::Known(crate::expression::Number::power(&base, &exponent))
+            }
             (base, exponent) => match (self.node(base), self.node(exponent)) {
                 (Some(base), Some(exponent)) => Number::Open(self.arena.power(base, exponent)),
                 _ => Number::Unset,
@@ -480,19 +484,21 @@ impl Lowering<'_, '_, '_> {
 }
 
 fn product_dimension(values: &[(bool, Span, Value)]) -> Option<Dimension> {
-    values.iter().try_fold(Dimension::PLAIN, |product, (inverse, _, value)| {
-        let dimension = match value {
-            Value::Scalar(scalar) => scalar.dimension,
-            Value::Form(varying) => varying.dimension,
-            Value::Kernel(covariance) => covariance.dimension,
-            Value::Fault => Dimension::PLAIN,
-        };
-        if *inverse {
-            product.over(dimension)
-        } else {
-            product.times(dimension)
-        }
-    })
+    values
+        .iter()
+        .try_fold(Dimension::PLAIN, |product, (inverse, _, value)| {
+            let dimension = match value {
+                Value::Scalar(scalar) => scalar.dimension,
+                Value::Form(varying) => varying.dimension,
+                Value::Kernel(covariance) => covariance.dimension,
+                Value::Fault => Dimension::PLAIN,
+            };
+            if *inverse {
+                product.over(dimension)
+            } else {
+                product.times(dimension)
+            }
+        })
 }
 
 /// The unit people see a product in: that of its factors, where each says one. A share (`0.9`, `12 %`) changes no unit.
@@ -549,7 +555,11 @@ fn unit_factors(expression: &Expression, sign: i32, into: &mut Vec<UnitFactor>) 
         }
         ExpressionKind::Bracket(inner) => unit_factors(inner, sign, into),
         ExpressionKind::Product(factors) => factors.iter().try_for_each(|factor| {
-            let sign = if factor.operator == FactorOperator::Over { -sign } else { sign };
+            let sign = if factor.operator == FactorOperator::Over {
+                -sign
+            } else {
+                sign
+            };
             unit_factors(&factor.value, sign, into)
         }),
         _ => None,

@@ -100,9 +100,13 @@ impl Lowering<'_, '_, '_> {
             _ => {
                 let help = "only functions, operations and kernels are called; to multiply, write `*`";
                 self.report(
-                    Diagnostic::new(Code::CallUnknown, call.function.span, format!("`{name}` cannot be called"))
-                        .here("a quantity")
-                        .help(help),
+                    Diagnostic::new(
+                        Code::CallUnknown,
+                        call.function.span,
+                        format!("`{name}` cannot be called"),
+                    )
+                    .here("a quantity")
+                    .help(help),
                 );
                 Value::Fault
             }
@@ -170,7 +174,12 @@ impl Lowering<'_, '_, '_> {
                     );
                 }
                 Value::Kernel(_) => {
-                    self.wrong_kind(argument.value.span, "a kernel", "a number", "kernels are only added and multiplied");
+                    self.wrong_kind(
+                        argument.value.span,
+                        "a kernel",
+                        "a number",
+                        "kernels are only added and multiplied",
+                    );
                 }
             }
         }
@@ -210,7 +219,10 @@ impl Lowering<'_, '_, '_> {
             }
         };
         let same = matches!(function, Function::Abs | Function::Min | Function::Max);
-        let unit = scalars.first().and_then(|(_, scalar)| scalar.unit.clone()).filter(|_| same);
+        let unit = scalars
+            .first()
+            .and_then(|(_, scalar)| scalar.unit.clone())
+            .filter(|_| same);
         self.finite(Scalar::new(value, dimension).shown_in(unit), span)
     }
 
@@ -250,7 +262,9 @@ impl Lowering<'_, '_, '_> {
                     return Some(Dimension::PLAIN);
                 };
                 let others = scalars.iter().filter(|(_, scalar)| !scalar.bare_zero);
-                let unlike = others.into_iter().find(|(_, scalar)| scalar.dimension != leader.dimension);
+                let unlike = others
+                    .into_iter()
+                    .find(|(_, scalar)| scalar.dimension != leader.dimension);
                 match unlike {
                     None => Some(leader.dimension),
                     Some((other, scalar)) => {

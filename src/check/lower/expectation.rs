@@ -45,7 +45,13 @@ impl Lowering<'_, '_, '_> {
         let Some((subject, dimension)) = self.expected_subject(quantity, scope) else {
             return;
         };
-        let expected = self.number(value, scope, dimension, "the expected value", Some((quantity.span, "expected of this")));
+        let expected = self.number(
+            value,
+            scope,
+            dimension,
+            "the expected value",
+            Some((quantity.span, "expected of this")),
+        );
         let tolerance = self.tolerance(tolerance, dimension, scope);
         let (Some(expected), Some(tolerance)) = (expected, tolerance) else {
             return;
@@ -117,7 +123,12 @@ impl Lowering<'_, '_, '_> {
         let arguments = self.arguments(call, &["the name of a process, margin or limit state"], &["over"])?;
         let subject = arguments.subjects.first().copied()?;
         let ExpressionKind::Name(path) = &subject.kind else {
-            self.wrong_kind(subject.span, "an expression", "a name", "declare it as a process or margin and name it");
+            self.wrong_kind(
+                subject.span,
+                "an expression",
+                "a name",
+                "declare it as a process or margin and name it",
+            );
             return None;
         };
         let item = match self.names.resolve(path, scope.instance) {
@@ -156,7 +167,11 @@ impl Lowering<'_, '_, '_> {
     fn of_varying(&mut self, call: &Call, index: usize) -> Option<(Subject, Dimension)> {
         let name = word_text(&call.function);
         let named = &self.model.varying[index];
-        let what = if named.kind == Kind::Process { "process" } else { "margin" };
+        let what = if named.kind == Kind::Process {
+            "process"
+        } else {
+            "margin"
+        };
         let found = QUANTITIES.iter().find(|(known, _)| *known == name);
         let Some((_, quantity)) = found else {
             let known: Vec<&str> = QUANTITIES.iter().map(|(known, _)| *known).collect();
@@ -188,7 +203,12 @@ impl Lowering<'_, '_, '_> {
         );
         if !has_results {
             let help = "an expectation is about a process, a margin or a limit state";
-            self.wrong_kind(path.span, "something without results", "a process, margin or limit state", help);
+            self.wrong_kind(
+                path.span,
+                "something without results",
+                "a process, margin or limit state",
+                help,
+            );
         }
     }
 }

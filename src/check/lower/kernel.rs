@@ -4,8 +4,7 @@ use super::{Context, Lowering, Scope};
 use crate::check::names::ItemId;
 use crate::check::value::{Covariance, Number, Scalar, Value};
 use crate::covariance::kernel::{
-    BandLimited, Beyond, DampedCosine, Exponential, Harmonic, InvalidParameter, Kernel, Length, LengthFamily, Matern,
-    Oscillator, RationalQuadratic, SquaredExponential, Tabulated, Triangular, User,
+    BandLimited, Beyond, Harmonic, InvalidParameter, Kernel, Length, LengthOf, Oscillator, Tabulated, User,
 };
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::{Symbol, Tape};
@@ -72,7 +71,9 @@ impl Lowering<'_, '_, '_> {
                     }
                     let unit = parameter.unit.as_ref().map(|unit| self.unit(unit));
                     let dimension = unit.flatten().map_or(Dimension::PLAIN, |unit| unit.dimension());
-                    let node = self.arena.symbol(Symbol::Argument(u16::try_from(index).unwrap_or(u16::MAX)));
+                    let node = self
+                        .arena
+                        .symbol(Symbol::Argument(u16::try_from(index).unwrap_or(u16::MAX)));
                     locals.push((&parameter.name.text, Scalar::new(Number::Open(node), dimension)));
                     arguments.push((parameter.name.text.clone(), dimension));
                 }
@@ -116,13 +117,18 @@ impl Lowering<'_, '_, '_> {
 
     fn lag(&mut self, lag: &FunctionParameter) {
         if &*lag.name.text != "tau" {
-            let message = format!("the first argument of a kernel is the lag `tau`, not `{}`", lag.name.text);
+            let message = format!(
+                "the first argument of a kernel is the lag `tau`, not `{}`",
+                lag.name.text
+            );
             self.report(Diagnostic::new(Code::CallArgument, lag.name.span, message).help("write `tau` first"));
         }
         if let Some(unit) = &lag.unit {
             let is_time = self.unit(unit).is_none_or(|unit| unit.dimension() == Dimension::TIME);
             if !is_time {
-                self.report(Diagnostic::new(Code::UnitMismatch, unit.span, "the lag is a time").help("leave its unit out"));
+                self.report(
+                    Diagnostic::new(Code::UnitMismatch, unit.span, "the lag is a time").help("leave its unit out"),
+                );
             }
         }
     }
@@ -139,7 +145,12 @@ impl Lowering<'_, '_, '_> {
             return Value::Fault;
         };
         let names: Vec<&str> = definition.parameters.iter().map(|(name, _)| &**name).collect();
-        if let Some(word) = call.arguments.iter().filter_map(|one| one.name.as_ref()).find(|word| &*word.text == "tau") {
+        if let Some(word) = call
+            .arguments
+            .iter()
+            .filter_map(|one| one.name.as_ref())
+            .find(|word| &*word.text == "tau")
+        {
             let message = format!("`{}` is called without its lag", super::word_text(&call.function));
             self.report(Diagnostic::new(Code::CallArgument, word.span, message).help("leave `tau` out"));
             return Value::Fault;
@@ -237,20 +248,26 @@ impl Lowering<'_, '_, '_> {
             ..scope
         };
         let kernel = match name {
-            "squared_exponential" => self.with_length(span, call, plain, &[], |[]| LengthFamily::SquaredExponential),
-            "exponential" => self.with_length(span, call, plain, &[], |[]| LengthFamily::Exponential),
-            "triangular" => self.with_length(span, call, plain, &[], |[]| LengthFamily::Triangular),
+            "squared_exponential" => self.with_length(span, call, plain, &[], |[]| LengthOf::SquaredExponential),
+            "exponential" => self.with_length(span, call, plain, &[], |[]| LengthOf::Exponential),
+            "triangular" => self.with_length(span, call, plain, &[], |[]| LengthOf::Triangular),
             "matern" => {
                 let others = [("smoothness", Dimension::PLAIN, "5/2")];
-                self.with_length(span, call, plain, &others, |[smoothness]| LengthFamily::Matern { smoothness })
+                self.with_length(span, call, plain, &others, |[smoothness]| LengthOf::Matern {
+                    smoothness,
+                })
             }
             "rational_quadratic" => {
                 let others = [("mixture", Dimension::PLAIN, "2")];
-                self.with_length(span, call, plain, &others, |[mixture]| LengthFamily::RationalQuadratic { mixture })
+                self.with_length(span, call, plain, &others, |[mixture]| LengthOf::RationalQuadratic {
+                    mixture,
+                })
             }
             "damped_cosine" => {
                 let others = [("frequency", Dimension::ANGULAR_FREQUENCY, "0.1 Hz")];
-                self.with_length(span, call, plain, &others, |[frequency]| LengthFamily::DampedCosine { frequency })
+                self.with_length(span, call, plain, &others, |[frequency]| LengthOf::DampedCosine {
+                    frequency,
+                })
             }
             "oscillator" => {
                 let wanted = [
@@ -263,14 +280,18 @@ impl Lowering<'_, '_, '_> {
             }
             "harmonic" => {
                 let wanted = [("frequency", Dimension::ANGULAR_FREQUENCY, "0.1 Hz")];
-                self.with_numbers(span, call, plain, wanted, |[frequency]| Harmonic::new(frequency).map(Kernel::from))
+                self.with_numbers(span, call, plain, wanted, |[frequency]| {
+                    Harmonic::new(frequency).map(Kernel::from)
+                })
             }
             "band_limited" => {
                 let wanted = [
                     ("lower", Dimension::ANGULAR_FREQUENCY, "0 Hz"),
                     ("upper", Dimension::ANGULAR_FREQUENCY, "2 Hz"),
                 ];
-                self.with_numbers(span, call, plain, wanted, |[lower, upper]| BandLimited::new(lower, upper).map(Kernel::from))
+                self.with_numbers(span, call, plain, wanted, |[lower, upper]| {
+                    BandLimited::new(lower, upper).map(Kernel::from)
+                })
             }
             _ => self.tabulated_kernel(call),
         };
@@ -293,9 +314,9 @@ impl Lowering<'_, '_, '_> {
         let mut values = [0.0; N];
         let (mut sound, mut known) = (true, true);
         for (slot, (name, dimension, example)) in values.iter_mut().zip(wanted) {
-            let scalar = self.required(arguments, name, example).and_then(|expression| {
-                self.number(expression, scope, *dimension, &format!("`{name}`"), None)
-            });
+            let scalar = self
+                .required(arguments, name, example)
+                .and_then(|expression| self.number(expression, scope, *dimension, &format!("`{name}`"), None));
             match scalar.map(|scalar| scalar.value) {
                 Some(Number::Known(value)) => *slot = value,
                 Some(_) => known = false,
@@ -330,7 +351,9 @@ impl Lowering<'_, '_, '_> {
         match kernel {
             Ok(kernel) => Some(kernel),
             Err(fault) => {
-                let place = arguments.get(fault.parameter).map_or(span, |expression| expression.span);
+                let place = arguments
+                    .get(fault.parameter)
+                    .map_or(span, |expression| expression.span);
                 let message = format!("`{}` of `{}` must be {}", fault.parameter, fault.family, fault.demand);
                 let here = format!("this is {} in SI units", show_number(fault.value, 6));
                 self.report(Diagnostic::new(Code::ValueRange, place, message).here(here));
@@ -346,7 +369,7 @@ impl Lowering<'_, '_, '_> {
         call: &Call,
         scope: Scope<'_>,
         others: &[(&str, Dimension, &str); N],
-        build: impl FnOnce([f64; N]) -> LengthFamily,
+        build: impl FnOnce([f64; N]) -> LengthOf,
     ) -> Option<Kernel> {
         let mut known: Vec<&str> = others.iter().map(|(name, _, _)| *name).collect();
         known.extend(["length", "scale_of_fluctuation"]);
@@ -368,7 +391,7 @@ impl Lowering<'_, '_, '_> {
         };
         let family = build(values);
         if fluctuation.is_none() {
-            return self.valid(span, &arguments, with_length_of(family, length));
+            return self.valid(span, &arguments, family.kernel(length));
         }
         let length = match family.length(length) {
             Length::Unique(length) => length,
@@ -382,7 +405,7 @@ impl Lowering<'_, '_, '_> {
                 return None;
             }
         };
-        self.valid(span, &arguments, with_length_of(family, length))
+        self.valid(span, &arguments, family.kernel(length))
     }
 
     fn two_lengths(&mut self, place: Span, short: f64, long: f64) {
@@ -433,17 +456,5 @@ impl Lowering<'_, '_, '_> {
                 None
             }
         }
-    }
-}
-
-/// The kernel of a family with its length in s.
-fn with_length_of(family: LengthFamily, length: f64) -> Result<Kernel, InvalidParameter> {
-    match family {
-        LengthFamily::SquaredExponential => SquaredExponential::new(length).map(Kernel::from),
-        LengthFamily::Exponential => Exponential::new(length).map(Kernel::from),
-        LengthFamily::Matern { smoothness } => Matern::new(smoothness, length).map(Kernel::from),
-        LengthFamily::RationalQuadratic { mixture } => RationalQuadratic::new(length, mixture).map(Kernel::from),
-        LengthFamily::DampedCosine { frequency } => DampedCosine::new(length, frequency).map(Kernel::from),
-        LengthFamily::Triangular => Triangular::new(length).map(Kernel::from),
     }
 }

@@ -6,8 +6,7 @@ use crate::check::names::{self, ItemId, choice};
 use crate::check::value::{Number, Value, Varying};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{
-    Condition, ConditionKind, Expression, ExpressionKind, LimitLine, LimitLineKind, RequireComparison,
-    Word,
+    Condition, ConditionKind, Expression, ExpressionKind, LimitLine, LimitLineKind, RequireComparison, Word,
 };
 use crate::reliability::crossings::FailureRegion;
 use crate::reliability::first_passage::Method;
@@ -18,10 +17,18 @@ use crate::units::Dimension;
 /// The quantities of a limit state by name, with their dimension.
 const QUANTITIES: &[(&str, LimitQuantity, Dimension)] = &[
     ("survival", LimitQuantity::Survival, Dimension::PLAIN),
-    ("failure_probability", LimitQuantity::FailureProbability, Dimension::PLAIN),
+    (
+        "failure_probability",
+        LimitQuantity::FailureProbability,
+        Dimension::PLAIN,
+    ),
     ("reliability_index", LimitQuantity::ReliabilityIndex, Dimension::PLAIN),
     ("upcrossing_rate", LimitQuantity::UpcrossingRate, Dimension::RATE),
-    ("mean_time_to_failure", LimitQuantity::MeanTimeToFailure, Dimension::TIME),
+    (
+        "mean_time_to_failure",
+        LimitQuantity::MeanTimeToFailure,
+        Dimension::TIME,
+    ),
     (
         "initial_failure_probability",
         LimitQuantity::InitialFailureProbability,
@@ -56,13 +63,7 @@ struct Lines<'t> {
 }
 
 impl Lowering<'_, '_, '_> {
-    pub(super) fn limit_state(
-        &mut self,
-        item: ItemId,
-        name: &Word,
-        lines: &[LimitLine],
-        close: Span,
-    ) {
+    pub(super) fn limit_state(&mut self, item: ItemId, name: &Word, lines: &[LimitLine], close: Span) {
         let scope = Scope::plain(self.names.item(item).instance);
         let lines = self.lines(lines, name);
         for (missing, line, example) in [
@@ -86,8 +87,10 @@ impl Lowering<'_, '_, '_> {
             None => Some(Method::Poisson),
         };
         let times = lines.tabulate.map_or(Some(Vec::new()), |(_, times)| {
-            let found: Vec<Option<Time>> =
-                times.iter().map(|time| self.time(time, scope, "a time of the table")).collect();
+            let found: Vec<Option<Time>> = times
+                .iter()
+                .map(|time| self.time(time, scope, "a time of the table"))
+                .collect();
             found.into_iter().collect()
         });
         let requirements: Vec<Option<Requirement>> = lines
@@ -209,7 +212,13 @@ impl Lowering<'_, '_, '_> {
         };
         let (quantity_found, dimension) = found?;
         let what = format!("the demand on `{}`", quantity.text);
-        let scalar = self.number(value, scope, dimension, &what, Some((quantity.span, "demanded of this")))?;
+        let scalar = self.number(
+            value,
+            scope,
+            dimension,
+            &what,
+            Some((quantity.span, "demanded of this")),
+        )?;
         let Number::Known(limit) = scalar.value else {
             return None;
         };
@@ -230,9 +239,9 @@ impl Lowering<'_, '_, '_> {
     /// Refuses a demand that no probability, rate or time can meet or miss.
     fn possible(&mut self, quantity: LimitQuantity, limit: f64, word: &Word, place: Span) -> Option<()> {
         let (possible, range) = match quantity {
-            LimitQuantity::Survival
-            | LimitQuantity::FailureProbability
-            | LimitQuantity::InitialFailureProbability => ((0.0..=1.0).contains(&limit), "between 0 and 1"),
+            LimitQuantity::Survival | LimitQuantity::FailureProbability | LimitQuantity::InitialFailureProbability => {
+                ((0.0..=1.0).contains(&limit), "between 0 and 1")
+            }
             LimitQuantity::UpcrossingRate | LimitQuantity::MeanTimeToFailure => (limit >= 0.0, "0 or more"),
             LimitQuantity::ReliabilityIndex => (true, ""),
         };
@@ -350,16 +359,26 @@ impl Lowering<'_, '_, '_> {
         let value = self.value(level, scope);
         if let Value::Form(_) = value {
             self.report(
-                Diagnostic::new(Code::LimitCondition, level.span, "the level of a condition must be a number")
-                    .here("this varies in time")
-                    .help("declare the difference as a `margin` and compare it with 0"),
+                Diagnostic::new(
+                    Code::LimitCondition,
+                    level.span,
+                    "the level of a condition must be a number",
+                )
+                .here("this varies in time")
+                .help("declare the difference as a `margin` and compare it with 0"),
             );
             return None;
         }
         let scalar = self.scalar(value, level.span, "the level of a condition")?;
         if scalar.dimension != varying.dimension && !scalar.bare_zero {
             let why = Some((margin, "compared with this"));
-            self.mismatch(level.span, &scalar, varying.dimension, "the level of this condition", why);
+            self.mismatch(
+                level.span,
+                &scalar,
+                varying.dimension,
+                "the level of this condition",
+                why,
+            );
             return None;
         }
         match scalar.value {

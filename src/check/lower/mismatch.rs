@@ -70,10 +70,15 @@ impl Lowering<'_, '_, '_> {
         } else {
             Code::UnitMismatch
         };
-        let message = format!("`{}` is declared in {}, but its value is {there}", name.text, unit.text());
-        let mut finding = Diagnostic::new(code, place, message)
-            .here(there)
-            .label(name.span, format!("declared in {}: {}", unit.text(), declared.describe()));
+        let message = format!(
+            "`{}` is declared in {}, but its value is {there}",
+            name.text,
+            unit.text()
+        );
+        let mut finding = Diagnostic::new(code, place, message).here(there).label(
+            name.span,
+            format!("declared in {}: {}", unit.text(), declared.describe()),
+        );
         finding.help = if code == Code::UnitAngle {
             Some(angle_help(found, declared))
         } else {
@@ -117,10 +122,16 @@ fn hint(found: Dimension, wanted: Dimension) -> Option<String> {
         return Some("this looks like a root, such as a standard deviation: square it with `^2`".to_string());
     }
     if found.is_plain() {
-        return Some(format!("write the unit behind the number, such as `{}`", wanted.si_name()));
+        return Some(format!(
+            "write the unit behind the number, such as `{}`",
+            wanted.si_name()
+        ));
     }
     let factor = wanted.over(found)?;
-    Some(format!("a factor in {} is missing, or a unit is wrong", factor.si_name()))
+    Some(format!(
+        "a factor in {} is missing, or a unit is wrong",
+        factor.si_name()
+    ))
 }
 
 /// `a force (kN)`: a dimension in words, with the unit it was written in.

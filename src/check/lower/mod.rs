@@ -227,9 +227,13 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     /// One clear sentence for what the language has and this version does not compute.
     fn not_yet(&mut self, place: Span, what: &str) {
         self.report(
-            Diagnostic::new(Code::LanguageNotYet, place, format!("this version does not compute {what} yet"))
-                .here("part of the language, but not of this version")
-                .help("leave it out, or say the same with processes and kernels"),
+            Diagnostic::new(
+                Code::LanguageNotYet,
+                place,
+                format!("this version does not compute {what} yet"),
+            )
+            .here("part of the language, but not of this version")
+            .help("leave it out, or say the same with processes and kernels"),
         );
     }
 
@@ -288,7 +292,12 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 return Value::Fault;
             }
             Value::Kernel(_) => {
-                self.wrong_kind(expression.span, "a kernel", "a process", "it is the argument of a `gaussian(...)`");
+                self.wrong_kind(
+                    expression.span,
+                    "a kernel",
+                    "a process",
+                    "it is the argument of a `gaussian(...)`",
+                );
                 return Value::Fault;
             }
         };
@@ -321,7 +330,10 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     fn nothing_varies(&mut self, kind: Kind, name: &Word, expression: &Expression) {
         let name = &name.text;
         let (what, help) = match kind {
-            Kind::Process => ("process", format!("write `constant {name} = ...`, or give it a `gaussian(...)`")),
+            Kind::Process => (
+                "process",
+                format!("write `constant {name} = ...`, or give it a `gaussian(...)`"),
+            ),
             Kind::Margin => (
                 "margin",
                 "a margin without a process needs no crossings: compare the numbers, or use a time-invariant method"
@@ -461,7 +473,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 self.report(
                     Diagnostic::new(Code::PartArgument, place(user), message)
                         .label(name.span, "a parameter without a value of its own")
-                        .help(format!("write `({name_text}: {example})` after the name of the part, with your value")),
+                        .help(format!(
+                            "write `({name_text}: {example})` after the name of the part, with your value"
+                        )),
                 );
             }
             None if self.settings.require_parameters => {
@@ -471,7 +485,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                         name.span,
                         format!("the parameter `{name_text}` has no value"),
                     )
-                    .help(format!("give it with `--set {name_text}=\"{example}\"`, or write `= {example}` here")),
+                    .help(format!(
+                        "give it with `--set {name_text}=\"{example}\"`, or write `= {example}` here"
+                    )),
                 );
             }
             None => {}
@@ -553,7 +569,10 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             Ok(unit) => Some(Rc::new(unit)),
             Err(unknown) => {
                 for one in unknown {
-                    let place = expression.factors.get(one.factor).map_or(expression.span, |factor| factor.symbol.span);
+                    let place = expression
+                        .factors
+                        .get(one.factor)
+                        .map_or(expression.span, |factor| factor.symbol.span);
                     let message = match one.cause {
                         Cause::NotInTable => format!("there is no unit called `{}`", one.symbol),
                         Cause::LeftOut => format!("the unit `{}` is not part of the language", one.symbol),
@@ -629,7 +648,10 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         let name = &unknown.word.text;
         let within = match path.words.as_slice() {
             [_] => String::new(),
-            _ => format!(" in `{}`", self.names.parts().get(unknown.instance).prefix.trim_end_matches('.')),
+            _ => format!(
+                " in `{}`",
+                self.names.parts().get(unknown.instance).prefix.trim_end_matches('.')
+            ),
         };
         let mut finding = Diagnostic::new(
             Code::NameUnknown,
@@ -644,7 +666,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         } else if let Some(elsewhere) = self.in_a_part(name, scope.instance) {
             Some(format!("it is declared in a part: write `{elsewhere}`"))
         } else if Unit::named(name).is_some() {
-            Some(format!("`{name}` is a unit: it can only follow a number on its line, without blanks inside"))
+            Some(format!(
+                "`{name}` is a unit: it can only follow a number on its line, without blanks inside"
+            ))
         } else {
             Some("declare it, or correct the name".to_string())
         };
@@ -666,9 +690,13 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
 
     fn wrong_kind(&mut self, place: Span, found: &str, wanted: &str, help: &str) {
         self.report(
-            Diagnostic::new(Code::TypeMismatch, place, format!("this is {found}, where {wanted} is needed"))
-                .here(found)
-                .help(help),
+            Diagnostic::new(
+                Code::TypeMismatch,
+                place,
+                format!("this is {found}, where {wanted} is needed"),
+            )
+            .here(found)
+            .help(help),
         );
     }
 
@@ -677,7 +705,12 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         match &expression.kind {
             ExpressionKind::Number(number) => self.literal(number),
             ExpressionKind::String(text) => {
-                self.wrong_kind(text.span, "a text", "a quantity", "texts name files, in `tabulated(\"file.csv\", ...)`");
+                self.wrong_kind(
+                    text.span,
+                    "a text",
+                    "a quantity",
+                    "texts name files, in `tabulated(\"file.csv\", ...)`",
+                );
                 Value::Fault
             }
             ExpressionKind::Name(path) => self.name(path, scope),
@@ -687,7 +720,12 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             ExpressionKind::Power(base, exponent) => self.power(expression.span, base, exponent, scope),
             ExpressionKind::Call(call) => self.call(expression.span, call, scope),
             ExpressionKind::Group(_) => {
-                self.wrong_kind(expression.span, "a state of a climate", "a quantity", "states stand in `states(...)`");
+                self.wrong_kind(
+                    expression.span,
+                    "a state of a climate",
+                    "a quantity",
+                    "states stand in `states(...)`",
+                );
                 Value::Fault
             }
             ExpressionKind::Bracket(inner) => self.value(inner, scope),
@@ -705,7 +743,12 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 None
             }
             Value::Kernel(_) => {
-                self.wrong_kind(place, "a kernel", &format!("a number for {what}"), "kernels stand in `correlation:`");
+                self.wrong_kind(
+                    place,
+                    "a kernel",
+                    &format!("a number for {what}"),
+                    "kernels stand in `correlation:`",
+                );
                 None
             }
         }
@@ -759,7 +802,12 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     }
 
     /// Counts the terms of a new form and wraps it.
-    fn form(&mut self, form: crate::covariance::form::LinearForm, dimension: Dimension, unit: Option<Rc<Unit>>) -> Value {
+    fn form(
+        &mut self,
+        form: crate::covariance::form::LinearForm,
+        dimension: Dimension,
+        unit: Option<Rc<Unit>>,
+    ) -> Value {
         self.terms = self.terms.saturating_add(form.terms().len());
         Value::Form(Varying {
             form: Rc::new(form),
@@ -796,10 +844,13 @@ pub fn unknown_overrides(names: &Names<'_>, overrides: &[Overrides], diagnostics
             None => format!("the model has no parameter called `{name}`"),
         };
         let tree = &names.parts().get(root).tree;
-        let parameters = tree.declarations.iter().filter_map(|declaration| match &declaration.kind {
-            DeclarationKind::Parameter { name, .. } => Some(&*name.text),
-            _ => None,
-        });
+        let parameters = tree
+            .declarations
+            .iter()
+            .filter_map(|declaration| match &declaration.kind {
+                DeclarationKind::Parameter { name, .. } => Some(&*name.text),
+                _ => None,
+            });
         let all: Vec<&str> = parameters.collect();
         let mut finding = Diagnostic::new(Code::NameUnknown, set.name.span, message);
         finding.help = match choice(&names::near(name, all.iter().copied())) {

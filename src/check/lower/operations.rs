@@ -54,7 +54,11 @@ impl Lowering<'_, '_, '_> {
         };
         let form = varying.form.derivative();
         let order = |form: &crate::covariance::form::LinearForm| {
-            form.terms().iter().map(|term| term.operator.derivatives).max().unwrap_or(0)
+            form.terms()
+                .iter()
+                .map(|term| term.operator.derivatives)
+                .max()
+                .unwrap_or(0)
         };
         if order(&form) > MOST_DERIVATIVES {
             let message = format!("a process is differentiated at most {MOST_DERIVATIVES} times");
@@ -75,7 +79,10 @@ impl Lowering<'_, '_, '_> {
             self.dimension_too_large(call.function.span);
             return Value::Fault;
         };
-        let unit = varying.unit.as_ref().and_then(|unit| unit.over(&crate::units::Unit::named("s")?));
+        let unit = varying
+            .unit
+            .as_ref()
+            .and_then(|unit| unit.over(&crate::units::Unit::named("s")?));
         self.form(form, dimension, unit.map(Rc::new))
     }
 

@@ -106,7 +106,11 @@ impl Lowering<'_, '_, '_> {
             return None;
         }
         let given = |names: &[&str]| -> Vec<Span> {
-            names.iter().filter_map(|name| arguments.word(name)).map(|word| word.span).collect()
+            names
+                .iter()
+                .filter_map(|name| arguments.word(name))
+                .map(|word| word.span)
+                .collect()
         };
         let ways = [
             given(&["standard_deviation", "coefficient_of_variation", "correlation"]),
@@ -140,8 +144,16 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// Standard deviation or coefficient of variation, and a correlation function.
-    fn from_correlation(&mut self, call: &Call, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
-        let (deviation, variation) = (arguments.get("standard_deviation"), arguments.get("coefficient_of_variation"));
+    fn from_correlation(
+        &mut self,
+        call: &Call,
+        arguments: &Arguments<'_>,
+        subject: Subject<'_>,
+    ) -> Option<Description> {
+        let (deviation, variation) = (
+            arguments.get("standard_deviation"),
+            arguments.get("coefficient_of_variation"),
+        );
         if let (Some(_), Some(word)) = (deviation, arguments.word("coefficient_of_variation")) {
             let message = format!("the process `{}` has its scatter given twice", subject.name.text);
             self.report(
@@ -206,7 +218,9 @@ impl Lowering<'_, '_, '_> {
 
     fn deviation(&mut self, expression: &Expression, mean: Option<&Scalar>, subject: Subject<'_>) -> Option<Scalar> {
         let what = format!("the standard deviation of `{}`", subject.name.text);
-        let wanted = subject.dimension.or(mean.filter(|mean| !mean.bare_zero).map(|mean| mean.dimension));
+        let wanted = subject
+            .dimension
+            .or(mean.filter(|mean| !mean.bare_zero).map(|mean| mean.dimension));
         let deviation = match wanted {
             Some(dimension) => self.number(expression, subject.scope, dimension, &what, None)?,
             None => {
@@ -231,7 +245,10 @@ impl Lowering<'_, '_, '_> {
         let mean = mean?;
         let mean_value = known(mean)?;
         if mean_value == 0.0 {
-            let message = format!("`{}` has a mean of 0, so a coefficient of variation says nothing", subject.name.text);
+            let message = format!(
+                "`{}` has a mean of 0, so a coefficient of variation says nothing",
+                subject.name.text
+            );
             let mut finding = Diagnostic::new(Code::ProcessZeroMean, expression.span, message)
                 .here("this share of the mean is 0")
                 .help("give `standard_deviation` instead");
@@ -356,6 +373,16 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
+    /// The constant part of a kernel, and the words that say where it was found.
+    fn constant_of(&self, kernel: &Kernel) -> Result<(f64, String), Unavailable> {
+        if let Some(constant) = kernel.constant_part()? {
+            return Ok((constant, "its constant part is".to_string()));
+        }
+        let (lag, value) = kernel.at_long_lag()?;
+        let lag = crate::units::show_number(lag, 3);
+        Ok((value, format!("its value at the very long lag of {lag} s is")))
+    }
+
     fn positive_variance(&mut self, kernel: &Kernel, place: Span, what: &str) -> Option<()> {
         let variance = self.at_zero(kernel, place)?;
         if variance > 0.0 && variance.is_finite() {
@@ -380,7 +407,10 @@ impl Lowering<'_, '_, '_> {
         let at_zero = self.at_zero(&raw.kernel, expression.span)?;
         if at_zero <= square {
             let (total, square) = (show(at_zero, &unit, 6), show(square, &unit, 6));
-            let message = format!("the mean square of `{}` must be larger than the square of its mean", subject.name.text);
+            let message = format!(
+                "the mean square of `{}` must be larger than the square of its mean",
+                subject.name.text
+            );
             self.report(
                 Diagnostic::new(Code::ProcessMeanSquare, expression.span, message)
                     .here(format!("{total} at lag 0, against {square} from the mean"))
@@ -388,9 +418,13 @@ impl Lowering<'_, '_, '_> {
             );
             return None;
         }
-        let (constant, found_how) = match raw.kernel.constant_part() {
-            Some(constant) => (constant, "its constant part"),
-            None => (raw.kernel.at_long_lag().unwrap_or(f64::NAN), "its value at a very long lag"),
+        let (constant, found_how) = match self.constant_of(&raw.kernel) {
+            Ok(found) => found,
+            Err(why) => {
+                let message = "the constant part of this autocorrelation cannot be told";
+                self.report(Diagnostic::new(Code::KernelUnclear, expression.span, message).here(why.to_string()));
+                return None;
+            }
         };
         if !((constant - square).abs() <= MEAN_SQUARE * at_zero) {
             let (constant, square) = (show(constant, &unit, 6), show(square, &unit, 6));
@@ -400,7 +434,7 @@ impl Lowering<'_, '_, '_> {
             );
             self.report(
                 Diagnostic::new(Code::ProcessMeanSquare, expression.span, message)
-                    .here(format!("{found_how} is {constant}, the square of the mean is {square}"))
+                    .here(format!("{found_how} {constant}, the square of the mean is {square}"))
                     .help(
                         "a raw autocorrelation E[X(t) X(t+tau)] holds the square of the mean: add it, or give the \
                          function as `autocovariance`",
@@ -421,11 +455,11 @@ impl Lowering<'_, '_, '_> {
     /// What a handful of lags can already show: a kernel is never larger than at lag 0, and bends down there. Kernels of
     /// the language pass by construction; this is for those written out or tabulated.
     fn sample_for_validity(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
-        if kernel.valid_by_construction() {
+        if kernel.is_valid_by_construction() {
             return Some(());
         }
         let at_zero = self.at_zero(kernel, place)?;
-        for lag in kernel.probing_lags() {
+        for lag in probing_lags(kernel) {
             let value = match kernel.value(lag) {
                 Ok(value) => value,
                 Err(Unavailable::NoValue { .. }) => f64::NAN,
@@ -456,6 +490,17 @@ impl Lowering<'_, '_, '_> {
         }
         Some(())
     }
+}
+
+/// Lags that show the shape of a kernel, from well below its shortest to well beyond its longest time.
+fn probing_lags(kernel: &Kernel) -> impl Iterator<Item = f64> {
+    const STEPS: i32 = 256;
+    let (shortest, longest) = kernel.times().unwrap_or((1.0, 1.0));
+    let (from, to) = (0.125 * shortest, 16.0 * longest);
+    let ratio = (to / from).powf(1.0 / f64::from(STEPS));
+    (0..=STEPS)
+        .map(move |step| from * ratio.powi(step))
+        .filter(|lag| lag.is_finite())
 }
 
 fn known(scalar: &Scalar) -> Option<f64> {

@@ -4,9 +4,9 @@ use super::Lowering;
 use crate::check::names::{choice, near};
 use crate::check::parts::unreadable;
 use crate::diagnostics::{Code, Diagnostic};
+use crate::language::parse_expression;
 use crate::language::tree::{Expression, ExpressionKind};
 use crate::source::{FileId, Span, beside};
-use crate::language::parse_expression;
 use crate::units::{self, Dimension, Unit};
 use std::rc::Rc;
 
@@ -76,7 +76,11 @@ impl Lowering<'_, '_, '_> {
         let before = self.diagnostics.len();
         match rows.first() {
             Some((lag, correlation, place)) if *lag != 0.0 || (correlation - 1.0).abs() > 1e-9 => {
-                self.table_fault(*place, named, "the first row of a kernel's table must be lag 0 with correlation 1");
+                self.table_fault(
+                    *place,
+                    named,
+                    "the first row of a kernel's table must be lag 0 with correlation 1",
+                );
             }
             _ => {}
         }
@@ -123,14 +127,20 @@ impl Lowering<'_, '_, '_> {
         let headers = match reader.headers() {
             Ok(headers) => headers.clone(),
             Err(error) => {
-                self.table_fault(Span::new(file, 0, 0), named, &format!("this is not a CSV file: {error}"));
+                self.table_fault(
+                    Span::new(file, 0, 0),
+                    named,
+                    &format!("this is not a CSV file: {error}"),
+                );
                 return None;
             }
         };
         let head = headers.position().map_or(0, |position| position.byte() as usize) + offset;
         let head = line_from(&text, head).map_or(Span::new(file, 0, 0), |range| Span::new(file, range.0, range.1));
-        let found: Vec<Option<(usize, Rc<Unit>)>> =
-            wanted.iter().map(|column| self.column(&headers, head, named, column)).collect();
+        let found: Vec<Option<(usize, Rc<Unit>)>> = wanted
+            .iter()
+            .map(|column| self.column(&headers, head, named, column))
+            .collect();
         if self.diagnostics.len() > before {
             return None;
         }
@@ -180,7 +190,10 @@ impl Lowering<'_, '_, '_> {
     ) -> Option<(usize, Rc<Unit>)> {
         let split = |header: &str| {
             let (name, unit) = header.split_once('[').unwrap_or((header, ""));
-            (name.trim().to_string(), unit.trim().trim_end_matches(']').trim().to_string())
+            (
+                name.trim().to_string(),
+                unit.trim().trim_end_matches(']').trim().to_string(),
+            )
         };
         let names: Vec<(String, String)> = headers.iter().map(split).collect();
         let Some(index) = names.iter().position(|(name, _)| name == wanted.name) else {

@@ -84,7 +84,12 @@ impl Kernel {
             let rough = term.exponent.rem_euclid(2.0) != 0.0 || term.logs > 0;
             match coefficients.get_mut(term.exponent as usize) {
                 Some(coefficient) if !rough => *coefficient = term.coefficient,
-                _ => return Err(Unavailable::NotSmooth { lag: 0.0, derivative: term.exponent.ceil().max(0.0) as usize }),
+                _ => {
+                    return Err(Unavailable::NotSmooth {
+                        lag: 0.0,
+                        derivative: term.exponent.ceil().max(0.0) as usize,
+                    });
+                }
             }
         }
         if expansion.order() <= order as f64 {
@@ -97,8 +102,15 @@ impl Kernel {
     fn taylor_right(&self, lag: f64, order: usize) -> Result<Vec<f64>, Unavailable> {
         match self {
             Self::Constant => Ok(unit(order)),
-            Self::Family(family) => match family.kinks().iter().find(|kink| kink.lag == lag && kink.derivative <= order) {
-                Some(kink) => Err(Unavailable::NotSmooth { lag, derivative: kink.derivative }),
+            Self::Family(family) => match family
+                .kinks()
+                .iter()
+                .find(|kink| kink.lag == lag && kink.derivative <= order)
+            {
+                Some(kink) => Err(Unavailable::NotSmooth {
+                    lag,
+                    derivative: kink.derivative,
+                }),
                 None => Ok(family.taylor(lag, order)),
             },
             Self::Tabulated(table) => table.taylor(lag, order),
@@ -112,7 +124,9 @@ impl Kernel {
                 let mut sum = vec![0.0; order + 1];
                 for term in terms.iter() {
                     let coefficients = term.taylor_right(lag, order)?;
-                    sum.iter_mut().zip(coefficients).for_each(|(sum, coefficient)| *sum += coefficient);
+                    sum.iter_mut()
+                        .zip(coefficients)
+                        .for_each(|(sum, coefficient)| *sum += coefficient);
                 }
                 Ok(sum)
             }
@@ -149,12 +163,18 @@ impl Kernel {
             Self::Tabulated(table) => Some(table.times()),
             Self::User(user) => user.times(),
             Self::Scaled(_, kernel) => kernel.times(),
-            Self::Sum(parts) => parts.iter().filter_map(Kernel::times).reduce(|a, b| (a.0.min(b.0), a.1.max(b.1))),
+            Self::Sum(parts) => parts
+                .iter()
+                .filter_map(Kernel::times)
+                .reduce(|a, b| (a.0.min(b.0), a.1.max(b.1))),
             // A product is gone when its first factor is, unless that factor only swings.
             Self::Product(parts) => {
                 let fading = parts.iter().filter(|part| part.has_density()).filter_map(Kernel::times);
                 let longest = fading.map(|(_, long)| long).reduce(f64::min);
-                let all = parts.iter().filter_map(Kernel::times).reduce(|a, b| (a.0.min(b.0), a.1.max(b.1)));
+                let all = parts
+                    .iter()
+                    .filter_map(Kernel::times)
+                    .reduce(|a, b| (a.0.min(b.0), a.1.max(b.1)));
                 all.map(|(short, long)| (short, longest.unwrap_or(long).max(short)))
             }
         }

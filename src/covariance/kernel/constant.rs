@@ -13,7 +13,11 @@ impl Kernel {
         if self.has_user_kernel() {
             return Ok(None);
         }
-        let constant = self.lines()?.first().filter(|line| line.frequency == 0.0).map_or(0.0, |line| line.power);
+        let constant = self
+            .lines()?
+            .first()
+            .filter(|line| line.frequency == 0.0)
+            .map_or(0.0, |line| line.power);
         Ok(Some(constant))
     }
 
@@ -30,14 +34,19 @@ impl Kernel {
             _ if constant == 0.0 => self,
             Self::Constant => minus(Self::Constant, constant),
             Self::User(user) => Self::User(Arc::new(user.less(constant))),
-            Self::Scaled(weight, kernel) if kernel.has_user_kernel() => {
-                Self::Scaled(weight, Arc::new(Self::clone(&kernel).without_constant(constant / weight)))
-            }
+            Self::Scaled(weight, kernel) if kernel.has_user_kernel() => Self::Scaled(
+                weight,
+                Arc::new(Self::clone(&kernel).without_constant(constant / weight)),
+            ),
             Self::Sum(terms) => {
                 let is_constant = |term: &Kernel| !term.has_density() && term.times().is_none();
                 let (constants, mut others): (Vec<Kernel>, Vec<Kernel>) = terms.iter().cloned().partition(is_constant);
                 let within: f64 = constants.iter().filter_map(|term| term.value(0.0).ok()).sum();
-                let rest = if (within - constant).abs() <= ROUNDING * constant.abs() { 0.0 } else { constant - within };
+                let rest = if (within - constant).abs() <= ROUNDING * constant.abs() {
+                    0.0
+                } else {
+                    constant - within
+                };
                 match others.iter_mut().find(|term| term.has_user_kernel()) {
                     Some(user) => *user = std::mem::replace(user, Self::Constant).without_constant(rest),
                     None if rest != 0.0 => return minus(Self::sum(others), rest),

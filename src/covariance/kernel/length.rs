@@ -109,11 +109,16 @@ impl LengthOf {
 fn damped_cosine(scale: f64, frequency: f64) -> Length {
     let swing = scale * frequency;
     if swing > 1.0 {
-        return Length::None(NoLength::TooLarge { largest: 1.0 / frequency });
+        return Length::None(NoLength::TooLarge {
+            largest: 1.0 / frequency,
+        });
     }
     if swing == 1.0 {
         return Length::Unique(scale);
     }
     let sum = 1.0 + ((1.0 - swing) * (1.0 + swing)).sqrt();
-    Length::Two { short: scale / sum, long: sum / (swing * frequency) }
+    Length::Two {
+        short: scale / sum,
+        long: sum / (swing * frequency),
+    }
 }

@@ -91,12 +91,19 @@ const CLOSED_FORM: f64 = 1e-13;
 impl Estimate {
     /// From a closed form.
     fn closed(value: f64) -> Self {
-        let error = if value.is_finite() { value.abs() * CLOSED_FORM } else { 0.0 };
+        let error = if value.is_finite() {
+            value.abs() * CLOSED_FORM
+        } else {
+            0.0
+        };
         Self { value, error }
     }
 
     fn plus(self, other: Self) -> Self {
-        Self { value: self.value + other.value, error: self.error + other.error }
+        Self {
+            value: self.value + other.value,
+            error: self.error + other.error,
+        }
     }
 
     /// The product with a number; zero times infinity is zero.
@@ -104,7 +111,10 @@ impl Estimate {
         if factor == 0.0 {
             return Self { value: 0.0, error: 0.0 };
         }
-        Self { value: self.value * factor, error: self.error * factor.abs() }
+        Self {
+            value: self.value * factor,
+            error: self.error * factor.abs(),
+        }
     }
 }
 
@@ -147,14 +157,24 @@ impl fmt::Display for Unavailable {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
             Self::BeyondTable { lag, last } => {
-                write!(out, "the lag {lag} s lies beyond the table, which ends at {last} s and says nothing there")
+                write!(
+                    out,
+                    "the lag {lag} s lies beyond the table, which ends at {last} s and says nothing there"
+                )
             }
             Self::NoValue { kernel, lag } => write!(out, "{kernel} has no finite value at the lag {lag} s"),
             Self::NotSmooth { lag, derivative: 0 } => write!(out, "the kernel jumps at the lag {lag} s"),
             Self::NotSmooth { lag, derivative } => {
-                write!(out, "the derivative of order {derivative} does not exist at the lag {lag} s")
+                write!(
+                    out,
+                    "the derivative of order {derivative} does not exist at the lag {lag} s"
+                )
             }
-            Self::TooManyLines => write!(out, "the spectrum of the product has more than {} lines", spectrum::MOST_LINES),
+            Self::TooManyLines => write!(
+                out,
+                "the spectrum of the product has more than {} lines",
+                spectrum::MOST_LINES
+            ),
             Self::NoExpansion { kernel, reason } => write!(out, "{kernel} has no series at lag zero: {reason}"),
         }
     }
@@ -190,7 +210,12 @@ impl Kernel {
     pub fn scaled(self, weight: f64) -> Result<Self, InvalidParameter> {
         if !(weight.is_finite() && weight >= 0.0) {
             let demand = "finite and not negative";
-            return Err(InvalidParameter { family: "a kernel", parameter: "the factor", value: weight, demand });
+            return Err(InvalidParameter {
+                family: "a kernel",
+                parameter: "the factor",
+                value: weight,
+                demand,
+            });
         }
         Ok(match self {
             _ if weight == 0.0 => Self::zero(),
@@ -266,7 +291,11 @@ fn joined(
         if place > 0 {
             out.write_str(between)?;
         }
-        if in_brackets(part) { write!(out, "({part})")? } else { write!(out, "{part}")? }
+        if in_brackets(part) {
+            write!(out, "({part})")?
+        } else {
+            write!(out, "{part}")?
+        }
     }
     Ok(())
 }

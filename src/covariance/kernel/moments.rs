@@ -65,9 +65,10 @@ impl Moment {
     /// As an estimate, infinite where it is.
     fn estimate(&self) -> Result<Estimate, Unavailable> {
         match self {
-            Self::Finite { value, error } | Self::Unreached { value, error } => {
-                Ok(Estimate { value: *value, error: *error })
-            }
+            Self::Finite { value, error } | Self::Unreached { value, error } => Ok(Estimate {
+                value: *value,
+                error: *error,
+            }),
             Self::Infinite => Ok(Estimate::closed(f64::INFINITY)),
             Self::Unknown(why) => Err(why.clone()),
         }
@@ -92,7 +93,10 @@ impl Moment {
     fn product(&self, other: &Self) -> Self {
         let product = |one: Estimate, two: Estimate| {
             let value = one.times(two.value);
-            Estimate { error: value.error + one.value.abs().min(f64::MAX) * two.error, ..value }
+            Estimate {
+                error: value.error + one.value.abs().min(f64::MAX) * two.error,
+                ..value
+            }
         };
         Self::of_result(self.estimate().and_then(|one| Ok(product(one, other.estimate()?))))
     }
@@ -100,13 +104,22 @@ impl Moment {
 
 impl SpectralMoments {
     fn closed(lambda: [f64; 4]) -> Self {
-        Self { lambda: lambda.map(Moment::closed) }
+        Self {
+            lambda: lambda.map(Moment::closed),
+        }
     }
 
     fn zip(&self, other: &Self, operation: impl Fn(&Moment, &Moment) -> Moment) -> Self {
         let [a0, a1, a2, a4] = &self.lambda;
         let [b0, b1, b2, b4] = &other.lambda;
-        Self { lambda: [operation(a0, b0), operation(a1, b1), operation(a2, b2), operation(a4, b4)] }
+        Self {
+            lambda: [
+                operation(a0, b0),
+                operation(a1, b1),
+                operation(a2, b2),
+                operation(a4, b4),
+            ],
+        }
     }
 }
 
@@ -119,7 +132,9 @@ impl Kernel {
             Self::Family(family) => SpectralMoments::closed(family.moments()),
             Self::Tabulated(table) => {
                 let [zeroth, second, fourth] = table.even_moments().map(Moment::closed);
-                SpectralMoments { lambda: [zeroth, Moment::of_result(table.first_moment()), second, fourth] }
+                SpectralMoments {
+                    lambda: [zeroth, Moment::of_result(table.first_moment()), second, fourth],
+                }
             }
             Self::User(user) => {
                 let expansion = user.expansion(ORDER);
@@ -129,15 +144,19 @@ impl Kernel {
                     Err(why) => Moment::Unknown(why),
                 };
                 let first = Moment::of_result(self.first_moment_over_lags());
-                SpectralMoments { lambda: [zeroth, first, even(2, -2.0), even(4, 24.0)] }
+                SpectralMoments {
+                    lambda: [zeroth, first, even(2, -2.0), even(4, 24.0)],
+                }
             }
-            Self::Scaled(weight, kernel) => {
-                SpectralMoments { lambda: kernel.moments().lambda.map(|moment| moment.times(*weight)) }
-            }
+            Self::Scaled(weight, kernel) => SpectralMoments {
+                lambda: kernel.moments().lambda.map(|moment| moment.times(*weight)),
+            },
             Self::Sum(terms) => terms
                 .iter()
                 .map(Kernel::moments)
-                .fold(SpectralMoments::closed([0.0; 4]), |sum, term| sum.zip(&term, Moment::plus)),
+                .fold(SpectralMoments::closed([0.0; 4]), |sum, term| {
+                    sum.zip(&term, Moment::plus)
+                }),
             Self::Product(factors) => {
                 let moments = factors.iter().map(Kernel::moments);
                 let mut product = moments.fold(SpectralMoments::closed([1.0, 0.0, 0.0, 0.0]), |a, b| leibniz(&a, &b));
@@ -149,27 +168,44 @@ impl Kernel {
 
     /// lambda_1 of a product, over frequencies where the density is at hand, else over lags.
     fn first_moment(&self) -> Result<Estimate, Unavailable> {
-        if self.density_is_closed() { self.first_moment_over_frequencies() } else { self.first_moment_over_lags() }
+        if self.density_is_closed() {
+            self.first_moment_over_frequencies()
+        } else {
+            self.first_moment_over_lags()
+        }
     }
 
     /// lambda_1 as 2/pi times the integral of (C(0) - C(tau)) / tau^2, whose integrand has one sign: from
     /// 1 - cos x over x^2, the integral of which over x > 0 is pi / 2.
     pub(super) fn first_moment_over_lags(&self) -> Result<Estimate, Unavailable> {
         let variance = self.value(0.0)?;
-        let Some(times) = self.times() else { return Ok(Estimate::closed(0.0)) };
+        let Some(times) = self.times() else {
+            return Ok(Estimate::closed(0.0));
+        };
         let expansion = self.expansion(ORDER);
-        match expansion.terms().iter().find(|term| term.exponent != 0.0 || term.logs > 0) {
+        match expansion
+            .terms()
+            .iter()
+            .find(|term| term.exponent != 0.0 || term.logs > 0)
+        {
             Some(term) if term.exponent <= 1.0 => return Ok(Estimate::closed(f64::INFINITY)),
             _ if expansion.order() <= 1.0 => return Err(no_expansion(&expansion, &self.to_string())),
             _ => {}
         }
         // Close to zero from the expansion; how far it is wrong at the end of that stretch is seen there.
         let near = NEAR * times.0;
-                let series = expansion.terms().iter().filter(|term| term.exponent > 0.0);
-        let from_expansion: f64 = series.map(|term| expanded_loss(near, term.exponent, term.logs) * term.coefficient).sum();
+        let series = expansion.terms().iter().filter(|term| term.exponent > 0.0);
+        let from_expansion: f64 = series
+            .map(|term| expanded_loss(near, term.exponent, term.logs) * term.coefficient)
+            .sum();
         let there = series_value(&expansion, near);
-        let mismatch = (self.loss(near)? - (variance - there)).abs().max(f64::EPSILON * variance);
-        let start = Estimate { value: from_expansion, error: mismatch / near };
+        let mismatch = (self.loss(near)? - (variance - there))
+            .abs()
+            .max(f64::EPSILON * variance);
+        let start = Estimate {
+            value: from_expansion,
+            error: mismatch / near,
+        };
 
         let kinks: Vec<f64> = self.kinks().iter().map(|kink| kink.lag).collect();
         let lags = transform::lags(near, times, &kinks);
@@ -194,10 +230,16 @@ impl Kernel {
         let integrand = |omega: f64| self.density(omega).map_or(f64::NAN, |density| omega * density.value);
         let frequencies = self.frequency_grid()?;
         let integral = quadrature::to_infinity(integrand, &frequencies, Tolerance::relative(1e-11), 400_000);
-        let continuous = integral.map_or(Estimate { value: 0.0, error: f64::INFINITY }, |integral| Estimate {
-            value: integral.value,
-            error: integral.error,
-        });
+        let continuous = integral.map_or(
+            Estimate {
+                value: 0.0,
+                error: f64::INFINITY,
+            },
+            |integral| Estimate {
+                value: integral.value,
+                error: integral.error,
+            },
+        );
         Ok(continuous.plus(Estimate::closed(from_lines)))
     }
 }
@@ -229,9 +271,14 @@ fn even_moment(expansion: &Series, n: u32, factor: f64, kernel: &str) -> Result<
     if expansion.terms().iter().any(rough) {
         return Ok(Estimate::closed(f64::INFINITY));
     }
-    let coefficient = expansion.coefficient(n).ok_or_else(|| no_expansion(expansion, kernel))?;
+    let coefficient = expansion
+        .coefficient(n)
+        .ok_or_else(|| no_expansion(expansion, kernel))?;
     let value = factor * coefficient;
-    Ok(Estimate { value, error: EXPANDED * value.abs() })
+    Ok(Estimate {
+        value,
+        error: EXPANDED * value.abs(),
+    })
 }
 
 fn no_expansion(expansion: &Series, kernel: &str) -> Unavailable {
@@ -239,7 +286,10 @@ fn no_expansion(expansion: &Series, kernel: &str) -> Unavailable {
         Some(reason) => reason.to_string(),
         None => format!("it is known only below the power {}", expansion.order()),
     };
-    Unavailable::NoExpansion { kernel: kernel.to_owned(), reason }
+    Unavailable::NoExpansion {
+        kernel: kernel.to_owned(),
+        reason,
+    }
 }
 
 /// The even moments of a product from those of its factors: Leibniz' rule for its second and fourth derivative at zero,
@@ -249,5 +299,7 @@ fn leibniz(a: &SpectralMoments, b: &SpectralMoments) -> SpectralMoments {
     let [b0, _, b2, b4] = &b.lambda;
     let second = a2.product(b0).plus(&a0.product(b2));
     let fourth = a4.product(b0).plus(&a2.product(b2).times(6.0)).plus(&a0.product(b4));
-    SpectralMoments { lambda: [a0.product(b0), a1.clone(), second, fourth] }
+    SpectralMoments {
+        lambda: [a0.product(b0), a1.clone(), second, fourth],
+    }
 }

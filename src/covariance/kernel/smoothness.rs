@@ -38,21 +38,35 @@ const FOLLOWED: f64 = 12.0;
 impl Smoothness {
     /// What a first rough term leaves.
     fn limited(limiting: Rough) -> Self {
-        Self::Exactly { derivatives: below(limiting.exponent), limiting }
+        Self::Exactly {
+            derivatives: below(limiting.exponent),
+            limiting,
+        }
     }
 
     /// What an expansion at lag zero says.
     fn of_series(series: &Series) -> Self {
         if let Some(reason) = series.reason() {
-            return Self::Unclear { reason: reason.to_string() };
+            return Self::Unclear {
+                reason: reason.to_string(),
+            };
         }
         let rough = |term: &&SeriesTerm| term.exponent.rem_euclid(2.0) != 0.0 || term.logs > 0;
         match series.terms().iter().find(rough) {
-            Some(term) if term.exponent <= 0.0 => Self::Unclear { reason: "it is infinite at lag zero".to_owned() },
-            Some(term) => Self::limited(Rough { exponent: term.exponent, log: term.logs }),
+            Some(term) if term.exponent <= 0.0 => Self::Unclear {
+                reason: "it is infinite at lag zero".to_owned(),
+            },
+            Some(term) => Self::limited(Rough {
+                exponent: term.exponent,
+                log: term.logs,
+            }),
             None if series.order() == f64::INFINITY => Self::Unlimited,
-            None if series.order() > 0.0 => Self::AtLeast { derivatives: below(series.order()) },
-            None => Self::Unclear { reason: "its expansion at lag zero is not known".to_owned() },
+            None if series.order() > 0.0 => Self::AtLeast {
+                derivatives: below(series.order()),
+            },
+            None => Self::Unclear {
+                reason: "its expansion at lag zero is not known".to_owned(),
+            },
         }
     }
 
@@ -62,7 +76,13 @@ impl Smoothness {
         match (self, other) {
             (unclear @ Self::Unclear { .. }, _) | (_, unclear @ Self::Unclear { .. }) => unclear,
             (Self::Unlimited, other) | (other, Self::Unlimited) => other,
-            (one, two) => if one.rank() <= two.rank() { one } else { two },
+            (one, two) => {
+                if one.rank() <= two.rank() {
+                    one
+                } else {
+                    two
+                }
+            }
         }
     }
 
@@ -90,9 +110,10 @@ impl Kernel {
             Self::Tabulated(table) => table.roughness().map_or(Smoothness::Unlimited, Smoothness::limited),
             Self::User(user) => Smoothness::of_series(&user.expansion(FOLLOWED)),
             Self::Scaled(_, kernel) => kernel.smoothness(),
-            Self::Sum(parts) | Self::Product(parts) => {
-                parts.iter().map(Kernel::smoothness).fold(Smoothness::Unlimited, Smoothness::and)
-            }
+            Self::Sum(parts) | Self::Product(parts) => parts
+                .iter()
+                .map(Kernel::smoothness)
+                .fold(Smoothness::Unlimited, Smoothness::and),
         }
     }
 }

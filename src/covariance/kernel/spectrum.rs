@@ -18,13 +18,21 @@ impl Kernel {
     /// The lines of the spectrum, by rising frequency. Those of user kernels are not known.
     pub fn lines(&self) -> Result<Vec<Line>, Unavailable> {
         Ok(match self {
-            Self::Constant => vec![Line { frequency: 0.0, power: 1.0 }],
+            Self::Constant => vec![Line {
+                frequency: 0.0,
+                power: 1.0,
+            }],
             Self::Family(family) => family.lines(),
             Self::Tabulated(table) => table.lines(),
             Self::User(_) => Vec::new(),
             Self::Scaled(weight, kernel) => {
                 let lines = kernel.lines()?.into_iter();
-                lines.map(|line| Line { power: weight * line.power, ..line }).collect()
+                lines
+                    .map(|line| Line {
+                        power: weight * line.power,
+                        ..line
+                    })
+                    .collect()
             }
             Self::Sum(terms) => {
                 let mut lines = Vec::new();
@@ -46,9 +54,9 @@ impl Kernel {
             Self::Tabulated(table) => Ok(Estimate::closed(table.density(omega)?)),
             Self::User(_) => self.transformed(omega, |lag| self.value(lag)),
             Self::Scaled(weight, kernel) => Ok(kernel.density(omega)?.times(*weight)),
-            Self::Sum(terms) => {
-                terms.iter().try_fold(Estimate::closed(0.0), |sum, term| Ok(sum.plus(term.density(omega)?)))
-            }
+            Self::Sum(terms) => terms
+                .iter()
+                .try_fold(Estimate::closed(0.0), |sum, term| Ok(sum.plus(term.density(omega)?))),
             Self::Product(factors) => {
                 self.lines()?;
                 density_of_product(factors, omega)
@@ -63,7 +71,9 @@ impl Kernel {
             Self::Constant => Vec::new(),
             Self::Family(family) => family.peaks(),
             Self::Tabulated(_) | Self::User(_) => {
-                let widths = self.times().map_or([0.0; 0].to_vec(), |(short, long)| vec![1.0 / long, 1.0 / short]);
+                let widths = self
+                    .times()
+                    .map_or([0.0; 0].to_vec(), |(short, long)| vec![1.0 / long, 1.0 / short]);
                 widths.into_iter().map(|width| Peak { frequency: 0.0, width }).collect()
             }
             Self::Scaled(_, kernel) => kernel.peaks()?,
@@ -75,11 +85,20 @@ impl Kernel {
                 peaks
             }
             Self::Product(factors) => {
-                let mut peaks = vec![Peak { frequency: 0.0, width: 0.0 }];
+                let mut peaks = vec![Peak {
+                    frequency: 0.0,
+                    width: 0.0,
+                }];
                 for factor in factors.iter() {
-                    let lines = factor.lines()?.into_iter().map(|line| Peak { frequency: line.frequency, width: 0.0 });
+                    let lines = factor.lines()?.into_iter().map(|line| Peak {
+                        frequency: line.frequency,
+                        width: 0.0,
+                    });
                     let others: Vec<Peak> = factor.peaks()?.into_iter().chain(lines).collect();
-                    peaks = peaks.iter().flat_map(|one| others.iter().flat_map(|two| one.beat(*two))).collect();
+                    peaks = peaks
+                        .iter()
+                        .flat_map(|one| others.iter().flat_map(|two| one.beat(*two)))
+                        .collect();
                     peaks.sort_by(|a, b| a.frequency.total_cmp(&b.frequency).then(a.width.total_cmp(&b.width)));
                     peaks.dedup();
                     if peaks.len() > MOST_LINES {
@@ -126,7 +145,8 @@ impl Kernel {
             Self::Scaled(_, kernel) => kernel.density_is_closed(),
             Self::Sum(parts) => parts.iter().all(Kernel::density_is_closed),
             Self::Product(parts) => {
-                parts.iter().all(Kernel::density_is_closed) && parts.iter().filter(|part| part.has_density()).count() < 2
+                parts.iter().all(Kernel::density_is_closed)
+                    && parts.iter().filter(|part| part.has_density()).count() < 2
             }
         }
     }
@@ -140,9 +160,9 @@ impl Kernel {
             Self::Tabulated(table) => Ok(Estimate::closed(table.scale_of_fluctuation()?)),
             Self::User(_) => Ok(self.transformed(0.0, |lag| self.value(lag))?.times(PI)),
             Self::Scaled(weight, kernel) => Ok(kernel.integral_over_lags()?.times(*weight)),
-            Self::Sum(terms) => {
-                terms.iter().try_fold(Estimate::closed(0.0), |sum, term| Ok(sum.plus(term.integral_over_lags()?)))
-            }
+            Self::Sum(terms) => terms.iter().try_fold(Estimate::closed(0.0), |sum, term| {
+                Ok(sum.plus(term.integral_over_lags()?))
+            }),
             Self::Product(_) => match self.lines()?.first() {
                 Some(line) if line.frequency == 0.0 => Ok(Estimate::closed(f64::INFINITY)),
                 _ => Ok(self.density(0.0)?.times(PI)),
@@ -161,7 +181,9 @@ impl Kernel {
         omega: f64,
         function: impl Fn(f64) -> Result<f64, Unavailable>,
     ) -> Result<Estimate, Unavailable> {
-        let Some(times) = self.times() else { return Ok(Estimate::closed(0.0)) };
+        let Some(times) = self.times() else {
+            return Ok(Estimate::closed(0.0));
+        };
         let kinks: Vec<f64> = self.kinks().iter().map(|kink| kink.lag).collect();
         Ok(transform::cosine(function, omega, times, &kinks)?.times(FRAC_2_PI))
     }
@@ -172,7 +194,10 @@ impl Peak {
     fn beat(self, other: Self) -> [Self; 2] {
         let width = self.width + other.width;
         let peak = |frequency: f64| Self { frequency, width };
-        [peak((self.frequency - other.frequency).abs()), peak(self.frequency + other.frequency)]
+        [
+            peak((self.frequency - other.frequency).abs()),
+            peak(self.frequency + other.frequency),
+        ]
     }
 }
 
@@ -193,7 +218,10 @@ fn merged(mut lines: Vec<Line>) -> Vec<Line> {
 }
 
 fn lines_of_product(factors: &[Kernel]) -> Result<Vec<Line>, Unavailable> {
-    let mut product = vec![Line { frequency: 0.0, power: 1.0 }];
+    let mut product = vec![Line {
+        frequency: 0.0,
+        power: 1.0,
+    }];
     for factor in factors {
         let mut lines = Vec::new();
         for two in factor.lines()? {
@@ -214,7 +242,10 @@ fn lines_of_product(factors: &[Kernel]) -> Result<Vec<Line>, Unavailable> {
 fn beat(one: Line, two: Line) -> [Line; 2] {
     let power = 0.5 * one.power * two.power;
     let line = |frequency: f64| Line { frequency, power };
-    [line((one.frequency - two.frequency).abs()), line(one.frequency + two.frequency)]
+    [
+        line((one.frequency - two.frequency).abs()),
+        line(one.frequency + two.frequency),
+    ]
 }
 
 fn density_of_product(factors: &[Kernel], omega: f64) -> Result<Estimate, Unavailable> {
@@ -225,7 +256,9 @@ fn density_of_product(factors: &[Kernel], omega: f64) -> Result<Estimate, Unavai
 
 /// Of a product of factors that all have a density, and perhaps lines besides.
 fn density_of_continuous(factors: &[Kernel], omega: f64) -> Result<Estimate, Unavailable> {
-    let [first, rest @ ..] = factors else { return Ok(Estimate::closed(0.0)) };
+    let [first, rest @ ..] = factors else {
+        return Ok(Estimate::closed(0.0));
+    };
     if rest.is_empty() {
         return first.density(omega);
     }
@@ -233,7 +266,10 @@ fn density_of_continuous(factors: &[Kernel], omega: f64) -> Result<Estimate, Una
     let by_lines = moved(&lines.0, omega, |there| density_of_continuous(rest, there))?;
     let of_lines = moved(&lines.1, omega, |there| first.density(there))?;
     let without_lines = |lag: f64| {
-        let rest = rest.iter().map(|factor| factor.value(lag)).product::<Result<f64, _>>()?;
+        let rest = rest
+            .iter()
+            .map(|factor| factor.value(lag))
+            .product::<Result<f64, _>>()?;
         Ok((first.value(lag)? - waves(&lines.0, lag)) * (rest - waves(&lines.1, lag)))
     };
     let of_densities = Kernel::product(factors.to_vec()).transformed(omega, without_lines)?;

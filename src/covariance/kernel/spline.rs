@@ -40,8 +40,10 @@ impl Piece {
 /// The second derivatives solve a tridiagonal, diagonally dominant system, by elimination without pivoting
 /// (C. de Boor 1978, A Practical Guide to Splines, ch. IV).
 pub(super) fn even_cubic(points: &[(f64, f64)]) -> Vec<Piece> {
-    let intervals: Vec<(f64, f64)> =
-        points.windows(2).map(|pair| (pair[1].0 - pair[0].0, (pair[1].1 - pair[0].1) / (pair[1].0 - pair[0].0))).collect();
+    let intervals: Vec<(f64, f64)> = points
+        .windows(2)
+        .map(|pair| (pair[1].0 - pair[0].0, (pair[1].1 - pair[0].1) / (pair[1].0 - pair[0].0)))
+        .collect();
     // Forward: each curvature as `offset + factor * (the next one)`.
     let mut eliminated: Vec<(f64, f64)> = Vec::with_capacity(points.len());
     let (mut before_length, mut before_slope) = (0.0, 0.0);
@@ -60,7 +62,11 @@ pub(super) fn even_cubic(points: &[(f64, f64)]) -> Vec<Piece> {
         let curvature = offset + factor * next;
         let first = slope - length * (2.0 * curvature + next) / 6.0;
         let third = (next - curvature) / (6.0 * length);
-        pieces.push(Piece { from: point.0, length: *length, coefficients: [point.1, first, 0.5 * curvature, third] });
+        pieces.push(Piece {
+            from: point.0,
+            length: *length,
+            coefficients: [point.1, first, 0.5 * curvature, third],
+        });
         next = curvature;
     }
     pieces.reverse();
@@ -86,7 +92,10 @@ pub(super) fn cosine_transform(pieces: &[Piece], offset: f64, omega: f64) -> f64
             let moments = oscillating_moments(omega * h);
             let weights = [a - offset, b * h, c * h * h, d * h * h * h];
             let (sine, cosine) = (omega * piece.from).sin_cos();
-            let sum = weights.iter().zip(moments).map(|(weight, (re, im))| weight * (cosine * re - sine * im));
+            let sum = weights
+                .iter()
+                .zip(moments)
+                .map(|(weight, (re, im))| weight * (cosine * re - sine * im));
             h * sum.sum::<f64>()
         });
         return parts.sum();

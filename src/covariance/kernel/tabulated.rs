@@ -77,10 +77,15 @@ impl std::error::Error for InvalidTable {}
 impl Tabulated {
     /// From a name to show, lags in s that begin with 0 and rise, and the values there.
     pub fn new(name: impl Into<String>, rows: &[(f64, f64)], beyond: Beyond) -> Result<Self, InvalidTable> {
-        if let Some(row) = rows.iter().position(|(lag, value)| !(lag.is_finite() && value.is_finite())) {
+        if let Some(row) = rows
+            .iter()
+            .position(|(lag, value)| !(lag.is_finite() && value.is_finite()))
+        {
             return Err(InvalidTable::NotFinite { row });
         }
-        let &[(first, variance), .., (last, _)] = rows else { return Err(InvalidTable::TooShort) };
+        let &[(first, variance), .., (last, _)] = rows else {
+            return Err(InvalidTable::TooShort);
+        };
         if first != 0.0 {
             return Err(InvalidTable::NotFromZero { first });
         }
@@ -92,10 +97,18 @@ impl Tabulated {
         }
         let pieces = spline::even_cubic(rows);
         // Lags that nearly coincide can make slopes that leave the range of a double.
-        if let Some(row) = pieces.iter().position(|piece| !piece.coefficients.iter().all(|c| c.is_finite())) {
+        if let Some(row) = pieces
+            .iter()
+            .position(|piece| !piece.coefficients.iter().all(|c| c.is_finite()))
+        {
             return Err(InvalidTable::NotRising { row: row + 1 });
         }
-        Ok(Self { name: name.into(), pieces, last, beyond })
+        Ok(Self {
+            name: name.into(),
+            pieces,
+            last,
+            beyond,
+        })
     }
 
     /// What holds beyond the last lag.
@@ -135,7 +148,11 @@ impl Tabulated {
     }
 
     fn beyond_end(&self, lag: f64) -> Result<f64, Unavailable> {
-        if self.beyond == Beyond::Refuse { Err(self.refused(lag)) } else { Ok(self.plateau()) }
+        if self.beyond == Beyond::Refuse {
+            Err(self.refused(lag))
+        } else {
+            Ok(self.plateau())
+        }
     }
 
     pub(super) fn value(&self, lag: f64) -> Result<f64, Unavailable> {
@@ -154,7 +171,10 @@ impl Tabulated {
 
     pub(super) fn expansion(&self, order: f64) -> Series {
         let coefficients = self.pieces.first().map_or([0.0; 4], |piece| piece.coefficients);
-        let terms = coefficients.iter().zip(0..).map(|(coefficient, n)| SeriesTerm::new(*coefficient, f64::from(n), 0));
+        let terms = coefficients
+            .iter()
+            .zip(0..)
+            .map(|(coefficient, n)| SeriesTerm::new(*coefficient, f64::from(n), 0));
         Series::from_terms(terms.collect(), order)
     }
 
@@ -162,7 +182,12 @@ impl Tabulated {
         let mut coefficients = match self.piece(lag) {
             Some(_) if lag == self.last && self.end_kink() <= order => match self.beyond {
                 Beyond::Refuse => return Err(self.refused(lag)),
-                _ => return Err(Unavailable::NotSmooth { lag, derivative: self.end_kink() }),
+                _ => {
+                    return Err(Unavailable::NotSmooth {
+                        lag,
+                        derivative: self.end_kink(),
+                    });
+                }
             },
             Some(piece) if lag == piece.from && order >= 3 => {
                 return Err(Unavailable::NotSmooth { lag, derivative: 3 });
@@ -175,8 +200,16 @@ impl Tabulated {
     }
 
     pub(super) fn kinks(&self) -> Vec<Kink> {
-        let inner = self.pieces.iter().skip(1).map(|piece| Kink { lag: piece.from, derivative: 3 });
-        inner.chain([Kink { lag: self.last, derivative: self.end_kink() }]).collect()
+        let inner = self.pieces.iter().skip(1).map(|piece| Kink {
+            lag: piece.from,
+            derivative: 3,
+        });
+        inner
+            .chain([Kink {
+                lag: self.last,
+                derivative: self.end_kink(),
+            }])
+            .collect()
     }
 
     /// The lowest derivative that jumps at the last lag.
@@ -197,13 +230,21 @@ impl Tabulated {
     }
 
     pub(super) fn times(&self) -> (f64, f64) {
-        let shortest = self.pieces.iter().map(|piece| piece.length).fold(f64::INFINITY, f64::min);
+        let shortest = self
+            .pieces
+            .iter()
+            .map(|piece| piece.length)
+            .fold(f64::INFINITY, f64::min);
         (shortest, self.last)
     }
 
     pub(super) fn lines(&self) -> Vec<Line> {
         let power = self.plateau();
-        if power == 0.0 { Vec::new() } else { vec![Line { frequency: 0.0, power }] }
+        if power == 0.0 {
+            Vec::new()
+        } else {
+            vec![Line { frequency: 0.0, power }]
+        }
     }
 
     /// The continuous density, exactly; over all lags, so that it is refused with the rest of the lags.
@@ -232,7 +273,10 @@ impl Tabulated {
     pub(super) fn first_moment(&self) -> Result<Estimate, Unavailable> {
         self.beyond_end(f64::INFINITY)?;
         let [_, _, curvature, third] = self.pieces.first().map_or([0.0; 4], |piece| piece.coefficients);
-        let first = self.pieces.first().map_or(0.0, |piece| -piece.length * (curvature + 0.5 * piece.length * third));
+        let first = self
+            .pieces
+            .first()
+            .map_or(0.0, |piece| -piece.length * (curvature + 0.5 * piece.length * third));
         let beyond = (self.variance() - self.plateau()) / self.last;
         let mut sum = Estimate::closed(first + beyond);
         for piece in self.pieces.iter().skip(1) {
@@ -240,7 +284,10 @@ impl Tabulated {
             let integrand = |lag: f64| (lost - piece.change(lag - piece.from)) / (lag * lag);
             let limits = [piece.from, piece.end()];
             if let Some(part) = quadrature::between(integrand, &limits, Tolerance::relative(1e-13), 2_000) {
-                sum = sum.plus(Estimate { value: part.value, error: part.error });
+                sum = sum.plus(Estimate {
+                    value: part.value,
+                    error: part.error,
+                });
             }
         }
         Ok(sum.times(FRAC_2_PI))

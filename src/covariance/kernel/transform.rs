@@ -23,7 +23,10 @@ struct Fallible<F> {
 
 impl<F: Fn(f64) -> Result<f64, Unavailable>> Fallible<F> {
     fn new(function: F) -> Self {
-        Self { function, failure: RefCell::new(None) }
+        Self {
+            function,
+            failure: RefCell::new(None),
+        }
     }
 
     fn at(&self, lag: f64) -> f64 {
@@ -40,16 +43,28 @@ impl<F: Fn(f64) -> Result<f64, Unavailable>> Fallible<F> {
 
 /// An integral as an estimate; what could not be set up has an infinite error.
 fn estimate(integral: Option<Integral>) -> Estimate {
-    integral.map_or(Estimate { value: 0.0, error: f64::INFINITY }, |integral| Estimate {
-        value: integral.value,
-        error: integral.error,
-    })
+    integral.map_or(
+        Estimate {
+            value: 0.0,
+            error: f64::INFINITY,
+        },
+        |integral| Estimate {
+            value: integral.value,
+            error: integral.error,
+        },
+    )
 }
 
 /// Lags from `from` that grow fourfold from an eighth of the shortest time to `FADED` longest times, and the kinks.
 pub(super) fn lags(from: f64, (short, long): (f64, f64), kinks: &[f64]) -> Vec<f64> {
-    let graded = (0..200).map(|power| 0.125 * short * 4.0_f64.powi(power)).take_while(|lag| *lag < FADED * long);
-    let mut lags: Vec<f64> = graded.chain([FADED * long]).chain(kinks.iter().copied()).filter(|lag| *lag > from).collect();
+    let graded = (0..200)
+        .map(|power| 0.125 * short * 4.0_f64.powi(power))
+        .take_while(|lag| *lag < FADED * long);
+    let mut lags: Vec<f64> = graded
+        .chain([FADED * long])
+        .chain(kinks.iter().copied())
+        .filter(|lag| *lag > from)
+        .collect();
     lags.push(from);
     lags.sort_by(f64::total_cmp);
     lags.dedup();
@@ -64,7 +79,10 @@ pub(super) fn cosine(
     kinks: &[f64],
 ) -> Result<Estimate, Unavailable> {
     let absolute = 1e-13 * f(0.0)?.abs() * times.0;
-    let tolerance = Tolerance { absolute, relative: RELATIVE };
+    let tolerance = Tolerance {
+        absolute,
+        relative: RELATIVE,
+    };
     let f = Fallible::new(f);
     let mut lags = lags(0.0, times, kinks);
     let sum = if omega == 0.0 {
@@ -77,21 +95,31 @@ pub(super) fn cosine(
         let wave = |lag: f64| f.at(lag) * (omega * lag).cos();
         let head = estimate(quadrature::between(wave, &lags, tolerance, EVALUATIONS));
         let absolute = absolute.max(RELATIVE * head.value.abs());
-        let tolerance = Tolerance { absolute, relative: RELATIVE };
-        head.plus(estimate(quadrature::oscillating_tail(wave, end, PI / omega, tolerance, EVALUATIONS)))
+        let tolerance = Tolerance {
+            absolute,
+            relative: RELATIVE,
+        };
+        head.plus(estimate(quadrature::oscillating_tail(
+            wave,
+            end,
+            PI / omega,
+            tolerance,
+            EVALUATIONS,
+        )))
     };
     f.check()?;
     Ok(sum)
 }
 
 /// The integral of a positive f(tau) / tau^2 between lags; the first must be positive.
-pub(super) fn over_square(
-    f: impl Fn(f64) -> Result<f64, Unavailable>,
-    lags: &[f64],
-) -> Result<Estimate, Unavailable> {
+pub(super) fn over_square(f: impl Fn(f64) -> Result<f64, Unavailable>, lags: &[f64]) -> Result<Estimate, Unavailable> {
     let f = Fallible::new(f);
-    let sum =
-        estimate(quadrature::between(|lag| f.at(lag) / (lag * lag), lags, Tolerance::relative(RELATIVE), EVALUATIONS));
+    let sum = estimate(quadrature::between(
+        |lag| f.at(lag) / (lag * lag),
+        lags,
+        Tolerance::relative(RELATIVE),
+        EVALUATIONS,
+    ));
     f.check()?;
     Ok(sum)
 }
@@ -103,9 +131,17 @@ pub(super) fn over_square_beyond(
     absolute: f64,
 ) -> Result<Estimate, Unavailable> {
     let f = Fallible::new(f);
-    let tolerance = Tolerance { absolute, relative: RELATIVE };
+    let tolerance = Tolerance {
+        absolute,
+        relative: RELATIVE,
+    };
     let integrand = |lag: f64| f.at(lag) / (lag * lag);
-    let sum = estimate(quadrature::to_infinity(integrand, &[from, 2.0 * from], tolerance, EVALUATIONS));
+    let sum = estimate(quadrature::to_infinity(
+        integrand,
+        &[from, 2.0 * from],
+        tolerance,
+        EVALUATIONS,
+    ));
     f.check()?;
     Ok(sum)
 }

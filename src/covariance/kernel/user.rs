@@ -26,7 +26,10 @@ impl fmt::Debug for User {
 /// Two user kernels are the same if they are one expression with the same arguments.
 impl PartialEq for User {
     fn eq(&self, other: &Self) -> bool {
-        Arc::ptr_eq(&self.tape, &other.tape) && self.name == other.name && self.arguments == other.arguments && self.constant == other.constant
+        Arc::ptr_eq(&self.tape, &other.tape)
+            && self.name == other.name
+            && self.arguments == other.arguments
+            && self.constant == other.constant
     }
 }
 
@@ -34,7 +37,13 @@ impl User {
     /// From the name of the kernel, its expression in the lag (s) and arguments, and their names and values in SI
     /// units, in their order.
     pub fn new(name: impl Into<String>, tape: Arc<Tape>, arguments: Vec<(String, f64)>) -> Self {
-        let mut user = Self { name: name.into(), tape, arguments, constant: 0.0, times: None };
+        let mut user = Self {
+            name: name.into(),
+            tape,
+            arguments,
+            constant: 0.0,
+            times: None,
+        };
         user.times = user.find_times();
         user
     }
@@ -46,7 +55,10 @@ impl User {
 
     /// The kernel less a constant.
     pub(super) fn less(&self, constant: f64) -> Self {
-        let mut user = Self { constant: self.constant + constant, ..self.clone() };
+        let mut user = Self {
+            constant: self.constant + constant,
+            ..self.clone()
+        };
         user.times = user.find_times();
         user
     }
@@ -59,10 +71,16 @@ impl User {
 
     /// Its series right of a lag, or left of it in terms of the distance.
     fn series(&self, lag: f64, order: f64, direction: f64) -> Series {
-        let arguments: Vec<Series> = self.arguments.iter().map(|(_, value)| Series::constant(*value)).collect();
+        let arguments: Vec<Series> = self
+            .arguments
+            .iter()
+            .map(|(_, value)| Series::constant(*value))
+            .collect();
         Series::expand(0.0, order, |distance| {
             let there = Series::constant(lag).add(&distance.mul(&Series::constant(direction)));
-            self.tape.evaluate(&there, &arguments).sub(&Series::constant(self.constant))
+            self.tape
+                .evaluate(&there, &arguments)
+                .sub(&Series::constant(self.constant))
         })
     }
 
@@ -71,10 +89,20 @@ impl User {
         if lag == 0.0 && !value.is_finite() {
             // sin(x)/x and its like: the value is the limit.
             let limit = self.series(0.0, 1.0, 1.0);
-            let diverges = limit.terms().first().is_some_and(|term| term.exponent < 0.0 || term.exponent == 0.0 && term.logs > 0);
+            let diverges = limit
+                .terms()
+                .first()
+                .is_some_and(|term| term.exponent < 0.0 || term.exponent == 0.0 && term.logs > 0);
             value = limit.coefficient(0.0).filter(|_| !diverges).unwrap_or(f64::NAN);
         }
-        if value.is_finite() { Ok(value) } else { Err(Unavailable::NoValue { kernel: self.name.clone(), lag }) }
+        if value.is_finite() {
+            Ok(value)
+        } else {
+            Err(Unavailable::NoValue {
+                kernel: self.name.clone(),
+                lag,
+            })
+        }
     }
 
     pub(super) fn loss(&self, lag: f64) -> Result<f64, Unavailable> {
@@ -90,7 +118,10 @@ impl User {
         let right = self.series(lag, order as f64 + 1.0, 1.0);
         let left = self.series(lag, order as f64 + 1.0, -1.0);
         if right.reason().is_some() || left.reason().is_some() {
-            return Err(Unavailable::NoValue { kernel: self.name.clone(), lag });
+            return Err(Unavailable::NoValue {
+                kernel: self.name.clone(),
+                lag,
+            });
         }
         let mut coefficients = Vec::with_capacity(order + 1);
         for derivative in 0..=order {
@@ -99,13 +130,19 @@ impl User {
             let broken = |series: &Series| {
                 let here = |exponent: f64| exponent > n - 1.0 && exponent <= n;
                 let whole = |exponent: f64, logs: u32| exponent == n && logs == 0;
-                series.terms().iter().any(|term| here(term.exponent) && !whole(term.exponent, term.logs))
+                series
+                    .terms()
+                    .iter()
+                    .any(|term| here(term.exponent) && !whole(term.exponent, term.logs))
             };
             let (Some(from_right), Some(from_left)) = (right.coefficient(n), left.coefficient(n)) else {
                 return Err(not_smooth);
             };
             let mirrored = if derivative % 2 == 0 { from_left } else { -from_left };
-            let size = from_right.abs().max(mirrored.abs()).max(self.coefficient_scale(derivative));
+            let size = from_right
+                .abs()
+                .max(mirrored.abs())
+                .max(self.coefficient_scale(derivative));
             if broken(&right) || broken(&left) || (from_right - mirrored).abs() > JUMP * size {
                 return Err(not_smooth);
             }
@@ -128,9 +165,15 @@ impl User {
     fn find_times(&self) -> Option<(f64, f64)> {
         let variance = self.value(0.0).ok().filter(|variance| *variance > 0.0)?;
         let lags = (-100..100).map(|power| 2.0_f64.powi(power));
-        let values: Vec<(f64, f64)> = lags.filter_map(|lag| Some((lag, self.value(lag).ok()? / variance))).collect();
+        let values: Vec<(f64, f64)> = lags
+            .filter_map(|lag| Some((lag, self.value(lag).ok()? / variance)))
+            .collect();
         let begins = values.iter().find(|(_, value)| 1.0 - value > BEGUN)?.0;
-        let gone = values.iter().rev().find(|(_, value)| value.abs() > GONE).map_or(begins, |(lag, _)| *lag);
+        let gone = values
+            .iter()
+            .rev()
+            .find(|(_, value)| value.abs() > GONE)
+            .map_or(begins, |(lag, _)| *lag);
         // What never goes has no longest time; it is given room to turn in.
         let longest = if gone > begins * FOREVER { begins } else { gone };
         Some((begins, longest.max(begins)))
@@ -156,6 +199,10 @@ impl fmt::Display for User {
             write!(out, "{comma}{name}: {value}")?;
         }
         out.write_str(")")?;
-        if self.constant == 0.0 { Ok(()) } else { write!(out, " - {}", self.constant) }
+        if self.constant == 0.0 {
+            Ok(())
+        } else {
+            write!(out, " - {}", self.constant)
+        }
     }
 }

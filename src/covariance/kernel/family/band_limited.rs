@@ -24,7 +24,11 @@ impl BandLimited {
     /// From the lower (which may be 0) and the upper angular frequency in rad/s.
     pub fn new(lower: f64, upper: f64) -> Result<Self, InvalidParameter> {
         let family = "band_limited";
-        let lower = if lower == 0.0 { 0.0 } else { parameter::positive(family, "lower", lower)? };
+        let lower = if lower == 0.0 {
+            0.0
+        } else {
+            parameter::positive(family, "lower", lower)?
+        };
         let upper = parameter::positive(family, "upper", upper)?;
         parameter::demand(lower < upper, family, "upper", upper, "above lower")?;
         Ok(Self { lower, upper })
@@ -74,7 +78,9 @@ impl Correlation for BandLimited {
         });
         let square = self.upper * self.upper;
         let factors = polynomial::powers(2.0, move |k| -square / (2.0 * k * (2.0 * k - 1.0)));
-        let terms = factors.zip(sums).map(|((n, factor), (sum, _))| (n, factor * sum / (n + 1.0)));
+        let terms = factors
+            .zip(sums)
+            .map(|((n, factor), (sum, _))| (n, factor * sum / (n + 1.0)));
         polynomial::series(order, terms)
     }
 
@@ -108,13 +114,19 @@ impl Correlation for BandLimited {
     }
 
     fn peaks(&self) -> Vec<Peak> {
-        [self.lower, self.upper].map(|frequency| Peak { frequency, width: 0.0 }).to_vec()
+        [self.lower, self.upper]
+            .map(|frequency| Peak { frequency, width: 0.0 })
+            .to_vec()
     }
 }
 
 impl fmt::Display for BandLimited {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(out, "band_limited(lower: {} rad/s, upper: {} rad/s)", self.lower, self.upper)
+        write!(
+            out,
+            "band_limited(lower: {} rad/s, upper: {} rad/s)",
+            self.lower, self.upper
+        )
     }
 }
 

@@ -41,8 +41,10 @@ impl DampedCosine {
         (1..).scan((real, imaginary), move |(real, imaginary), n| {
             let n = f64::from(n);
             let this = *real;
-            (*real, *imaginary) =
-                (-(decay * *real + frequency * *imaginary) / n, (frequency * *real - decay * *imaginary) / n);
+            (*real, *imaginary) = (
+                -(decay * *real + frequency * *imaginary) / n,
+                (frequency * *real - decay * *imaginary) / n,
+            );
             Some(this)
         })
     }
@@ -92,12 +94,19 @@ impl Correlation for DampedCosine {
     }
 
     fn peaks(&self) -> Vec<Peak> {
-        vec![Peak { frequency: self.frequency, width: 1.0 / self.length }]
+        vec![Peak {
+            frequency: self.frequency,
+            width: 1.0 / self.length,
+        }]
     }
 }
 
 impl fmt::Display for DampedCosine {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(out, "damped_cosine(length: {} s, frequency: {} rad/s)", self.length, self.frequency)
+        write!(
+            out,
+            "damped_cosine(length: {} s, frequency: {} rad/s)",
+            self.length, self.frequency
+        )
     }
 }

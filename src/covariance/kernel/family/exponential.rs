@@ -17,7 +17,9 @@ pub struct Exponential {
 impl Exponential {
     /// From its length in s.
     pub fn new(length: f64) -> Result<Self, InvalidParameter> {
-        Ok(Self { length: parameter::positive("exponential", "length", length)? })
+        Ok(Self {
+            length: parameter::positive("exponential", "length", length)?,
+        })
     }
 
     /// The length, in s.

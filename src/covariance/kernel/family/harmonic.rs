@@ -17,7 +17,9 @@ pub struct Harmonic {
 impl Harmonic {
     /// From its angular frequency in rad/s.
     pub fn new(frequency: f64) -> Result<Self, InvalidParameter> {
-        Ok(Self { frequency: parameter::positive("harmonic", "frequency", frequency)? })
+        Ok(Self {
+            frequency: parameter::positive("harmonic", "frequency", frequency)?,
+        })
     }
 
     /// The angular frequency, in rad/s.
@@ -30,7 +32,11 @@ impl Harmonic {
         let (sine, cosine) = parameter::phase(frequency, lag).sin_cos();
         let derivatives = [cosine, -sine, -cosine, sine].into_iter().cycle();
         let factors = polynomial::powers(1.0, |k| frequency / k);
-        derivatives.zip(factors).take(order + 1).map(|(derivative, (_, factor))| derivative * factor).collect()
+        derivatives
+            .zip(factors)
+            .take(order + 1)
+            .map(|(derivative, (_, factor))| derivative * factor)
+            .collect()
     }
 }
 
@@ -45,7 +51,10 @@ impl Correlation for Harmonic {
 
     fn expansion(&self, order: f64) -> Series {
         let square = self.frequency * self.frequency;
-        polynomial::series(order, polynomial::powers(2.0, |k| -square / (2.0 * k * (2.0 * k - 1.0))))
+        polynomial::series(
+            order,
+            polynomial::powers(2.0, |k| -square / (2.0 * k * (2.0 * k - 1.0))),
+        )
     }
 
     fn taylor(&self, lag: f64, order: usize) -> Vec<f64> {
@@ -78,7 +87,10 @@ impl Correlation for Harmonic {
     }
 
     fn lines(&self) -> Vec<Line> {
-        vec![Line { frequency: self.frequency, power: 1.0 }]
+        vec![Line {
+            frequency: self.frequency,
+            power: 1.0,
+        }]
     }
 }
 

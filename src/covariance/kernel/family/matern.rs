@@ -170,11 +170,19 @@ impl Correlation for Matern {
         let second = a.powi(2) / (2.0 * (nu - 1.0));
         let fourth = 3.0 * a.powi(4) / (4.0 * (nu - 1.0) * (nu - 2.0));
         let finite_above = |least: f64, value: f64| if nu > least { value } else { f64::INFINITY };
-        [1.0, finite_above(0.5, first), finite_above(1.0, second), finite_above(2.0, fourth)]
+        [
+            1.0,
+            finite_above(0.5, first),
+            finite_above(1.0, second),
+            finite_above(2.0, fourth),
+        ]
     }
 
     fn roughness(&self) -> Option<Rough> {
-        Some(Rough { exponent: 2.0 * self.smoothness, log: u32::from(self.smoothness.fract() == 0.0) })
+        Some(Rough {
+            exponent: 2.0 * self.smoothness,
+            log: u32::from(self.smoothness.fract() == 0.0),
+        })
     }
 
     fn times(&self) -> (f64, f64) {
@@ -186,6 +194,10 @@ impl Correlation for Matern {
 
 impl fmt::Display for Matern {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(out, "matern(smoothness: {}, length: {} s)", self.smoothness, self.length)
+        write!(
+            out,
+            "matern(smoothness: {}, length: {} s)",
+            self.smoothness, self.length
+        )
     }
 }

@@ -55,7 +55,9 @@ fn logarithmic(nu: f64, rate: f64, order: f64) -> Series {
     // psi(k + 1) + psi(nu + k + 1), psi(n + 1) = 1 + 1/2 + ... + 1/n - Euler's constant.
     let mut digammas = (1..=nu as u32).map(|i| 1.0 / f64::from(i)).sum::<f64>() - 2.0 * EULER;
     let mut terms = Vec::new();
-    for (exponent, factor) in factors.take_while(|(exponent, _)| 2.0 * nu + exponent < order.min(polynomial::HIGHEST_ORDER)) {
+    for (exponent, factor) in
+        factors.take_while(|(exponent, _)| 2.0 * nu + exponent < order.min(polynomial::HIGHEST_ORDER))
+    {
         let (k, factor) = (0.5 * exponent, leading * factor);
         if k > 0.0 {
             digammas += 1.0 / k + 1.0 / (k + nu);

@@ -80,7 +80,9 @@ pub trait Correlation {
     /// Where the density changes.
     fn peaks(&self) -> Vec<Peak> {
         let (short, long) = self.times();
-        [1.0 / long, 1.0 / short].map(|width| Peak { frequency: 0.0, width }).to_vec()
+        [1.0 / long, 1.0 / short]
+            .map(|width| Peak { frequency: 0.0, width })
+            .to_vec()
     }
 
     /// The lines of the spectrum.

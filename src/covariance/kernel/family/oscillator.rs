@@ -63,7 +63,11 @@ impl Oscillator {
     /// sin(sqrt(1 - z^2) x) / sqrt(1 - z^2), finite up to critical damping.
     fn sine(&self, x: f64) -> f64 {
         let phase = self.damped() * x;
-        if phase.abs() < 1e-8 { x } else { phase.sin() / self.damped() }
+        if phase.abs() < 1e-8 {
+            x
+        } else {
+            phase.sin() / self.damped()
+        }
     }
 }
 
@@ -77,7 +81,10 @@ impl Correlation for Oscillator {
         if x > 1.0 {
             return 1.0 - self.at(x);
         }
-        -polynomial::rescaled(self.series(1.0, 0.0), x).take(24).skip(1).sum::<f64>()
+        -polynomial::rescaled(self.series(1.0, 0.0), x)
+            .take(24)
+            .skip(1)
+            .sum::<f64>()
     }
 
     fn expansion(&self, order: f64) -> Series {
@@ -121,12 +128,19 @@ impl Correlation for Oscillator {
     }
 
     fn peaks(&self) -> Vec<Peak> {
-        vec![Peak { frequency: self.frequency, width: self.frequency * self.damping }]
+        vec![Peak {
+            frequency: self.frequency,
+            width: self.frequency * self.damping,
+        }]
     }
 }
 
 impl fmt::Display for Oscillator {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(out, "oscillator(frequency: {} rad/s, damping: {})", self.frequency, self.damping)
+        write!(
+            out,
+            "oscillator(frequency: {} rad/s, damping: {})",
+            self.frequency, self.damping
+        )
     }
 }

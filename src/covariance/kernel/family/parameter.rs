@@ -23,7 +23,11 @@ pub struct InvalidParameter {
 
 impl fmt::Display for InvalidParameter {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(out, "{} of {} must be {}, not {}", self.parameter, self.family, self.demand, self.value)
+        write!(
+            out,
+            "{} of {} must be {}, not {}",
+            self.parameter, self.family, self.demand, self.value
+        )
     }
 }
 
@@ -37,18 +41,39 @@ pub(super) fn demand(
     value: f64,
     demand: &'static str,
 ) -> Result<f64, InvalidParameter> {
-    if allowed { Ok(value) } else { Err(InvalidParameter { family, parameter, value, demand }) }
+    if allowed {
+        Ok(value)
+    } else {
+        Err(InvalidParameter {
+            family,
+            parameter,
+            value,
+            demand,
+        })
+    }
 }
 
 /// Accepts a length or a frequency: positive, and within the range whose higher powers are numbers.
 pub(super) fn positive(family: &'static str, parameter: &'static str, value: f64) -> Result<f64, InvalidParameter> {
     let allowed = (1.0 / EXTREME..=EXTREME).contains(&value);
-    demand(allowed, family, parameter, value, "positive, between 1e-30 and 1e30 in SI units")
+    demand(
+        allowed,
+        family,
+        parameter,
+        value,
+        "positive, between 1e-30 and 1e30 in SI units",
+    )
 }
 
 /// Accepts a shape: within the range for which the Matérn function is served.
 pub(super) fn shape(family: &'static str, parameter: &'static str, value: f64) -> Result<f64, InvalidParameter> {
-    demand((1e-3..=GREATEST_SMOOTHNESS).contains(&value), family, parameter, value, "between 0.001 and 200")
+    demand(
+        (1e-3..=GREATEST_SMOOTHNESS).contains(&value),
+        family,
+        parameter,
+        value,
+        "between 0.001 and 200",
+    )
 }
 
 /// The phase of a wave, in rad. Its cosine is a number however far the lag.

@@ -21,7 +21,13 @@ pub(super) fn power([slope, curvature]: [f64; 2], power: f64, value: f64, order:
 /// The product of two series, as long as the shorter of them.
 pub(in crate::covariance::kernel) fn product(left: &[f64], right: &[f64]) -> Vec<f64> {
     let length = left.len().min(right.len());
-    let coefficient = |n: usize| left.iter().take(n + 1).zip(right.iter().take(n + 1).rev()).map(|(a, b)| a * b).sum();
+    let coefficient = |n: usize| {
+        left.iter()
+            .take(n + 1)
+            .zip(right.iter().take(n + 1).rev())
+            .map(|(a, b)| a * b)
+            .sum()
+    };
     (0..length).map(coefficient).collect()
 }
 
@@ -32,7 +38,12 @@ pub(super) const HIGHEST_ORDER: f64 = 64.0;
 pub(super) fn series(order: f64, terms: impl Iterator<Item = (f64, f64)>) -> Series {
     let order = order.min(HIGHEST_ORDER);
     let below = terms.take_while(|(exponent, _)| *exponent < order);
-    Series::from_terms(below.map(|(exponent, coefficient)| SeriesTerm::new(coefficient, exponent, 0)).collect(), order)
+    Series::from_terms(
+        below
+            .map(|(exponent, coefficient)| SeriesTerm::new(coefficient, exponent, 0))
+            .collect(),
+        order,
+    )
 }
 
 /// The powers 0, step, 2 step, ... with coefficients that begin with 1 and whose ratios are `ratio(k)`, k from 1.

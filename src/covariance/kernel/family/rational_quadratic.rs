@@ -65,7 +65,10 @@ impl Correlation for RationalQuadratic {
     /// The binomial series.
     fn expansion(&self, order: f64) -> Series {
         let scale = 2.0 * self.mixture * self.length * self.length;
-        polynomial::series(order, polynomial::powers(2.0, |k| -(self.mixture + k - 1.0) / (k * scale)))
+        polynomial::series(
+            order,
+            polynomial::powers(2.0, |k| -(self.mixture + k - 1.0) / (k * scale)),
+        )
     }
 
     fn taylor(&self, lag: f64, order: usize) -> Vec<f64> {
@@ -92,7 +95,8 @@ impl Correlation for RationalQuadratic {
         Some(if order > 0.0 {
             scale * matern::correlation(order, x) / gamma::ratio_half(order)
         } else {
-            scale * 2.0 * ((0.5 * x).powf(order) * (-x).exp() * bessel::k_pair(-order, x).0) / libm::tgamma(self.mixture)
+            scale * 2.0 * ((0.5 * x).powf(order) * (-x).exp() * bessel::k_pair(-order, x).0)
+                / libm::tgamma(self.mixture)
         })
     }
 
@@ -104,7 +108,12 @@ impl Correlation for RationalQuadratic {
     fn moments(&self) -> [f64; 4] {
         let rate = 1.0 / self.length;
         let root = gamma::ratio_half(self.mixture) / self.mixture.sqrt();
-        [1.0, FRAC_2_PI.sqrt() * rate * root, rate.powi(2), 3.0 * (1.0 + 1.0 / self.mixture) * rate.powi(4)]
+        [
+            1.0,
+            FRAC_2_PI.sqrt() * rate * root,
+            rate.powi(2),
+            3.0 * (1.0 + 1.0 / self.mixture) * rate.powi(4),
+        ]
     }
 
     fn roughness(&self) -> Option<Rough> {
@@ -119,6 +128,10 @@ impl Correlation for RationalQuadratic {
 
 impl fmt::Display for RationalQuadratic {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
-        write!(out, "rational_quadratic(length: {} s, mixture: {})", self.length, self.mixture)
+        write!(
+            out,
+            "rational_quadratic(length: {} s, mixture: {})",
+            self.length, self.mixture
+        )
     }
 }

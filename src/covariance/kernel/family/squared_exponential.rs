@@ -17,7 +17,9 @@ pub struct SquaredExponential {
 impl SquaredExponential {
     /// From its length in s.
     pub fn new(length: f64) -> Result<Self, InvalidParameter> {
-        Ok(Self { length: parameter::positive("squared_exponential", "length", length)? })
+        Ok(Self {
+            length: parameter::positive("squared_exponential", "length", length)?,
+        })
     }
 
     /// The length, in s.

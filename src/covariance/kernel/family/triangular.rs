@@ -17,7 +17,9 @@ pub struct Triangular {
 impl Triangular {
     /// From its length in s.
     pub fn new(length: f64) -> Result<Self, InvalidParameter> {
-        Ok(Self { length: parameter::positive("triangular", "length", length)? })
+        Ok(Self {
+            length: parameter::positive("triangular", "length", length)?,
+        })
     }
 
     /// The length, in s.
@@ -72,7 +74,10 @@ impl Correlation for Triangular {
     }
 
     fn kinks(&self) -> Vec<Kink> {
-        vec![Kink { lag: self.length, derivative: 1 }]
+        vec![Kink {
+            lag: self.length,
+            derivative: 1,
+        }]
     }
 }
 
