@@ -231,7 +231,7 @@ pub(super) fn near<'c>(word: &str, candidates: impl IntoIterator<Item = &'c str>
     candidates
         .into_iter()
         .filter(|candidate| word.len().abs_diff(candidate.len()) <= allowed(candidate))
-        .map(|candidate| (strsim::damerau_levenshtein(word, candidate), candidate))
+        .map(|candidate| (strsim::osa_distance(word, candidate), candidate))
         .filter(|(distance, candidate)| *distance > 0 && *distance <= allowed(candidate))
         .min_by_key(|(distance, _)| *distance)
         .map(|(_, candidate)| candidate)

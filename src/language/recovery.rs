@@ -21,6 +21,10 @@ pub(super) fn position(error: &Error<Rule>) -> usize {
 
 /// Reports what is wrong with the stretch `range` and returns the declarations of it that can be kept.
 pub(super) fn recover(reader: &mut Reader<'_>, range: Range<usize>) -> Vec<Declaration> {
+    if reader.is_full() {
+        reader.skip(range.start);
+        return Vec::new();
+    }
     let text = reader.text;
     let (kept, start) = keep(reader, &range);
     let Err(error) = Grammar::parse(Rule::stretch, reader.slice(start..range.end)) else {
@@ -31,9 +35,7 @@ pub(super) fn recover(reader: &mut Reader<'_>, range: Range<usize>) -> Vec<Decla
         Some(block) => recover_block(reader, start..range.end, &block, &error),
         None => reader.describe(start..range.end, &error),
     };
-    let mut lines = declaration_lines(text, start..range.end)
-        .skip_while(|line| *line <= done)
-        .peekable();
+    let mut lines = declaration_lines(text, start..range.end, done).peekable();
     while let Some(line) = lines.next() {
         if reader.is_full() {
             reader.skip(line);
@@ -68,16 +70,16 @@ fn keep(reader: &mut Reader<'_>, range: &Range<usize>) -> (Vec<Declaration>, usi
     (builder.declarations(pairs.into_iter()), start)
 }
 
-/// The lines within a stretch that were meant to begin a declaration: with a misspelt keyword, or outside brackets with
-/// a keyword that nothing fitting follows.
-fn declaration_lines(text: &str, range: Range<usize>) -> impl Iterator<Item = usize> + '_ {
+/// The lines of a stretch beyond `done` that were meant to begin a declaration: with a misspelt keyword, or outside
+/// brackets with a keyword that nothing fitting follows.
+fn declaration_lines(text: &str, range: Range<usize>, done: usize) -> impl Iterator<Item = usize> + '_ {
     let (mut fresh_line, mut depth) = (false, 0_usize);
     tokens(text, range).filter_map(move |token| {
         let first = std::mem::replace(&mut fresh_line, token.kind == TokenKind::Newline);
         match token.kind {
             TokenKind::Mark(b'(' | b'{') => depth += 1,
             TokenKind::Mark(b')' | b'}') => depth = depth.saturating_sub(1),
-            TokenKind::Word if first => {
+            TokenKind::Word if first && token.range.start > done => {
                 let word = text.get(token.range.clone())?;
                 let misspelt = leads_on(text, token.range.end) && near(word, DECLARATION_KEYWORDS).is_some();
                 let bare = depth == 0 && DECLARATION_KEYWORDS.contains(&word);
@@ -117,24 +119,23 @@ fn limit_block(text: &str, range: Range<usize>) -> Option<Block> {
 fn recover_block(reader: &mut Reader<'_>, range: Range<usize>, block: &Block, whole: &Error<Rule>) -> usize {
     let text = reader.text;
     let end = block.close.unwrap_or(range.end);
-    let mut starts = vec![block.open + 1];
     let mut fresh_line = true;
-    for token in tokens(text, block.open + 1..end) {
-        if fresh_line && token.kind == TokenKind::Word && begins_line(text, &token.range) {
-            starts.push(token.range.start);
-        }
-        fresh_line = token.kind == TokenKind::Newline;
-    }
-    let ends = starts.iter().copied().skip(1).chain([end]);
+    let lines = tokens(text, block.open + 1..end).filter_map(|token| {
+        let first = std::mem::replace(&mut fresh_line, token.kind == TokenKind::Newline);
+        let begins = first && token.kind == TokenKind::Word && begins_line(text, &token.range);
+        begins.then_some(token.range.start)
+    });
+    let mut starts = std::iter::once(block.open + 1).chain(lines).peekable();
     let mut faults = 0;
-    for (start, end) in starts.iter().copied().zip(ends) {
+    while let Some(start) = starts.next() {
         if reader.is_full() {
             reader.skip(start);
             return end;
         }
-        if let Err(error) = Grammar::parse(Rule::lines, reader.slice(start..end)) {
+        let line = start..starts.peek().copied().unwrap_or(end);
+        if let Err(error) = Grammar::parse(Rule::lines, reader.slice(line.clone())) {
             faults += 1;
-            reader.describe(start..end, &error);
+            reader.describe(line, &error);
         }
     }
     if block.close.is_none() {
