@@ -27,9 +27,7 @@ pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], col
     };
     for diagnostic in diagnostics.iter().take(MOST_DRAWN) {
         if fits(files, diagnostic) {
-            let mut drawn = Vec::new();
-            report(files, diagnostic, color).write(&mut cache, &mut drawn)?;
-            out.write_all(if color { &drawn } else { unpainted(&mut drawn) })?;
+            report(files, diagnostic, color).write(&mut cache, &mut *out)?;
         } else {
             plain(out, files, diagnostic)?;
         }
@@ -39,20 +37,6 @@ pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], col
         writeln!(out, "... and {more} more; `check --json` lists them all")?;
     }
     Ok(())
-}
-
-/// The drawing without the paint of its heading, which ariadne puts on even where colours are off.
-fn unpainted(drawn: &mut Vec<u8>) -> &[u8] {
-    const END: &[u8] = b"\x1b[0m";
-    if drawn.starts_with(b"\x1b[") {
-        if let Some(at) = drawn.windows(END.len()).position(|part| part == END) {
-            drawn.drain(at..at + END.len());
-        }
-        if let Some(at) = drawn.iter().position(|byte| *byte == b'm') {
-            drawn.drain(..=at);
-        }
-    }
-    drawn
 }
 
 /// Whether every place of the finding lies on lines short enough to draw.
@@ -69,19 +53,23 @@ fn fits(files: &Files, diagnostic: &Diagnostic) -> bool {
 }
 
 fn plain(out: &mut dyn Write, files: &Files, diagnostic: &Diagnostic) -> io::Result<()> {
-    let (severity, code) = (diagnostic.severity().word(), diagnostic.code.name());
-    writeln!(out, "[{code}] {severity}: {}", diagnostic.message)?;
+    let code = diagnostic.code.name();
+    let severity = match diagnostic.severity() {
+        Severity::Error => "Error",
+        Severity::Warning => "Warning",
+    };
+    writeln!(out, "[{code}] {severity}: {}", harmless(&diagnostic.message))?;
     let mut line = |span: Span, text: &str| {
         let place = files.place(span);
         let name = files.get(span.file).name();
-        writeln!(out, "    {name}:{}:{} {text}", place.line, place.column)
+        writeln!(out, "    {name}:{}:{} {}", place.line, place.column, harmless(text))
     };
     line(diagnostic.place, &diagnostic.here)?;
     for label in &diagnostic.labels {
         line(label.place, &label.text)?;
     }
     match &diagnostic.help {
-        Some(help) => writeln!(out, "    Help: {help}"),
+        Some(help) => writeln!(out, "    Help: {}", harmless(help)),
         None => Ok(()),
     }
 }
@@ -100,21 +88,21 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
     let main = Label::new(place(files, diagnostic.place))
         .with_color(tint)
         .with_order(-1)
-        .with_message(here);
+        .with_message(harmless(here));
     let mut builder = Report::build(kind, place(files, diagnostic.place))
         .with_config(config)
         .with_code(diagnostic.code.name())
-        .with_message(&diagnostic.message)
+        .with_message(harmless(&diagnostic.message))
         .with_label(main);
     for label in &diagnostic.labels {
         builder = builder.with_label(
             Label::new(place(files, label.place))
                 .with_color(Color::Blue)
-                .with_message(&label.text),
+                .with_message(harmless(&label.text)),
         );
     }
     if let Some(help) = &diagnostic.help {
-        builder = builder.with_help(help);
+        builder = builder.with_help(harmless(help));
     }
     builder.finish()
 }
@@ -127,18 +115,36 @@ fn place(files: &Files, span: Span) -> Place {
     (span.file, start..end)
 }
 
-struct Cache<'a> {
-    files: &'a Files,
-    sources: HashMap<FileId, Source<&'a str>>,
+/// The text with control characters replaced, byte for byte: a model may come from a stranger, and must not speak to
+/// the terminal.
+fn harmless(text: &str) -> String {
+    let control = |character: char| character.is_control() && !matches!(character, '\n' | '\r' | '\t');
+    if !text.contains(control) {
+        return text.to_string();
+    }
+    let mut clean = String::with_capacity(text.len());
+    for character in text.chars() {
+        if control(character) {
+            clean.extend(std::iter::repeat_n('?', character.len_utf8()));
+        } else {
+            clean.push(character);
+        }
+    }
+    clean
 }
 
-impl<'a> ariadne::Cache<FileId> for Cache<'a> {
-    type Storage = &'a str;
+struct Cache<'a> {
+    files: &'a Files,
+    sources: HashMap<FileId, Source<String>>,
+}
 
-    fn fetch(&mut self, id: &FileId) -> Result<&Source<&'a str>, impl std::fmt::Debug> {
+impl ariadne::Cache<FileId> for Cache<'_> {
+    type Storage = String;
+
+    fn fetch(&mut self, id: &FileId) -> Result<&Source<String>, impl std::fmt::Debug> {
         let files = self.files;
         let source = self.sources.entry(*id);
-        Ok::<_, io::Error>(source.or_insert_with(|| Source::from(files.get(*id).text.as_str())))
+        Ok::<_, io::Error>(source.or_insert_with(|| Source::from(harmless(&files.get(*id).text))))
     }
 
     fn display<'b>(&self, id: &'b FileId) -> Option<impl Display + 'b> {
