@@ -168,7 +168,12 @@ pub struct Unknown<'a> {
 
 /// The candidates that look like `name`, nearest first, at most three.
 pub fn near<'c>(name: &str, candidates: impl Iterator<Item = &'c str>) -> Vec<&'c str> {
-    let most = 1 + name.chars().count() / 4;
+    let length = name.chars().count();
+    let most = if length < 3 {
+        length.saturating_sub(1)
+    } else {
+        1 + length / 4
+    };
     let mut found: Vec<(usize, &str)> = candidates
         .filter(|candidate| candidate.len().abs_diff(name.len()) <= most * 4)
         .map(|candidate| (strsim::osa_distance(name, candidate), candidate))

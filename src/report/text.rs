@@ -22,8 +22,10 @@ pub fn write(out: &mut dyn Write, model: &Model, results: &Results) -> io::Resul
     parameters(out, model)?;
     moments(out, model, Kind::Process, &results.processes)?;
     moments(out, model, Kind::Margin, &results.margins)?;
+    // Results come in the order of the model, those that were not asked for left out.
+    let mut limit_states = model.limit_states.iter();
     for result in &results.limit_states {
-        if let Some(limit_state) = model.limit_states.iter().find(|one| one.name == result.name) {
+        if let Some(limit_state) = limit_states.find(|one| one.name == result.name) {
             limit_state_section(out, limit_state, result)?;
         }
     }

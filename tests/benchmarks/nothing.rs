@@ -1,0 +1,3 @@
+//! A program that does nothing: the baseline of start-up.
+
+fn main() {}
