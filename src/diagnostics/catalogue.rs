@@ -41,6 +41,11 @@ macro_rules! catalogue {
                 match self { $(Code::$variant => $summary,)* }
             }
 
+            /// What it is, why, an example with its mend, and where it matters: a page of Markdown.
+            pub fn page(self) -> &'static str {
+                match self { $(Code::$variant => include_str!(concat!("pages/", $code, ".md")),)* }
+            }
+
             /// Error or warning.
             pub fn severity(self) -> Severity {
                 match self { $(Code::$variant => Severity::$severity,)* }
