@@ -5,6 +5,7 @@ use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Declaration, DeclarationKind, Path, Word};
 use crate::source::Span;
 use std::collections::HashMap;
+use std::collections::hash_map::Entry;
 
 /// A declaration of an instance, numbered through all instances.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -68,12 +69,19 @@ impl<'p> Names<'p> {
                     declaration: index,
                 });
                 let Some(word) = declared(declaration) else { continue };
-                if let Some((_, meaning)) = BUILT_IN.iter().find(|(name, _)| *name == &*word.text) {
+                let built_in = BUILT_IN.iter().find(|(name, _)| *name == &*word.text);
+                if let Some((_, meaning)) = built_in {
                     diagnostics.push(reserved(word, meaning));
-                } else if let Some(earlier) = table.get(&*word.text) {
-                    diagnostics.push(names.repeated(word, *earlier));
-                } else {
-                    table.insert(&word.text, item);
+                }
+                match table.entry(&word.text) {
+                    Entry::Occupied(earlier) if built_in.is_none() => {
+                        diagnostics.push(names.repeated(word, *earlier.get()));
+                    }
+                    Entry::Occupied(_) => {}
+                    // A reserved word too: where it is used, its declaration is meant.
+                    Entry::Vacant(free) => {
+                        free.insert(item);
+                    }
                 }
             }
             names.tables.push(table);
@@ -135,10 +143,10 @@ impl<'p> Names<'p> {
             None => return Ok(Resolved::Fault),
         };
         for word in through {
-            let item = self.find(instance, &word.text).ok_or(Unknown { word, instance })?;
+            let item = self.find(instance, &word.text).ok_or(Unknown::Name { word, instance })?;
             let at = self.item(item);
             if !matches!(self.declaration(item).kind, DeclarationKind::Use { .. }) {
-                return Err(Unknown { word: last, instance });
+                return Err(Unknown::Inside { word });
             }
             match self.parts.made.get(&(at.instance, at.declaration)) {
                 Some(made) => instance = *made,
@@ -147,7 +155,7 @@ impl<'p> Names<'p> {
         }
         match self.find(instance, &last.text) {
             Some(item) => Ok(Resolved::Item(item)),
-            None => Err(Unknown { word: last, instance }),
+            None => Err(Unknown::Name { word: last, instance }),
         }
     }
 
@@ -158,12 +166,20 @@ impl<'p> Names<'p> {
     }
 }
 
-/// A word that nothing declares.
-pub struct Unknown<'a> {
-    /// The word.
-    pub word: &'a Word,
-    /// Where it was looked for.
-    pub instance: InstanceId,
+/// Why a path leads nowhere.
+pub enum Unknown<'a> {
+    /// A word that nothing declares.
+    Name {
+        /// The word.
+        word: &'a Word,
+        /// Where it was looked for.
+        instance: InstanceId,
+    },
+    /// A word inside of something that is no part.
+    Inside {
+        /// The word that is no part.
+        word: &'a Word,
+    },
 }
 
 /// The candidates that look like `name`, nearest first, at most three.
