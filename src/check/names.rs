@@ -143,7 +143,9 @@ impl<'p> Names<'p> {
             None => return Ok(Resolved::Fault),
         };
         for word in through {
-            let item = self.find(instance, &word.text).ok_or(Unknown::Name { word, instance })?;
+            let Some(item) = self.find(instance, &word.text) else {
+                return self.unknown(word, instance);
+            };
             let at = self.item(item);
             if !matches!(self.declaration(item).kind, DeclarationKind::Use { .. }) {
                 return Err(Unknown::Inside { word });
@@ -155,8 +157,21 @@ impl<'p> Names<'p> {
         }
         match self.find(instance, &last.text) {
             Some(item) => Ok(Resolved::Item(item)),
-            None => Err(Unknown::Name { word: last, instance }),
+            None => self.unknown(last, instance),
         }
+    }
+
+    fn unknown<'a>(&self, word: &'a Word, instance: InstanceId) -> Result<Resolved, Unknown<'a>> {
+        if self.is_lost(instance, &word.text) {
+            Ok(Resolved::Fault)
+        } else {
+            Err(Unknown::Name { word, instance })
+        }
+    }
+
+    /// Whether a declaration of that name may stand among the text that could not be read.
+    pub fn is_lost(&self, instance: InstanceId, name: &str) -> bool {
+        self.parts.get(instance).tree.lost.iter().any(|word| &*word.text == name)
     }
 
     /// The names of an instance that look like `name`, nearest first, at most three.

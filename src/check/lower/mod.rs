@@ -519,6 +519,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             let same = |other: &crate::language::tree::Argument| {
                 other.name.as_ref().is_some_and(|other| other.text == word.text)
             };
+            if self.names.is_lost(made, &word.text) {
+                continue;
+            }
             if !parameters.contains(&&*word.text) {
                 let message = format!("the part has no parameter called `{}`", word.text);
                 let mut finding = Diagnostic::new(Code::PartArgument, word.span, message);
@@ -847,7 +850,7 @@ pub fn unknown_overrides(names: &Names<'_>, overrides: &[Overrides], diagnostics
     for set in overrides {
         let name = &set.name.text;
         let is_parameter = |item: ItemId| matches!(names.declaration(item).kind, DeclarationKind::Parameter { .. });
-        if names.find(root, name).is_some_and(is_parameter) {
+        if names.find(root, name).is_some_and(is_parameter) || names.is_lost(root, name) {
             continue;
         }
         let message = match names.find(root, name) {
