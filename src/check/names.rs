@@ -4,8 +4,8 @@ use super::parts::{InstanceId, Parts};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Declaration, DeclarationKind, Path, Word};
 use crate::source::Span;
-use std::collections::HashMap;
 use std::collections::hash_map::Entry;
+use std::collections::{HashMap, HashSet};
 
 /// A declaration of an instance, numbered through all instances.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -41,6 +41,7 @@ pub struct Names<'p> {
     items: Vec<Item>,
     first: Vec<u32>,
     tables: Vec<HashMap<&'p str, ItemId>>,
+    lost: Vec<HashSet<&'p str>>,
 }
 
 /// The names that mean something without being declared.
@@ -58,6 +59,7 @@ impl<'p> Names<'p> {
             items: Vec::new(),
             first: Vec::new(),
             tables: Vec::new(),
+            lost: Vec::new(),
         };
         for (id, instance) in (0u32..).map(InstanceId).zip(&parts.instances) {
             names.first.push(count(names.items.len()));
@@ -85,6 +87,9 @@ impl<'p> Names<'p> {
                 }
             }
             names.tables.push(table);
+            names
+                .lost
+                .push(instance.tree.lost.iter().map(|word| &*word.text).collect());
         }
         names
     }
@@ -171,7 +176,9 @@ impl<'p> Names<'p> {
 
     /// Whether a declaration of that name may stand among the text that could not be read.
     pub fn is_lost(&self, instance: InstanceId, name: &str) -> bool {
-        self.parts.get(instance).tree.lost.iter().any(|word| &*word.text == name)
+        self.lost
+            .get(instance.0 as usize)
+            .is_some_and(|lost| lost.contains(name))
     }
 
     /// The names of an instance that look like `name`, nearest first, at most three.

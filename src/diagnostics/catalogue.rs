@@ -100,10 +100,3 @@ impl Code {
         Self::ALL.iter().copied().find(|code| code.name() == name)
     }
 }
-
-impl Code {
-    /// The explanation.
-    pub fn page(self) -> &'static str {
-        self.summary()
-    }
-}

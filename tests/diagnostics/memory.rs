@@ -39,7 +39,9 @@ impl Reader for Memory {
     }
 
     fn identity(&self, path: &Path) -> PathBuf {
-        path.components().filter(|component| *component != Component::CurDir).collect()
+        path.components()
+            .filter(|component| *component != Component::CurDir)
+            .collect()
     }
 }
 

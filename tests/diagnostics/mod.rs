@@ -17,14 +17,20 @@ use std::path::Path;
 
 /// The text of a test file, with the line ends of Unix whatever the checkout made of them.
 fn content(path: &Path) -> (String, String) {
-    let name = path.file_name().expect("a file has a name").to_string_lossy().into_owned();
+    let name = path
+        .file_name()
+        .expect("a file has a name")
+        .to_string_lossy()
+        .into_owned();
     let text = fs::read_to_string(path).expect("the file can be read");
     (name, text.replace("\r\n", "\n"))
 }
 
 /// The folder of a kind of test files.
 fn folder(name: &str) -> std::path::PathBuf {
-    Path::new(env!("CARGO_MANIFEST_DIR")).join("tests/diagnostics").join(name)
+    Path::new(env!("CARGO_MANIFEST_DIR"))
+        .join("tests/diagnostics")
+        .join(name)
 }
 
 /// The parts and tables that the faulty files name.

@@ -32,7 +32,20 @@ fn tokens(text: &str) -> Vec<&str> {
 
 /// A few tokens are taken out, doubled, exchanged, or put in from anywhere.
 fn damaged(text: &str, random: &mut Random) -> String {
-    const FOREIGN: [&str; 12] = ["(", ")", "{", "}", "\"", "#", "1e999", "gaussian(", " kN", "²", "\n", "橋"];
+    const FOREIGN: [&str; 12] = [
+        "(",
+        ")",
+        "{",
+        "}",
+        "\"",
+        "#",
+        "1e999",
+        "gaussian(",
+        " kN",
+        "²",
+        "\n",
+        "橋",
+    ];
     let mut tokens = tokens(text);
     for _ in 0..=random.below(4) {
         let (one, other) = (random.below(tokens.len()), random.below(tokens.len()));
@@ -63,7 +76,10 @@ fn models(folder: PathBuf) -> Vec<(String, String)> {
 
 fn all_models() -> Vec<(String, String)> {
     let examples = folder("../../examples");
-    [folder("faulty"), folder("several"), folder("shared"), examples].into_iter().flat_map(models).collect()
+    [folder("faulty"), folder("several"), folder("shared"), examples]
+        .into_iter()
+        .flat_map(models)
+        .collect()
 }
 
 #[test]

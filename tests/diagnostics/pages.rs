@@ -35,7 +35,9 @@ fn example(page: &str, kind: &str) -> Option<Memory> {
     let mut rest = blocks.iter().skip_while(|block| block.head != format!("limit {kind}"));
     let mut memory = Memory::of(MAIN, &rest.next()?.text);
     for block in rest {
-        let Some((_, name)) = block.head.split_once(" file ") else { break };
+        let Some((_, name)) = block.head.split_once(" file ") else {
+            break;
+        };
         memory.insert(name.trim_matches('"'), &*block.text);
     }
     Some(memory)
@@ -47,7 +49,11 @@ fn every_page_has_the_same_parts() {
         let page = code.page();
         let title = format!("# {}\n", code.name());
         assert!(page.starts_with(&title), "{}: begins with its code", code.name());
-        assert!(page.ends_with('\n') && !page.ends_with("\n\n"), "{}: ends with one newline", code.name());
+        assert!(
+            page.ends_with('\n') && !page.ends_with("\n\n"),
+            "{}: ends with one newline",
+            code.name()
+        );
         let headings: Vec<&str> = page.lines().filter(|line| line.starts_with("## ")).collect();
         let wanted: &[&str] = if WITHOUT_EXAMPLE.contains(code) {
             &["## The mend", "## Where it matters"]
@@ -56,7 +62,11 @@ fn every_page_has_the_same_parts() {
         };
         assert_eq!(headings, wanted, "{}", code.name());
         for line in page.lines() {
-            assert!(line.chars().count() <= 120, "{}: a line is too long: {line}", code.name());
+            assert!(
+                line.chars().count() <= 120,
+                "{}: a line is too long: {line}",
+                code.name()
+            );
         }
         for block in blocks(page) {
             let file = block.head.starts_with("limit file \"") || block.head.starts_with("csv file \"");
@@ -70,7 +80,9 @@ fn every_page_has_the_same_parts() {
 fn every_wrong_example_raises_its_code_alone() {
     let mut faults = String::new();
     for code in Code::ALL.iter().filter(|code| !WITHOUT_EXAMPLE.contains(code)) {
-        let run = example(code.page(), "wrong").expect("the page has a wrong example").run(MAIN, true);
+        let run = example(code.page(), "wrong")
+            .expect("the page has a wrong example")
+            .run(MAIN, true);
         if run.diagnostics.is_empty() || run.diagnostics.iter().any(|one| one.code != *code) {
             faults += &format!("{} raises {:?}\n{}", code.name(), run.codes(), run.shown());
         }
@@ -82,7 +94,9 @@ fn every_wrong_example_raises_its_code_alone() {
 fn every_mended_example_raises_nothing() {
     let mut faults = String::new();
     for code in Code::ALL.iter().filter(|code| !WITHOUT_EXAMPLE.contains(code)) {
-        let run = example(code.page(), "mended").expect("the page has a mended example").run(MAIN, true);
+        let run = example(code.page(), "mended")
+            .expect("the page has a mended example")
+            .run(MAIN, true);
         if !run.diagnostics.is_empty() {
             faults += &format!("{}:\n{}", code.name(), run.shown());
         }

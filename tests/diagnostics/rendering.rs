@@ -23,7 +23,9 @@ fn wide_characters_and_marks_that_combine() {
 
 #[test]
 fn tabs() {
-    insta::assert_snapshot!(shown("constant\tthickness\t=\t12 mm\t+\t3 kN\n\t\tconstant width = 3 mn2\n"));
+    insta::assert_snapshot!(shown(
+        "constant\tthickness\t=\t12 mm\t+\t3 kN\n\t\tconstant width = 3 mn2\n"
+    ));
 }
 
 #[test]
@@ -68,7 +70,10 @@ fn more_findings_than_are_drawn() {
     let text: String = (0..130).map(|i| format!("constant a{i} = 3 m + 2 kN\n")).collect();
     let shown = shown(&text);
     assert_eq!(shown.matches("[unit/mismatch]").count(), 100);
-    assert!(shown.ends_with("... and 30 more; `check --json` lists them all\n"), "{shown}");
+    assert!(
+        shown.ends_with("... and 30 more; `check --json` lists them all\n"),
+        "{shown}"
+    );
 }
 
 #[test]

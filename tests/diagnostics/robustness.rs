@@ -71,7 +71,15 @@ fn arithmetic_without_a_value() {
 
 #[test]
 fn values_at_the_edge_of_what_a_double_holds() {
-    for value in ["1e308", "-1e308", "1e-308", "4.9e-324", "1e308 mm", "9007199254740993", "0e999"] {
+    for value in [
+        "1e308",
+        "-1e308",
+        "1e-308",
+        "4.9e-324",
+        "1e308 mm",
+        "9007199254740993",
+        "0e999",
+    ] {
         let run = check(&format!("constant a = {value}\n"));
         assert!(run.diagnostics.is_empty(), "{value}: {}", run.shown());
     }
@@ -127,7 +135,9 @@ fn numbers_of_odd_forms() {
         check(&format!("constant a = {value}\n"));
     }
     let digits = "9".repeat(100_000);
-    check(&format!("constant a = {digits}\nconstant b = 0.{digits}\nconstant c = 1e{digits}\n"));
+    check(&format!(
+        "constant a = {digits}\nconstant b = 0.{digits}\nconstant c = 1e{digits}\n"
+    ));
 }
 
 #[test]
@@ -139,7 +149,10 @@ fn deep_brackets() {
     }
     for opening in ["(", "sqrt(", "-(", "{", "gaussian(mean: ", "2^(", "any("] {
         refused(&format!("constant a = {}\n", opening.repeat(50_000)));
-        refused(&format!("limit state a {{ failure when {} }}\n", opening.repeat(50_000)));
+        refused(&format!(
+            "limit state a {{ failure when {} }}\n",
+            opening.repeat(50_000)
+        ));
     }
     check(&format!("constant a = {}1\n", "-".repeat(200_000)));
     check(&format!("constant a = 1{}\n", "^1".repeat(50_000)));
@@ -151,7 +164,9 @@ fn deep_brackets() {
 
 #[test]
 fn a_long_chain_and_a_long_circle() {
-    let chain: String = (0..10_000).map(|i| format!("constant a{i} = a{} + 1\n", i + 1)).collect();
+    let chain: String = (0..10_000)
+        .map(|i| format!("constant a{i} = a{} + 1\n", i + 1))
+        .collect();
     let run = check(&format!("{chain}constant a10000 = 1\n"));
     assert!(run.diagnostics.is_empty(), "{}", run.shown());
     let run = refused(&format!("{chain}constant a10000 = a0\n"));
@@ -162,9 +177,15 @@ fn a_long_chain_and_a_long_circle() {
 #[test]
 fn circles_of_all_with_all() {
     let sum: Vec<String> = (0..200).map(|i| format!("a{i}")).collect();
-    let all: String = (0..200).map(|i| format!("constant a{i} = {}\n", sum.join(" + "))).collect();
+    let all: String = (0..200)
+        .map(|i| format!("constant a{i} = {}\n", sum.join(" + ")))
+        .collect();
     let run = refused(&all);
-    assert!(run.codes().iter().all(|code| *code == "name/cycle"), "{:?}", run.codes());
+    assert!(
+        run.codes().iter().all(|code| *code == "name/cycle"),
+        "{:?}",
+        run.codes()
+    );
     assert!(run.diagnostics.len() <= 200, "{}", run.diagnostics.len());
 }
 
@@ -188,7 +209,10 @@ fn parts_that_double_at_every_level() {
         let text = format!("use \"{next}.limit\" as a\nuse \"{next}.limit\" as b\nprocess x = a.x + b.x\n");
         files.insert(format!("{level}.limit"), text);
     }
-    files.insert("30.limit", "process x = gaussian(standard_deviation: 1, correlation: exponential(length: 1 s))\n");
+    files.insert(
+        "30.limit",
+        "process x = gaussian(standard_deviation: 1, correlation: exponential(length: 1 s))\n",
+    );
     let run = files.run("0.limit", true);
     assert!(run.model.is_none());
     assert!(run.codes().contains(&"model/too-large"), "{:?}", run.codes());
@@ -233,7 +257,10 @@ fn files_that_cannot_be_read() {
         (Unreadable::Folder, "file/unreadable"),
         (Unreadable::NotAFile, "file/unreadable"),
         (Unreadable::NotUtf8(3), "file/unreadable"),
-        (Unreadable::Other("the lock is held by another".to_owned()), "file/unreadable"),
+        (
+            Unreadable::Other("the lock is held by another".to_owned()),
+            "file/unreadable",
+        ),
         (Unreadable::TooLarge, "file/too-large"),
     ] {
         let run = run(&Failing(why), Path::new("model.limit"), true);
@@ -248,9 +275,19 @@ fn files_on_the_disk_that_cannot_be_read() {
     let folder = std::env::temp_dir().join(format!("outcross-robustness-{}", std::process::id()));
     fs::create_dir_all(folder.join("inner")).expect("a folder for this test");
     fs::write(folder.join("latin.limit"), b"# Tr\xe4ger\n").expect("a file for this test");
-    fs::write(folder.join("user.limit"), "use \"inner\" as a\nuse \"latin.limit\" as b\nuse \"nothing\" as c\n")
-        .expect("a file for this test");
-    for name in ["inner", "latin.limit", "nothing.limit", "latin.limit/nothing.limit", "\0", ""] {
+    fs::write(
+        folder.join("user.limit"),
+        "use \"inner\" as a\nuse \"latin.limit\" as b\nuse \"nothing\" as c\n",
+    )
+    .expect("a file for this test");
+    for name in [
+        "inner",
+        "latin.limit",
+        "nothing.limit",
+        "latin.limit/nothing.limit",
+        "\0",
+        "",
+    ] {
         let run = run(&Disk, &folder.join(name), true);
         assert!(run.model.is_none(), "{name}");
         assert_eq!(run.codes(), ["file/unreadable"], "{name}");
@@ -275,7 +312,9 @@ fn typed(number: u8) -> char {
 fn ten_megabytes_of_noise() {
     refused(&noise(10 << 20, |number| char::from(32 + number % 95)));
     refused(&noise(1 << 20, typed));
-    refused(&noise(1 << 20, |number| char::from_u32(u32::from(number) * 37).unwrap_or(' ')));
+    refused(&noise(1 << 20, |number| {
+        char::from_u32(u32::from(number) * 37).unwrap_or(' ')
+    }));
 }
 
 #[test]
@@ -303,11 +342,15 @@ fn tables_of_nonsense() {
         "\u{feff}lag,lag\n",
         "橋 [s],correlation\n0,1\n",
     ] {
-        let run = Memory::of("model.limit", &model).with("table.csv", table).run("model.limit", true);
+        let run = Memory::of("model.limit", &model)
+            .with("table.csv", table)
+            .run("model.limit", true);
         assert!(run.model.is_none(), "{table}");
         assert!(!run.shown().is_empty());
     }
     let bytes = noise(1 << 20, typed);
-    let run = Memory::of("model.limit", &model).with("table.csv", &bytes).run("model.limit", true);
+    let run = Memory::of("model.limit", &model)
+        .with("table.csv", &bytes)
+        .run("model.limit", true);
     assert!(run.model.is_none());
 }

@@ -664,12 +664,18 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         let name = &word.text;
         let within = match path.words.as_slice() {
             _ if instance != scope.instance => {
-                format!(" in `{}`", self.names.parts().get(instance).prefix.trim_end_matches('.'))
+                format!(
+                    " in `{}`",
+                    self.names.parts().get(instance).prefix.trim_end_matches('.')
+                )
             }
             _ => String::new(),
         };
-        let mut finding =
-            Diagnostic::new(Code::NameUnknown, word.span, format!("nothing is called `{name}`{within}"));
+        let mut finding = Diagnostic::new(
+            Code::NameUnknown,
+            word.span,
+            format!("nothing is called `{name}`{within}"),
+        );
         let mut near = self.names.near(name, instance);
         if path.words.len() == 1 {
             near.extend(names::near(name, scope.locals.iter().map(|(local, _)| *local)));
