@@ -4,7 +4,8 @@ use super::parts::{InstanceId, Parts};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Declaration, DeclarationKind, Path, Word};
 use crate::source::Span;
-use std::collections::HashMap;
+use std::collections::hash_map::Entry;
+use std::collections::{HashMap, HashSet};
 
 /// A declaration of an instance, numbered through all instances.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -40,6 +41,7 @@ pub struct Names<'p> {
     items: Vec<Item>,
     first: Vec<u32>,
     tables: Vec<HashMap<&'p str, ItemId>>,
+    lost: Vec<HashSet<&'p str>>,
 }
 
 /// The names that mean something without being declared.
@@ -57,6 +59,7 @@ impl<'p> Names<'p> {
             items: Vec::new(),
             first: Vec::new(),
             tables: Vec::new(),
+            lost: Vec::new(),
         };
         for (id, instance) in (0u32..).map(InstanceId).zip(&parts.instances) {
             names.first.push(count(names.items.len()));
@@ -68,15 +71,25 @@ impl<'p> Names<'p> {
                     declaration: index,
                 });
                 let Some(word) = declared(declaration) else { continue };
-                if let Some((_, meaning)) = BUILT_IN.iter().find(|(name, _)| *name == &*word.text) {
+                let built_in = BUILT_IN.iter().find(|(name, _)| *name == &*word.text);
+                if let Some((_, meaning)) = built_in {
                     diagnostics.push(reserved(word, meaning));
-                } else if let Some(earlier) = table.get(&*word.text) {
-                    diagnostics.push(names.repeated(word, *earlier));
-                } else {
-                    table.insert(&word.text, item);
+                }
+                match table.entry(&word.text) {
+                    Entry::Occupied(earlier) if built_in.is_none() => {
+                        diagnostics.push(names.repeated(word, *earlier.get()));
+                    }
+                    Entry::Occupied(_) => {}
+                    // A reserved word too: where it is used, its declaration is meant.
+                    Entry::Vacant(free) => {
+                        free.insert(item);
+                    }
                 }
             }
             names.tables.push(table);
+            names
+                .lost
+                .push(instance.tree.lost.iter().map(|word| &*word.text).collect());
         }
         names
     }
@@ -135,10 +148,12 @@ impl<'p> Names<'p> {
             None => return Ok(Resolved::Fault),
         };
         for word in through {
-            let item = self.find(instance, &word.text).ok_or(Unknown { word, instance })?;
+            let Some(item) = self.find(instance, &word.text) else {
+                return self.unknown(word, instance);
+            };
             let at = self.item(item);
             if !matches!(self.declaration(item).kind, DeclarationKind::Use { .. }) {
-                return Err(Unknown { word: last, instance });
+                return Err(Unknown::Inside { word });
             }
             match self.parts.made.get(&(at.instance, at.declaration)) {
                 Some(made) => instance = *made,
@@ -147,8 +162,23 @@ impl<'p> Names<'p> {
         }
         match self.find(instance, &last.text) {
             Some(item) => Ok(Resolved::Item(item)),
-            None => Err(Unknown { word: last, instance }),
+            None => self.unknown(last, instance),
         }
+    }
+
+    fn unknown<'a>(&self, word: &'a Word, instance: InstanceId) -> Result<Resolved, Unknown<'a>> {
+        if self.is_lost(instance, &word.text) {
+            Ok(Resolved::Fault)
+        } else {
+            Err(Unknown::Name { word, instance })
+        }
+    }
+
+    /// Whether a declaration of that name may stand among the text that could not be read.
+    pub fn is_lost(&self, instance: InstanceId, name: &str) -> bool {
+        self.lost
+            .get(instance.0 as usize)
+            .is_some_and(|lost| lost.contains(name))
     }
 
     /// The names of an instance that look like `name`, nearest first, at most three.
@@ -158,12 +188,20 @@ impl<'p> Names<'p> {
     }
 }
 
-/// A word that nothing declares.
-pub struct Unknown<'a> {
-    /// The word.
-    pub word: &'a Word,
-    /// Where it was looked for.
-    pub instance: InstanceId,
+/// Why a path leads nowhere.
+pub enum Unknown<'a> {
+    /// A word that nothing declares.
+    Name {
+        /// The word.
+        word: &'a Word,
+        /// Where it was looked for.
+        instance: InstanceId,
+    },
+    /// A word inside of something that is no part.
+    Inside {
+        /// The word that is no part.
+        word: &'a Word,
+    },
 }
 
 /// The candidates that look like `name`, nearest first, at most three.

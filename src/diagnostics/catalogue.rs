@@ -41,6 +41,11 @@ macro_rules! catalogue {
                 match self { $(Code::$variant => $summary,)* }
             }
 
+            /// What it is, why, an example with its mend, and where it matters: a page of Markdown.
+            pub fn page(self) -> &'static str {
+                match self { $(Code::$variant => include_str!(concat!("pages/", $code, ".md")),)* }
+            }
+
             /// Error or warning.
             pub fn severity(self) -> Severity {
                 match self { $(Code::$variant => Severity::$severity,)* }
@@ -93,12 +98,5 @@ impl Code {
     /// The code of a written form.
     pub fn find(name: &str) -> Option<Code> {
         Self::ALL.iter().copied().find(|code| code.name() == name)
-    }
-}
-
-impl Code {
-    /// The explanation.
-    pub fn page(self) -> &'static str {
-        self.summary()
     }
 }

@@ -5,6 +5,7 @@
 //! tree of what it found; `recovery`, `messages` and `mends` say what is wrong with a stretch that it refused.
 
 mod build;
+mod lost;
 mod mends;
 mod messages;
 mod parser;

@@ -1,6 +1,7 @@
 //! The front of the stage: a text in, its tree and its faults out.
 
 use super::build::Builder;
+use super::lost;
 use super::messages::Fault;
 use super::reader::Reader;
 use super::recovery;
@@ -23,6 +24,7 @@ pub fn parse(file: FileId, text: &str) -> (Tree, Vec<Diagnostic>) {
     let mut tree = Tree {
         file,
         declarations: Vec::new(),
+        lost: Vec::new(),
         comments: Vec::new(),
     };
     let mut reader = Reader::new(file, text, &scan.comments);
@@ -30,13 +32,21 @@ pub fn parse(file: FileId, text: &str) -> (Tree, Vec<Diagnostic>) {
         let range = stretch.range.clone();
         if let Some(at) = stretch.too_deep {
             reader.report(at, || too_deep(file, at));
+            tree.lost.extend(lost::names(file, text, range));
             continue;
         }
-        tree.declarations
-            .extend(match Grammar::parse(Rule::stretch, reader.slice(range.clone())) {
-                Ok(pairs) => Builder::new(file, range.start, &mut reader.diagnostics).declarations(pairs),
-                Err(_) => recovery::recover(&mut reader, range),
-            });
+        let (found, readable) = match Grammar::parse(Rule::stretch, reader.slice(range.clone())) {
+            Ok(pairs) => {
+                let before = reader.diagnostics.len();
+                let found = Builder::new(file, range.start, &mut reader.diagnostics).declarations(pairs);
+                (found, reader.diagnostics.len() == before)
+            }
+            Err(_) => (recovery::recover(&mut reader, range.clone()), false),
+        };
+        tree.declarations.extend(found);
+        if !readable {
+            tree.lost.extend(lost::names(file, text, range));
+        }
     }
     let diagnostics = reader.finish();
     for declaration in &mut tree.declarations {

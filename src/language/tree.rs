@@ -13,6 +13,8 @@ pub struct Tree {
     pub file: FileId,
     /// The declarations in the order of the text. A stretch that could not be read is left out (it was reported).
     pub declarations: Vec<Declaration>,
+    /// The names in stretches at fault: what they were meant to declare is not known, and their uses are no fault.
+    pub lost: Vec<Word>,
     /// Every comment, in the order of the text; the span starts at `#` and ends before the end of the line.
     pub comments: Vec<Span>,
 }

@@ -125,9 +125,10 @@ impl Lowering<'_, '_, '_> {
             .chain(OPERATIONS.iter().copied())
             .chain(["gaussian"])
             .chain(declared);
-        finding.help = Some(match choice(&near(name, known)) {
-            Some(near) => format!("did you mean {near}?"),
-            None => "to multiply, write `*`".to_string(),
+        finding.help = Some(match (name, choice(&near(name, known))) {
+            ("log", _) => "write `ln` for base e, or `log10` for base 10".to_string(),
+            (_, Some(near)) => format!("did you mean {near}?"),
+            (_, None) => "to multiply, write `*`".to_string(),
         });
         self.report(finding);
     }

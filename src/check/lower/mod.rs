@@ -519,6 +519,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             let same = |other: &crate::language::tree::Argument| {
                 other.name.as_ref().is_some_and(|other| other.text == word.text)
             };
+            if self.names.is_lost(made, &word.text) {
+                continue;
+            }
             if !parameters.contains(&&*word.text) {
                 let message = format!("the part has no parameter called `{}`", word.text);
                 let mut finding = Diagnostic::new(Code::PartArgument, word.span, message);
@@ -601,6 +604,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 return Value::Scalar(scalar.clone());
             }
             match &*word.text {
+                // Declared all the same: that was reported.
+                name if self.names.find(scope.instance, name).is_some() => {}
                 "pi" => return Value::Scalar(Scalar::new(Number::Known(std::f64::consts::PI), Dimension::PLAIN)),
                 "t" => {
                     self.not_yet(path.span, "quantities that change with the time `t`");
@@ -645,21 +650,36 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     }
 
     fn unknown_name(&mut self, path: &Path, unknown: &Unknown<'_>, scope: Scope<'_>) {
-        let name = &unknown.word.text;
+        let (word, instance) = match unknown {
+            Unknown::Name { word, instance } => (word, *instance),
+            Unknown::Inside { word } => {
+                let message = format!("`{}` is no part, so `{}` names nothing", word.text, word_text(path));
+                self.report(
+                    Diagnostic::new(Code::NameUnknown, path.span, message)
+                        .help("only a part, made by `use`, has names inside"),
+                );
+                return;
+            }
+        };
+        let name = &word.text;
         let within = match path.words.as_slice() {
-            [_] => String::new(),
-            _ => format!(
-                " in `{}`",
-                self.names.parts().get(unknown.instance).prefix.trim_end_matches('.')
-            ),
+            _ if instance != scope.instance => {
+                format!(
+                    " in `{}`",
+                    self.names.parts().get(instance).prefix.trim_end_matches('.')
+                )
+            }
+            _ => String::new(),
         };
         let mut finding = Diagnostic::new(
             Code::NameUnknown,
-            unknown.word.span,
+            word.span,
             format!("nothing is called `{name}`{within}"),
         );
-        let mut near = self.names.near(name, unknown.instance);
-        near.extend(names::near(name, scope.locals.iter().map(|(local, _)| *local)));
+        let mut near = self.names.near(name, instance);
+        if path.words.len() == 1 {
+            near.extend(names::near(name, scope.locals.iter().map(|(local, _)| *local)));
+        }
         near.truncate(3);
         finding.help = if let Some(near) = choice(&near) {
             Some(format!("did you mean {near}?"))
@@ -836,7 +856,7 @@ pub fn unknown_overrides(names: &Names<'_>, overrides: &[Overrides], diagnostics
     for set in overrides {
         let name = &set.name.text;
         let is_parameter = |item: ItemId| matches!(names.declaration(item).kind, DeclarationKind::Parameter { .. });
-        if names.find(root, name).is_some_and(is_parameter) {
+        if names.find(root, name).is_some_and(is_parameter) || names.is_lost(root, name) {
             continue;
         }
         let message = match names.find(root, name) {

@@ -1,0 +1,93 @@
+//! Files that stand in memory, and a run over them.
+
+use outcross::check::{self, Model, Settings};
+use outcross::diagnostics::{Diagnostic, any_error, terminal};
+use outcross::source::{Files, Reader, Unreadable};
+use std::collections::HashMap;
+use std::path::{Component, Path, PathBuf};
+
+/// Texts by path.
+#[derive(Clone, Default)]
+pub struct Memory(HashMap<PathBuf, String>);
+
+impl Memory {
+    /// A single file.
+    pub fn of(name: &str, text: &str) -> Self {
+        Self::default().with(name, text)
+    }
+
+    /// One file more, in place of another of the same name.
+    pub fn with(mut self, name: &str, text: &str) -> Self {
+        self.insert(name, text);
+        self
+    }
+
+    /// Adds a file, in place of another of the same name.
+    pub fn insert(&mut self, name: impl Into<PathBuf>, text: impl Into<String>) {
+        self.0.insert(name.into(), text.into());
+    }
+
+    /// Checks a file, with values demanded of all parameters or not.
+    pub fn run(&self, name: &str, require_parameters: bool) -> Run {
+        run(self, Path::new(name), require_parameters)
+    }
+}
+
+impl Reader for Memory {
+    fn read(&self, path: &Path) -> Result<String, Unreadable> {
+        self.0.get(&self.identity(path)).cloned().ok_or(Unreadable::Missing)
+    }
+
+    fn identity(&self, path: &Path) -> PathBuf {
+        path.components()
+            .filter(|component| *component != Component::CurDir)
+            .collect()
+    }
+}
+
+/// What came of a check.
+pub struct Run {
+    pub files: Files,
+    pub model: Option<Model>,
+    pub diagnostics: Vec<Diagnostic>,
+}
+
+/// Checks a file. Whatever it holds, there is a model where nothing is an error, every finding has words, and every
+/// place lies in its file on character boundaries.
+pub fn run(reader: &dyn Reader, path: &Path, require_parameters: bool) -> Run {
+    let mut files = Files::new();
+    let settings = Settings {
+        require_parameters,
+        ..Settings::default()
+    };
+    let (model, diagnostics) = check::check(&mut files, reader, path, &settings);
+    assert_eq!(model.is_none(), any_error(&diagnostics));
+    for one in &diagnostics {
+        assert!(!one.message.is_empty(), "{one:?}");
+        let places = one.labels.iter().map(|label| label.place);
+        for place in std::iter::once(one.place).chain(places) {
+            let text = &files.get(place.file).text;
+            assert!(text.get(place.range()).is_some(), "{one:?} lies outside of its file");
+        }
+    }
+    Run {
+        files,
+        model,
+        diagnostics,
+    }
+}
+
+impl Run {
+    /// What a user reads at the terminal.
+    pub fn shown(&self) -> String {
+        let mut out = Vec::new();
+        terminal::write(&mut out, &self.files, &self.diagnostics, false).expect("a vector takes everything");
+        let text = String::from_utf8(out).expect("the terminal is written in UTF-8");
+        text.lines().map(|line| line.trim_end().to_owned() + "\n").collect()
+    }
+
+    /// The codes of the findings, in the order of the text.
+    pub fn codes(&self) -> Vec<&'static str> {
+        self.diagnostics.iter().map(|one| one.code.name()).collect()
+    }
+}

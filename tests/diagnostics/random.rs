@@ -1,0 +1,20 @@
+//! Chance that is the same in every run.
+
+/// The generator SplitMix64 (G. L. Steele, D. Lea and C. H. Flood 2014, Fast splittable pseudorandom number generators).
+pub struct Random(pub u64);
+
+impl Random {
+    /// Any number.
+    pub fn next(&mut self) -> u64 {
+        self.0 = self.0.wrapping_add(0x9e37_79b9_7f4a_7c15);
+        let mut z = self.0;
+        z = (z ^ (z >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);
+        z = (z ^ (z >> 27)).wrapping_mul(0x94d0_49bb_1331_11eb);
+        z ^ (z >> 31)
+    }
+
+    /// A number below `end`; 0 where there is none.
+    pub fn below(&mut self, end: usize) -> usize {
+        (self.next() % end.max(1) as u64) as usize
+    }
+}
