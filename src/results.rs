@@ -92,9 +92,12 @@ pub struct Moments {
     #[serde(skip_serializing_if = "Option::is_none")]
     pub irregularity: Option<f64>,
     /// `lambda_0`, `lambda_1`, `lambda_2`, `lambda_4` of the one-sided density over omega in rad/s. Left out where one
-    /// of them could not be reached.
+    /// of them is not known.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub spectral_moments: Option<[Real; 4]>,
+    /// Whether a moment exists that could not be computed to six digits.
+    #[serde(skip)]
+    pub unreached: bool,
 }
 
 /// A limit state.

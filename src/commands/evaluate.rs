@@ -46,11 +46,18 @@ pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Resu
             Ok(())
         })?;
     }
-    Ok(status(&documents, arguments.tolerance))
+    let out_of_reach: Vec<String> = documents
+        .iter()
+        .flat_map(|results| results.out_of_reach(arguments.tolerance))
+        .collect();
+    for words in &out_of_reach {
+        writeln!(io::stderr(), "outcross: not reached to its tolerance: {words}")?;
+    }
+    Ok(status(&documents, out_of_reach.is_empty()))
 }
 
-fn status(documents: &[Results], tolerance: f64) -> Status {
-    if !documents.iter().all(|results| results.within_tolerance(tolerance)) {
+fn status(documents: &[Results], reached: bool) -> Status {
+    if !reached {
         Status::NotReached
     } else if documents.iter().all(Results::all_hold) {
         Status::Holds

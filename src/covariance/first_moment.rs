@@ -1,10 +1,10 @@
 //! lambda_1 of several terms over one source, which no derivative of the covariance gives.
 
 use super::form::Term;
-use super::kernel::Kernel;
+use super::kernel::{Kernel, Unavailable};
 use super::moments::Moment;
 use crate::numerics::quadrature::{self, Integral, Tolerance};
-use std::f64::consts::{FRAC_PI_2, PI};
+use std::f64::consts::{FRAC_2_PI, FRAC_PI_2, PI};
 
 /// The relative accuracy aimed at.
 const RELATIVE: f64 = 1e-10;
@@ -15,92 +15,195 @@ const REACHED: f64 = 1e-6;
 /// Integrand values after which an integral is given up.
 const EVALUATIONS: usize = 200_000;
 
-/// The integral of omega |A(omega)|² over the spectrum, A being the sum of a (i omega)^n exp(-i omega d) over the terms:
-/// each pair of terms gives omega^(1 + n_i + n_j) cos(omega (d_i - d_j) - (n_i - n_j) pi/2).
-pub(super) fn of_terms(kernel: &Kernel, terms: &[Term]) -> Moment {
-    let scale = kernel.moments().lambda[1].value().map_or(0.0, f64::abs);
-    let mut sum = Moment::Finite { value: 0.0, error: 0.0 };
-    for (index, one) in terms.iter().enumerate() {
-        for (other_index, other) in terms.iter().enumerate().skip(index) {
-            let both = if other_index == index { 1.0 } else { 2.0 };
-            let pair = Pair {
-                power: 1 + one.operator.derivatives + other.operator.derivatives,
-                lag: (one.operator.delay - other.operator.delay).abs(),
-                phase: phase(one, other),
-            };
-            let weight = both * one.coefficient() * other.coefficient();
-            sum = sum.plus(pair.integral(kernel, scale).times(weight));
-        }
-    }
-    match sum {
-        Moment::Finite { value, error } if error > REACHED * value.abs() => Moment::Unreached,
-        sum => sum,
+/// The integral of omega |A(omega)|² over the spectrum, A being the sum of a (i omega)^n exp(-i omega d) over the terms.
+/// It must be known to be finite. `first` is lambda_1 of the source, `variance` and `curvature` lambda_0 and lambda_2 of
+/// the terms.
+pub(super) fn of_terms(kernel: &Kernel, terms: &[Term], first: Moment, variance: Moment, curvature: Moment) -> Moment {
+    let found = if kernel.density_is_closed() {
+        over_frequencies(kernel, terms, first)
+    } else {
+        over_lags(kernel, terms, variance, curvature)
+    };
+    match found {
+        Ok(Moment::Finite { value, error }) if error > REACHED * value.abs() => Moment::Unreached,
+        Ok(moment) => moment,
+        Err(_) => Moment::Unknown,
     }
 }
 
-/// `(n_i - n_j) pi/2`, with the sign of the lag taken into it.
-fn phase(one: &Term, other: &Term) -> f64 {
-    let quarter_turns = f64::from(one.operator.derivatives) - f64::from(other.operator.derivatives);
-    let forward = one.operator.delay >= other.operator.delay;
-    FRAC_PI_2 * if forward { quarter_turns } else { -quarter_turns }
-}
-
-/// What a pair of terms asks of the spectrum.
-struct Pair {
-    power: u32,
+/// The pairs of terms that lie one lag apart: each gives omega^(1 + n_i + n_j) cos(omega lag - (n_i - n_j) pi/2).
+struct Group {
     lag: f64,
+    waves: Vec<Wave>,
+}
+
+struct Wave {
+    weight: f64,
+    power: i32,
     phase: f64,
 }
 
-impl Pair {
+impl Group {
     fn weight(&self, omega: f64) -> f64 {
-        omega.powi(self.power as i32) * (omega * self.lag - self.phase).cos()
+        let (sine, cosine) = (omega * self.lag).sin_cos();
+        self.waves
+            .iter()
+            .map(|wave| wave.weight * omega.powi(wave.power) * (cosine * wave.phase.cos() + sine * wave.phase.sin()))
+            .sum()
     }
+}
 
-    fn integral(&self, kernel: &Kernel, scale: f64) -> Moment {
-        if self.lag == 0.0 && self.power == 1 {
-            return Moment::from(&kernel.moments().lambda[1]);
+/// The pairs by their lag, rising, but for an undifferentiated term with itself, whose part is known. Terms of a form are
+/// sorted, so one order of terms gives one order of groups.
+fn groups(terms: &[Term]) -> Vec<Group> {
+    let mut pairs: Vec<(f64, Wave)> = Vec::new();
+    for (index, one) in terms.iter().enumerate() {
+        for (other_index, other) in terms.iter().enumerate().skip(index) {
+            let both = if other_index == index { 1.0 } else { 2.0 };
+            let lag = one.operator.delay - other.operator.delay;
+            let quarter_turns = f64::from(one.operator.derivatives) - f64::from(other.operator.derivatives);
+            let wave = Wave {
+                weight: both * one.coefficient() * other.coefficient(),
+                power: (1 + one.operator.derivatives + other.operator.derivatives) as i32,
+                phase: FRAC_PI_2 * if lag < 0.0 { -quarter_turns } else { quarter_turns },
+            };
+            // A quarter turn apart at one instant: uncorrelated at every frequency.
+            let uncorrelated = lag == 0.0 && quarter_turns % 2.0 != 0.0;
+            let known = other_index == index && wave.power == 1;
+            if !uncorrelated && !known {
+                pairs.push((lag.abs(), wave));
+            }
         }
-        if self.lag == 0.0 && self.phase.cos().abs() < 0.5 {
-            // A quarter turn apart at one instant: the two are uncorrelated at every frequency.
-            return Moment::Finite { value: 0.0, error: 0.0 };
+    }
+    pairs.sort_by(|a, b| a.0.total_cmp(&b.0));
+    let mut groups: Vec<Group> = Vec::new();
+    for (lag, wave) in pairs {
+        match groups.last_mut() {
+            Some(group) if group.lag == lag => group.waves.push(wave),
+            _ => groups.push(Group { lag, waves: vec![wave] }),
         }
-        let lines = match kernel.lines() {
-            Ok(lines) => lines.iter().map(|line| line.power * self.weight(line.frequency)).sum(),
-            Err(_) => return Moment::Unreached,
-        };
-        let of_lines = Moment::Finite {
-            value: lines,
+    }
+    groups
+}
+
+/// From lines and density. The part of each term with itself is positive and sets the scale for the others, which may
+/// cancel.
+fn over_frequencies(kernel: &Kernel, terms: &[Term], first: Moment) -> Result<Moment, Unavailable> {
+    let lines = kernel.lines()?;
+    let has_density = kernel.has_density();
+    let grid = if has_density {
+        kernel.frequency_grid()?
+    } else {
+        Vec::new()
+    };
+    let plain = terms.iter().filter(|term| term.operator.derivatives == 0);
+    let squares: f64 = plain.map(|term| term.coefficient() * term.coefficient()).sum();
+    let mut sum = if squares > 0.0 {
+        first.times(squares)
+    } else {
+        Moment::Finite { value: 0.0, error: 0.0 }
+    };
+    for group in groups(terms) {
+        let of_lines = lines.iter().map(|line| line.power * group.weight(line.frequency)).sum();
+        sum = sum.plus(Moment::Finite {
+            value: of_lines,
             error: 0.0,
-        };
-        if kernel.has_density() {
-            of_lines.plus(self.of_density(kernel, scale))
-        } else {
-            of_lines
+        });
+        if has_density {
+            let scale = sum.value().unwrap_or(0.0).abs();
+            sum = sum.plus(of_density(kernel, &group, &grid, scale));
         }
     }
+    Ok(sum)
+}
 
-    fn of_density(&self, kernel: &Kernel, scale: f64) -> Moment {
-        let Ok(grid) = kernel.frequency_grid() else {
-            return Moment::Unreached;
-        };
-        let integrand = |omega: f64| match kernel.density(omega) {
-            Ok(density) => density.value * self.weight(omega),
-            Err(_) => f64::NAN,
-        };
-        let tolerance = Tolerance {
-            absolute: RELATIVE * scale,
-            relative: RELATIVE,
-        };
-        if self.lag == 0.0 {
-            return moment(quadrature::to_infinity(integrand, &grid, tolerance, EVALUATIONS));
-        }
-        // Up to the last scale of the density one by one, then wave by wave.
-        let end = grid.last().copied().unwrap_or(0.0);
-        let head = moment(quadrature::between(integrand, &grid, tolerance, EVALUATIONS));
-        let tail = quadrature::oscillating_tail(integrand, end, PI / self.lag, tolerance, EVALUATIONS);
-        head.plus(moment(tail))
+fn of_density(kernel: &Kernel, group: &Group, grid: &[f64], scale: f64) -> Moment {
+    let integrand = |omega: f64| match kernel.density(omega) {
+        Ok(density) => density.value * group.weight(omega),
+        Err(_) => f64::NAN,
+    };
+    let tolerance = Tolerance {
+        absolute: RELATIVE * scale,
+        relative: RELATIVE,
+    };
+    if group.lag == 0.0 {
+        return moment(quadrature::to_infinity(integrand, grid, tolerance, EVALUATIONS));
     }
+    // Up to the last scale of the density one by one, then wave by wave.
+    let end = grid.last().copied().unwrap_or(0.0);
+    let head = moment(quadrature::between(integrand, grid, tolerance, EVALUATIONS));
+    let tail = quadrature::oscillating_tail(integrand, end, PI / group.lag, tolerance, EVALUATIONS);
+    head.plus(moment(tail))
+}
+
+/// Where no density is at hand: `2/pi` times the integral of `(C(0) - C(tau))/tau²` over lags above 0, C being the
+/// autocovariance of the terms. Its integrand has one sign; it follows from that of `(1 - cos x)/x²`, which is `pi/2`.
+fn over_lags(kernel: &Kernel, terms: &[Term], variance: Moment, curvature: Moment) -> Result<Moment, Unavailable> {
+    let (Some(variance), Some(curvature)) = (variance.value(), curvature.value()) else {
+        return Ok(Moment::Unreached);
+    };
+    let Some((shortest, longest)) = kernel.times() else {
+        return Ok(Moment::Finite { value: 0.0, error: 0.0 });
+    };
+    let mut failure = None;
+    let mut lost = |lag: f64| match autocovariance(kernel, terms, lag) {
+        Ok(covariance) => (variance - covariance) / (lag * lag),
+        Err(why) => {
+            failure.get_or_insert(why);
+            f64::NAN
+        }
+    };
+    // Close to lag 0 C(0) - C(tau) is lambda_2 tau²/2 but for its digits; what that leaves out is seen at the end.
+    let near = NEAR * shortest;
+    let start = 0.5 * curvature * near;
+    let mismatch = (lost(near) - 0.5 * curvature).abs() * near;
+    let reach = terms.iter().map(|term| term.operator.delay.abs()).fold(0.0, f64::max);
+    let mut lags: Vec<f64> = std::iter::successors(Some(near), |lag| Some(lag * 4.0))
+        .take_while(|lag| *lag < FADED * (longest + reach))
+        .take(200)
+        .collect();
+    let delays = terms
+        .iter()
+        .flat_map(|one| terms.iter().map(|other| one.operator.delay - other.operator.delay));
+    lags.extend(delays.map(f64::abs).filter(|lag| *lag > near));
+    lags.sort_by(f64::total_cmp);
+    lags.dedup();
+    let tolerance = Tolerance::relative(RELATIVE);
+    let rest = moment(quadrature::to_infinity(&mut lost, &lags, tolerance, EVALUATIONS));
+    if let Some(why) = failure {
+        return Err(why);
+    }
+    let start = Moment::Finite {
+        value: start,
+        error: mismatch,
+    };
+    Ok(start.plus(rest).times(FRAC_2_PI))
+}
+
+/// The stretch of lags, in shortest times, over which the curvature at lag 0 stands for the covariance.
+const NEAR: f64 = 1e-3;
+
+/// After so many of its longest times a kernel is taken to have faded.
+const FADED: f64 = 40.0;
+
+/// The covariance of the terms with themselves a lag later.
+fn autocovariance(kernel: &Kernel, terms: &[Term], lag: f64) -> Result<f64, Unavailable> {
+    let mut sum = 0.0;
+    for one in terms {
+        for other in terms {
+            let order = (one.operator.derivatives + other.operator.derivatives) as usize;
+            let at = lag + one.operator.delay - other.operator.delay;
+            let derivative = if order == 0 {
+                kernel.value(at)?
+            } else {
+                let factorial: f64 = (1..=order).map(|n| n as f64).product();
+                kernel.taylor(at, order)?.last().copied().unwrap_or(f64::NAN) * factorial
+            };
+            let parity = if one.operator.derivatives % 2 == 1 { -1.0 } else { 1.0 };
+            sum += parity * one.coefficient() * other.coefficient() * derivative;
+        }
+    }
+    Ok(sum)
 }
 
 fn moment(integral: Option<Integral>) -> Moment {

@@ -37,17 +37,19 @@ pub enum Moment {
     Infinite,
     /// Finite, but not to be had to six digits.
     Unreached,
+    /// Not to be told from what the model says, such as beyond a table that refuses to be continued.
+    Unknown,
 }
 
 impl Moment {
     const ZERO: Self = Self::Finite { value: 0.0, error: 0.0 };
 
-    /// The number, infinity included; `None` where it was not reached.
+    /// The number, infinity included; `None` where it is not known.
     pub fn value(&self) -> Option<f64> {
         match self {
             Self::Finite { value, .. } => Some(*value),
             Self::Infinite => Some(f64::INFINITY),
-            Self::Unreached => None,
+            Self::Unreached | Self::Unknown => None,
         }
     }
 
@@ -60,6 +62,7 @@ impl Moment {
         match (self, other) {
             (Self::Infinite, _) | (_, Self::Infinite) => Self::Infinite,
             (Self::Unreached, _) | (_, Self::Unreached) => Self::Unreached,
+            (Self::Unknown, _) | (_, Self::Unknown) => Self::Unknown,
             (Self::Finite { value: a, error: e }, Self::Finite { value: b, error: f }) => Self::Finite {
                 value: a + b,
                 error: e + f,
@@ -86,13 +89,14 @@ impl From<&kernel::Moment> for Moment {
                 error: *error,
             },
             kernel::Moment::Infinite => Self::Infinite,
-            kernel::Moment::Unreached { .. } | kernel::Moment::Unknown(_) => Self::Unreached,
+            kernel::Moment::Unreached { .. } => Self::Unreached,
+            kernel::Moment::Unknown(_) => Self::Unknown,
         }
     }
 }
 
 /// The moments of a form.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, PartialEq)]
 pub struct FormMoments {
     /// lambda_0, lambda_1, lambda_2, lambda_4 of the one-sided density over omega in rad/s.
     pub lambda: [Moment; 4],
@@ -136,6 +140,7 @@ pub struct MomentTable<'s> {
     of_sources: Vec<OnceCell<SpectralMoments>>,
     at_zero: Vec<OnceCell<Vec<Moment>>>,
     at_lags: RefCell<HashMap<(SourceId, u64), Rc<Vec<Moment>>>>,
+    of_forms: RefCell<HashMap<*const LinearForm, FormMoments>>,
 }
 
 impl<'s> MomentTable<'s> {
@@ -146,7 +151,24 @@ impl<'s> MomentTable<'s> {
             of_sources: vec![OnceCell::new(); sources.len()],
             at_zero: vec![OnceCell::new(); sources.len()],
             at_lags: RefCell::new(HashMap::new()),
+            of_forms: RefCell::new(HashMap::new()),
         }
+    }
+
+    /// The sources.
+    pub fn sources(&self) -> &'s [Source] {
+        self.sources
+    }
+
+    /// The moments of a form that lives as long as the sources: a margin and its limit states share one.
+    pub fn moments_of(&self, form: &'s LinearForm) -> FormMoments {
+        let key = std::ptr::from_ref(form);
+        if let Some(known) = self.of_forms.borrow().get(&key) {
+            return *known;
+        }
+        let moments = self.moments(form);
+        self.of_forms.borrow_mut().insert(key, moments);
+        moments
     }
 
     /// The moments of a form over these sources.
@@ -168,22 +190,26 @@ impl<'s> MomentTable<'s> {
 
     /// The moments of the terms over one source.
     fn part(&self, source: SourceId, terms: &[Term]) -> [Moment; 4] {
+        let moments = || self.of_sources[source.0 as usize].get_or_init(|| self.kernel(source).moments());
         if let [term] = terms
             && term.operator.derivatives == 0
         {
-            let moments = self.of_sources[source.0 as usize].get_or_init(|| self.kernel(source).moments());
+            let moments = moments();
             let square = term.coefficient() * term.coefficient();
             return moments
                 .lambda
                 .each_ref()
                 .map(|moment| Moment::from(moment).times(square));
         }
-        [
-            self.even(source, terms, 0),
-            self.first(source, terms),
-            self.even(source, terms, 2),
-            self.even(source, terms, 4),
-        ]
+        let [variance, curvature, fourth] = [0, 2, 4].map(|n| self.even(source, terms, n));
+        let source = &self.sources[source.0 as usize];
+        let first = if terms.iter().all(|term| first_moment_exists(source, term.operator)) {
+            let first = Moment::from(&moments().lambda[1]);
+            first_moment::of_terms(&source.kernel, terms, first, variance, curvature)
+        } else {
+            Moment::Infinite
+        };
+        [variance, first, curvature, fourth]
     }
 
     /// lambda_n for an even n: (-1)^(n/2) times the n-th derivative of the covariance at lag 0.
@@ -260,16 +286,6 @@ impl<'s> MomentTable<'s> {
         // The kernel is even: its odd derivatives change sign with the lag.
         let sign = if lag < 0.0 && order % 2 == 1 { -1.0 } else { 1.0 };
         found.unwrap_or(Moment::Infinite).times(sign)
-    }
-
-    /// lambda_1 of the terms over one source, pair by pair.
-    fn first(&self, source: SourceId, terms: &[Term]) -> Moment {
-        let source = &self.sources[source.0 as usize];
-        let rough = terms.iter().any(|term| !first_moment_exists(source, term.operator));
-        if rough {
-            return Moment::Infinite;
-        }
-        first_moment::of_terms(&source.kernel, terms)
     }
 }
 
@@ -365,8 +381,7 @@ impl Sum {
                 self.size += value.abs();
                 self.error += error;
             }
-            Moment::Infinite => self.spoilt = Some(Moment::Infinite),
-            Moment::Unreached => self.spoilt = self.spoilt.or(Some(Moment::Unreached)),
+            unknown => self.spoilt = Some(self.spoilt.map_or(unknown, |earlier| earlier.plus(unknown))),
         }
     }
 

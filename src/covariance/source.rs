@@ -12,17 +12,20 @@ pub struct Source {
     pub kernel: Kernel,
     /// Where its name stands.
     pub place: Span,
+    /// What was taken for granted to get the kernel, for the reader of results.
+    pub notes: Vec<String>,
     smoothness: Smoothness,
 }
 
 impl Source {
     /// A source with its kernel.
-    pub fn new(name: String, kernel: Kernel, place: Span) -> Self {
+    pub fn new(name: String, kernel: Kernel, place: Span, notes: Vec<String>) -> Self {
         let smoothness = kernel.smoothness();
         Self {
             name,
             kernel,
             place,
+            notes,
             smoothness,
         }
     }

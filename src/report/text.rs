@@ -106,19 +106,21 @@ fn moments_row(named: &Named, result: &Moments) -> Vec<String> {
     let unit = &named.unit;
     let rate = Unit::named("s").and_then(|second| unit.over(&second));
     let derivative = result.derivative_standard_deviation.map(|value| match &rate {
-        Some(rate) => show(value.value(), rate, DIGITS),
-        None => show_number(value.value(), DIGITS),
+        Some(rate) if value.value().is_finite() => show(value.value(), rate, DIGITS),
+        _ => show_number(value.value(), DIGITS),
     });
+    let bandwidth = match result.bandwidth {
+        Some(bandwidth) => show_number(bandwidth, 3),
+        None if result.unreached => "not reached".to_string(),
+        None => String::new(),
+    };
     vec![
         result.name.clone(),
         show(result.mean, unit, DIGITS),
         show(result.standard_deviation, unit, DIGITS),
         derivative.unwrap_or_default(),
         result.zero_upcrossing_rate.map(per_second).unwrap_or_default(),
-        result
-            .bandwidth
-            .map(|bandwidth| show_number(bandwidth, 3))
-            .unwrap_or_default(),
+        bandwidth,
     ]
 }
 
@@ -144,7 +146,7 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
     let rows = vec![
         vec![
             format!("failure probability over {period}"),
-            show_number(result.failure_probability, DIGITS),
+            probability(result.failure_probability),
         ],
         vec![
             format!("reliability index over {period}"),
@@ -153,11 +155,11 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
         vec![format!("survival over {period}"), survival(result.survival)],
         vec![
             "failed at the start".to_string(),
-            show_number(result.initial_failure_probability, DIGITS),
+            probability(result.initial_failure_probability),
         ],
         vec![
             "entries into failure".to_string(),
-            format!("{} /s", show_number(result.upcrossing_rate, DIGITS)),
+            format!("{} /s", probability(result.upcrossing_rate)),
         ],
         vec![
             "mean time to failure".to_string(),
@@ -203,7 +205,7 @@ fn table(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResul
     rows.extend(limit_state.tabulate.iter().zip(&result.table).map(|(time, row)| {
         vec![
             show(row.t, &time.unit, DIGITS),
-            show_number(row.failure_probability, DIGITS),
+            probability(row.failure_probability),
             show_number(row.reliability_index.value(), DIGITS),
             survival(row.survival),
         ]
@@ -226,7 +228,16 @@ fn long_time(seconds: Real) -> String {
     if seconds.value().is_finite() {
         time_in_words(seconds.value(), DIGITS)
     } else {
-        "infinite".to_string()
+        "beyond 1e308 s".to_string()
+    }
+}
+
+/// A probability or a rate; one that no double can hold is not zero.
+fn probability(value: f64) -> String {
+    if value == 0.0 {
+        "below 1e-307".to_string()
+    } else {
+        show_number(value, DIGITS)
     }
 }
 

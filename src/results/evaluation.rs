@@ -9,6 +9,7 @@ use crate::check::{
     Expectation, Kind, LimitQuantity, LimitState, Model, Named, ProcessQuantity, Requirement, Subject, Tolerance,
 };
 use crate::covariance::moments::{FormMoments, Moment, MomentTable};
+use crate::covariance::source::Source;
 use crate::diagnostics::Diagnostic;
 use crate::reliability::crossings::{FailureRegion, GaussianMargin};
 use crate::reliability::first_passage::{FirstPassage, Method};
@@ -36,7 +37,11 @@ const ROUNDING: f64 = 1e-14;
 /// Computes everything. `only` names the limit states wanted; empty for all.
 pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[String]) -> Results {
     let table = MomentTable::new(&model.sources);
-    let varying: Vec<FormMoments> = model.varying.iter().map(|named| table.moments(&named.form)).collect();
+    let varying: Vec<FormMoments> = model
+        .varying
+        .iter()
+        .map(|named| table.moments_of(&named.form))
+        .collect();
     let of_kind = |kind: Kind| {
         let named = model.varying.iter().zip(&varying);
         named
@@ -110,6 +115,7 @@ fn moments_of(named: &Named, moments: &FormMoments) -> Moments {
         bandwidth: moments.bandwidth(),
         irregularity: moments.irregularity(),
         spectral_moments: spectral.and_then(|moments| moments.try_into().ok()),
+        unreached: moments.lambda.contains(&Moment::Unreached),
     }
 }
 
@@ -125,11 +131,12 @@ struct Judged<'m> {
     passage: FirstPassage,
     bandwidth: Option<f64>,
     relative_error: f64,
+    sources: &'m [Source],
 }
 
 impl<'m> Judged<'m> {
-    fn new(table: &MomentTable<'_>, limit_state: &'m LimitState) -> Self {
-        let moments = table.moments(&limit_state.margin);
+    fn new(table: &MomentTable<'m>, limit_state: &'m LimitState) -> Self {
+        let moments = table.moments_of(&limit_state.margin);
         let margin = GaussianMargin {
             mean: limit_state.margin.mean(),
             standard_deviation: moments.standard_deviation(),
@@ -141,6 +148,7 @@ impl<'m> Judged<'m> {
             passage: FirstPassage::new(&margin, limit_state.region, limit_state.method),
             bandwidth: moments.bandwidth(),
             relative_error: relative_error(&margin, limit_state.region, &moments),
+            sources: table.sources(),
         }
     }
 
@@ -265,6 +273,16 @@ impl<'m> Judged<'m> {
                 },
             },
         ];
+        for (source, _) in self.limit_state.margin.by_source() {
+            let notes = self
+                .sources
+                .get(source.0 as usize)
+                .map_or(&[][..], |source| &source.notes);
+            assumptions.extend(notes.iter().map(|note| Assumption {
+                code: "kernel",
+                text: note.clone(),
+            }));
+        }
         let reduced = self.reduced_barrier();
         if reduced < LOW_BARRIER {
             let time = self.limit_state.reference_period.seconds;
@@ -381,12 +399,20 @@ fn of_varying(quantity: ProcessQuantity, named: &Named, moments: &FormMoments) -
 }
 
 impl Results {
-    /// Whether every number reached its tolerance: no failure probability has a larger relative error, and every
-    /// spectral moment is known.
-    pub fn within_tolerance(&self, tolerance: f64) -> bool {
-        let moments = self.processes.iter().chain(&self.margins);
-        moments.into_iter().all(|one| one.spectral_moments.is_some())
-            && self.limit_states.iter().all(|one| one.relative_error <= tolerance)
+    /// What did not reach its tolerance, in words: failure probabilities with a larger relative error, and moments that
+    /// could not be computed to six digits.
+    pub fn out_of_reach(&self, tolerance: f64) -> Vec<String> {
+        let moments = self.processes.iter().chain(&self.margins).filter(|one| one.unreached);
+        let limit_states = self.limit_states.iter().filter(|one| one.relative_error > tolerance);
+        let of_moments = moments.map(|one| format!("the spectral moments of `{}`: too many digits cancel", one.name));
+        let of_limit_states = limit_states.map(|one| {
+            let error = show_number(one.relative_error, 1);
+            format!(
+                "the failure probability of `{}`: its relative error is {error}",
+                one.name
+            )
+        });
+        of_moments.chain(of_limit_states).collect()
     }
 }
 
@@ -395,7 +421,7 @@ impl Moment {
     fn relative_error(&self) -> f64 {
         match self {
             Moment::Finite { value, error } if *value != 0.0 => (error / value).abs(),
-            Moment::Finite { .. } | Moment::Infinite => 0.0,
+            Moment::Finite { .. } | Moment::Infinite | Moment::Unknown => 0.0,
             Moment::Unreached => f64::INFINITY,
         }
     }

@@ -3,6 +3,7 @@
 mod arguments;
 mod arithmetic;
 mod calls;
+mod covariance;
 mod expectation;
 mod kernel;
 mod limit_state;
@@ -16,6 +17,7 @@ use super::names::{self, ItemId, Names, Resolved, Unknown, choice, place};
 use super::parts::{InstanceId, Library};
 use super::value::{Number, Scalar, Value, Varying};
 use super::{Overrides, Settings};
+use crate::covariance::kernel::Unavailable;
 use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::Arena;
@@ -312,6 +314,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             }
             None => {}
         }
+        if !self.within_tables(&varying, name) {
+            return Value::Fault;
+        }
         let index = self.model.varying.len();
         self.model.varying.push(Named {
             name: self.names.full_name(item),
@@ -325,6 +330,30 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         });
         self.varying.insert(item, index);
         Value::Form(varying)
+    }
+
+    /// Whether the kernels say something at all lags that the form asks for.
+    fn within_tables(&mut self, varying: &Varying, name: &Word) -> bool {
+        let mut sound = true;
+        for (source, terms) in varying.form.by_source() {
+            let delays = terms.iter().map(|term| term.operator.delay);
+            let (first, last) = delays.fold((f64::INFINITY, f64::NEG_INFINITY), |(a, b), d| (a.min(d), b.max(d)));
+            let source = &self.model.sources[source.0 as usize];
+            let Err(why @ Unavailable::BeyondTable { .. }) = source.kernel.value(last - first) else {
+                continue;
+            };
+            let message = format!(
+                "`{}` needs the correlation of `{}` where its table says nothing",
+                name.text, source.name
+            );
+            let finding = Diagnostic::new(Code::ValueRange, name.span, message)
+                .here(why.to_string())
+                .label(source.place, "its correlation is tabulated")
+                .help("make the delays shorter, the table longer, or say `beyond: zero` or `beyond: hold`");
+            self.diagnostics.push(finding);
+            sound = false;
+        }
+        sound
     }
 
     fn nothing_varies(&mut self, kind: Kind, name: &Word, expression: &Expression) {

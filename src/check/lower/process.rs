@@ -1,20 +1,18 @@
 //! Sources: `gaussian(...)`, by whichever description the engineer has.
 
 use super::arguments::Arguments;
+use super::covariance::{constant_of, table_notes};
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::Kind;
 use crate::check::names::ItemId;
 use crate::check::value::{Covariance, Number, Scalar, Value};
-use crate::covariance::kernel::{Kernel, Smoothness, Unavailable};
+use crate::covariance::kernel::{Kernel, Smoothness};
 use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Expression, ExpressionKind, Word};
 use crate::source::Span;
 use crate::units::{Dimension, Unit, show};
 use std::rc::Rc;
-
-/// A correlation function must be 1 at lag 0 to within this: weights such as `0.3` and `0.7` add up no better.
-const ONE: f64 = 1e-9;
 
 /// The agreement asked of a raw autocorrelation's constant part with the square of the mean.
 const MEAN_SQUARE: f64 = 1e-6;
@@ -43,6 +41,8 @@ struct Description {
     kernel: Kernel,
     dimension: Dimension,
     unit: Option<Rc<Unit>>,
+    /// What was taken for granted, for the reader of results.
+    notes: Vec<String>,
 }
 
 impl Lowering<'_, '_, '_> {
@@ -85,7 +85,9 @@ impl Lowering<'_, '_, '_> {
     }
 
     fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
-        let source = Source::new(self.names.full_name(item), description.kernel, name.span);
+        let mut notes = description.notes;
+        notes.extend(table_notes(&description.kernel, &self.names.full_name(item)));
+        let source = Source::new(self.names.full_name(item), description.kernel, name.span, notes);
         if let Smoothness::Unclear { reason } = source.smoothness() {
             let message = format!("it cannot be told how smooth the process `{}` is", name.text);
             let finding = Diagnostic::new(Code::KernelUnclear, name.span, message)
@@ -196,6 +198,7 @@ impl Lowering<'_, '_, '_> {
             kernel: kernel.scaled(value * value).ok()?,
             dimension: deviation.dimension,
             unit: mean.unit.clone().or(deviation.unit),
+            notes: Vec::new(),
         })
     }
 
@@ -276,62 +279,6 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    /// A kernel of a dimension.
-    fn kernel(&mut self, expression: &Expression, scope: Scope<'_>, wanted: Dimension, what: &str) -> Option<Kernel> {
-        let covariance = self.covariance(expression, scope, what)?;
-        if covariance.dimension != wanted {
-            let found = Scalar::new(Number::Unset, covariance.dimension);
-            self.mismatch(expression.span, &found, wanted, what, None);
-            return None;
-        }
-        Some(covariance.kernel)
-    }
-
-    fn covariance(&mut self, expression: &Expression, scope: Scope<'_>, what: &str) -> Option<Covariance> {
-        match self.value(expression, scope.in_kernel()) {
-            Value::Kernel(covariance) => Some(covariance),
-            Value::Fault => None,
-            Value::Scalar(Scalar {
-                value: Number::Unset, ..
-            }) => None,
-            other => {
-                let help = format!("{what} is made of kernels, such as `exponential(length: 10 s)`");
-                self.wrong_kind(expression.span, other.kind(), "a kernel", &help);
-                None
-            }
-        }
-    }
-
-    /// The value at lag 0; its absence is reported.
-    fn at_zero(&mut self, kernel: &Kernel, place: Span) -> Option<f64> {
-        match kernel.value(0.0) {
-            Ok(value) => Some(value),
-            Err(why) => {
-                let message = "this kernel has no value at lag 0";
-                self.report(Diagnostic::new(Code::KernelUnclear, place, message).here(why.to_string()));
-                None
-            }
-        }
-    }
-
-    fn one_at_zero(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
-        let at_zero = self.at_zero(kernel, place)?;
-        if (at_zero - 1.0).abs() <= ONE {
-            return Some(());
-        }
-        let shown = crate::units::show_number(at_zero, 6);
-        self.report(
-            Diagnostic::new(
-                Code::KernelNotOne,
-                place,
-                format!("this correlation function is {shown} at lag 0, where it must be 1"),
-            )
-            .here(format!("{shown} at lag 0"))
-            .help("scale it so that its weights add up to 1, or give it as `autocovariance` with its unit"),
-        );
-        None
-    }
-
     fn from_autocovariance(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
         let mean = self.mean(arguments, subject);
         let expression = arguments.get("autocovariance")?;
@@ -344,6 +291,7 @@ impl Lowering<'_, '_, '_> {
             kernel: covariance.kernel,
             dimension,
             unit: mean.unit,
+            notes: Vec::new(),
         })
     }
 
@@ -373,27 +321,6 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    /// The constant part of a kernel, and the words that say where it was found.
-    fn constant_of(&self, kernel: &Kernel) -> Result<(f64, String), Unavailable> {
-        if let Some(constant) = kernel.constant_part()? {
-            return Ok((constant, "its constant part is".to_string()));
-        }
-        let (lag, value) = kernel.at_long_lag()?;
-        let lag = crate::units::show_number(lag, 3);
-        Ok((value, format!("its value at the very long lag of {lag} s is")))
-    }
-
-    fn positive_variance(&mut self, kernel: &Kernel, place: Span, what: &str) -> Option<()> {
-        let variance = self.at_zero(kernel, place)?;
-        if variance > 0.0 && variance.is_finite() {
-            return Some(());
-        }
-        let message = format!("the variance, which is the {what} at lag 0, must be greater than 0");
-        let shown = crate::units::show_number(variance, 6);
-        self.report(Diagnostic::new(Code::ValueRange, place, message).here(format!("this is {shown} at lag 0")));
-        None
-    }
-
     /// The raw second moment: the square of the mean is taken off, after it has been looked for.
     fn from_autocorrelation(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
         let mean = self.mean(arguments, subject);
@@ -418,7 +345,7 @@ impl Lowering<'_, '_, '_> {
             );
             return None;
         }
-        let (constant, found_how) = match self.constant_of(&raw.kernel) {
+        let (constant, found_how, notes) = match constant_of(&raw.kernel, subject.name) {
             Ok(found) => found,
             Err(why) => {
                 let message = "the constant part of this autocorrelation cannot be told";
@@ -449,58 +376,9 @@ impl Lowering<'_, '_, '_> {
             kernel,
             dimension,
             unit: mean.unit,
+            notes,
         })
     }
-
-    /// What a handful of lags can already show: a kernel is never larger than at lag 0, and bends down there. Kernels of
-    /// the language pass by construction; this is for those written out or tabulated.
-    fn sample_for_validity(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
-        if kernel.is_valid_by_construction() {
-            return Some(());
-        }
-        let at_zero = self.at_zero(kernel, place)?;
-        for lag in probing_lags(kernel) {
-            let value = match kernel.value(lag) {
-                Ok(value) => value,
-                Err(Unavailable::NoValue { .. }) => f64::NAN,
-                Err(_) => continue,
-            };
-            if value.abs() <= at_zero * (1.0 + 1e-9) {
-                continue;
-            }
-            let lag = crate::units::show_number(lag, 4);
-            let (message, here) = if value.is_finite() {
-                let ratio = crate::units::show_number(value / at_zero, 6);
-                (
-                    format!("no process has this kernel: at a lag of {lag} s it is larger than at lag 0"),
-                    format!("{ratio} times its value at lag 0"),
-                )
-            } else {
-                (
-                    format!("this kernel has no value at a lag of {lag} s"),
-                    "undefined or infinite there".to_string(),
-                )
-            };
-            self.report(
-                Diagnostic::new(Code::KernelInvalid, place, message)
-                    .here(here)
-                    .help("a correlation lies between -1 and 1 at every lag; check the signs and the brackets"),
-            );
-            return None;
-        }
-        Some(())
-    }
-}
-
-/// Lags that show the shape of a kernel, from well below its shortest to well beyond its longest time.
-fn probing_lags(kernel: &Kernel) -> impl Iterator<Item = f64> {
-    const STEPS: i32 = 256;
-    let (shortest, longest) = kernel.times().unwrap_or((1.0, 1.0));
-    let (from, to) = (0.125 * shortest, 16.0 * longest);
-    let ratio = (to / from).powf(1.0 / f64::from(STEPS));
-    (0..=STEPS)
-        .map(move |step| from * ratio.powi(step))
-        .filter(|lag| lag.is_finite())
 }
 
 fn known(scalar: &Scalar) -> Option<f64> {
