@@ -6,6 +6,7 @@
 mod budget;
 mod places;
 mod print;
+mod reference;
 
 use outcross::diagnostics::{Diagnostic, terminal};
 use outcross::language::{self, tree::Tree};
