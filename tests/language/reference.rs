@@ -261,3 +261,16 @@ fn the_readme_shows_an_example_and_what_the_program_prints_for_it() {
     text::write(&mut out, model, &results).expect("a vector takes all");
     assert_eq!(printed.text, String::from_utf8_lossy(&out));
 }
+
+#[test]
+fn the_readme_shows_what_the_program_says_of_a_mistake() {
+    let blocks = blocks(README);
+    let model = blocks.iter().find(|block| block.is_complete()).expect("the readme shows a model");
+    let shown = blocks.iter().find(|block| block.is("console")).expect("the readme shows a mistake");
+    let sound = "squared_exponential(length: 0.4 s)";
+    let mistaken = model.text.replace(sound, "oscillator(frequency: 1.4 1/s, damping: 1 %)");
+    let checked = Checked::new(&blocks, model.name().expect("it is a file"), &mistaken, true);
+    let findings = checked.findings();
+    let said: Vec<&str> = findings.trim_end().lines().map(str::trim_end).collect();
+    assert_eq!(shown.text.lines().collect::<Vec<_>>(), said);
+}
