@@ -3,7 +3,7 @@
 //! `faulty/` holds a file for each mistake, `several/` files with more than one; the snapshots show what the user reads.
 //! `shared/` holds the parts and tables they name.
 
-mod memory;
+pub mod memory;
 mod mutation;
 mod pages;
 mod random;

@@ -5,17 +5,17 @@
 //! declarations of `limit prelude`, `limit refused` one that this version does not compute, `limit faulty CODE` one with
 //! a fault. A name, `gusts.limit` or `gusts.csv`, makes the block a file that the others can use.
 
-use outcross::check::{self, Model, Settings};
-use outcross::diagnostics::{Code, Diagnostic, terminal};
+use crate::diagnostics::memory::{Memory, Run};
+use outcross::diagnostics::{Code, Diagnostic};
 use outcross::expression::Function;
 use outcross::language;
 use outcross::language::tree::{Declaration, DeclarationKind, Tree};
 use outcross::report::text;
 use outcross::results::{self, Results};
-use outcross::source::{Files, Reader, Unreadable};
+use outcross::source::Files;
 use outcross::units;
-use std::collections::{BTreeSet, HashMap};
-use std::path::{Path, PathBuf};
+use std::collections::BTreeSet;
+use std::path::Path;
 
 const REFERENCE: &str = include_str!("../../grammar/reference.md");
 const README: &str = include_str!("../../README.md");
@@ -69,64 +69,24 @@ fn blocks(page: &'static str) -> Vec<Block> {
     found
 }
 
-/// The named blocks of a page, in place of a disk.
-struct Shelf(HashMap<PathBuf, String>);
-
-impl Shelf {
-    fn of(blocks: &[Block]) -> Self {
-        let named = blocks.iter().filter_map(|block| Some((PathBuf::from(block.name()?), block.text.clone())));
-        Self(named.collect())
-    }
-}
-
-impl Reader for Shelf {
-    fn read(&self, path: &Path) -> Result<String, Unreadable> {
-        self.0.get(path).cloned().ok_or(Unreadable::Missing)
-    }
-
-    fn identity(&self, path: &Path) -> PathBuf {
-        path.to_path_buf()
-    }
-}
-
-/// A checked text.
-struct Checked {
-    files: Files,
-    model: Option<Model>,
-    diagnostics: Vec<Diagnostic>,
-}
-
-impl Checked {
-    fn new(blocks: &[Block], name: &str, text: &str, require_parameters: bool) -> Self {
-        let mut shelf = Shelf::of(blocks);
-        shelf.0.insert(PathBuf::from(name), text.to_string());
-        let mut files = Files::new();
-        let settings = Settings {
-            require_parameters,
-            ..Settings::default()
-        };
-        let (model, diagnostics) = check::check(&mut files, &shelf, Path::new(name), &settings);
-        Self {
-            files,
-            model,
-            diagnostics,
+/// Checks a text among the named blocks of its page.
+fn checked(blocks: &[Block], name: &str, text: &str, require_parameters: bool) -> Run {
+    let mut memory = Memory::default();
+    for block in blocks {
+        if let Some(name) = block.name() {
+            memory.insert(name, &*block.text);
         }
     }
+    memory.with(name, text).run(name, require_parameters)
+}
 
-    fn findings(&self) -> String {
-        let mut out = Vec::new();
-        terminal::write(&mut out, &self.files, &self.diagnostics, false).expect("a vector takes all");
-        String::from_utf8_lossy(&out).into_owned()
-    }
+fn codes(run: &Run) -> BTreeSet<&'static str> {
+    run.codes().into_iter().collect()
+}
 
-    fn codes(&self) -> BTreeSet<&'static str> {
-        self.diagnostics.iter().map(|one| one.code.name()).collect()
-    }
-
-    fn results(&self) -> Option<Results> {
-        let model = self.model.as_ref()?;
-        Some(results::evaluate(&self.files, model, &self.diagnostics, &[]))
-    }
+fn computed(run: &Run) -> Option<Results> {
+    let model = run.model.as_ref()?;
+    Some(results::evaluate(&run.files, model, &run.diagnostics, &[]))
 }
 
 fn parsed(files: &mut Files, text: &str) -> Tree {
@@ -151,7 +111,10 @@ fn completed(blocks: &[Block], fragment: &str) -> String {
     let mut files = Files::new();
     let own = parsed(&mut files, fragment);
     let own: Vec<&str> = own.declarations.iter().filter_map(declared).collect();
-    let prelude = blocks.iter().find(|block| block.is("prelude")).expect("the page has a prelude");
+    let prelude = blocks
+        .iter()
+        .find(|block| block.is("prelude"))
+        .expect("the page has a prelude");
     let mut whole = fragment.to_string();
     for declaration in &parsed(&mut files, &prelude.text).declarations {
         if !declared(declaration).is_some_and(|name| own.contains(&name)) {
@@ -164,12 +127,18 @@ fn completed(blocks: &[Block], fragment: &str) -> String {
 
 /// Sound, without a warning; and where everything is there to be computed, all that is required and expected holds.
 fn sound(blocks: &[Block], line: usize, name: &str, text: &str) {
-    let checked = Checked::new(blocks, name, text, false);
-    assert!(checked.diagnostics.is_empty(), "the block of line {line}:\n{}", checked.findings());
-    let complete = Checked::new(blocks, name, text, true);
-    if let Some(results) = complete.results() {
-        assert!(results.all_hold(), "the block of line {line} does not hold: {results:#?}");
-        assert!(results.within_tolerance(1e-3), "the block of line {line} is not reached: {results:#?}");
+    let run = checked(blocks, name, text, false);
+    assert!(run.diagnostics.is_empty(), "the block of line {line}:\n{}", run.shown());
+    let complete = checked(blocks, name, text, true);
+    if let Some(results) = computed(&complete) {
+        assert!(
+            results.all_hold(),
+            "the block of line {line} does not hold: {results:#?}"
+        );
+        assert!(
+            results.within_tolerance(1e-3),
+            "the block of line {line} is not reached: {results:#?}"
+        );
     }
 }
 
@@ -191,13 +160,20 @@ fn complete_files_and_fragments_are_sound_and_hold() {
 fn what_is_refused_for_now_says_so_and_nothing_else() {
     let blocks = blocks(REFERENCE);
     for block in blocks.iter().filter(|block| block.is("refused")) {
-        let checked = Checked::new(&blocks, UNNAMED, &completed(&blocks, &block.text), false);
-        let (line, findings) = (block.line, checked.findings());
-        assert_eq!(checked.codes(), BTreeSet::from(["language/not-yet"]), "the block of line {line}:\n{findings}");
+        let run = checked(&blocks, UNNAMED, &completed(&blocks, &block.text), false);
+        let (line, findings) = (block.line, run.shown());
+        assert_eq!(
+            codes(&run),
+            BTreeSet::from(["language/not-yet"]),
+            "the block of line {line}:\n{findings}"
+        );
         for declaration in &parsed(&mut Files::new(), &block.text).declarations {
             let inside = |one: &Diagnostic| declaration.span.range().contains(&(one.place.start as usize));
-            let found = checked.diagnostics.iter().any(inside);
-            assert!(found, "a declaration of the block of line {line} is not refused:\n{findings}");
+            let found = run.diagnostics.iter().any(inside);
+            assert!(
+                found,
+                "a declaration of the block of line {line} is not refused:\n{findings}"
+            );
         }
     }
 }
@@ -207,9 +183,19 @@ fn what_is_shown_as_faulty_has_that_fault_alone() {
     let blocks = blocks(REFERENCE);
     for block in blocks.iter().filter(|block| block.is("faulty")) {
         let code = *block.tags.last().expect("it is tagged");
-        assert!(Code::find(code).is_some(), "line {}: there is no code {code}", block.line);
-        let checked = Checked::new(&blocks, UNNAMED, &completed(&blocks, &block.text), false);
-        assert_eq!(checked.codes(), BTreeSet::from([code]), "the block of line {}:\n{}", block.line, checked.findings());
+        assert!(
+            Code::find(code).is_some(),
+            "line {}: there is no code {code}",
+            block.line
+        );
+        let run = checked(&blocks, UNNAMED, &completed(&blocks, &block.text), false);
+        assert_eq!(
+            codes(&run),
+            BTreeSet::from([code]),
+            "the block of line {}:\n{}",
+            block.line,
+            run.shown()
+        );
     }
 }
 
@@ -217,8 +203,15 @@ fn what_is_shown_as_faulty_has_that_fault_alone() {
 fn every_block_of_the_language_is_run() {
     for page in [REFERENCE, README] {
         for block in blocks(page).iter().filter(|block| block.is("limit")) {
-            let known = ["fragment", "prelude", "refused", "faulty"].iter().any(|tag| block.is(tag));
-            assert!(known || block.is_complete(), "line {}: nobody runs a block {:?}", block.line, block.tags);
+            let known = ["fragment", "prelude", "refused", "faulty"]
+                .iter()
+                .any(|tag| block.is(tag));
+            assert!(
+                known || block.is_complete(),
+                "line {}: nobody runs a block {:?}",
+                block.line,
+                block.tags
+            );
         }
     }
 }
@@ -233,15 +226,24 @@ fn the_tables_of_the_reference_are_complete() {
     assert_eq!(missing_units.map(|entry| entry.symbol).collect::<Vec<_>>(), [""; 0]);
     let missing_words = language::RESERVED.iter().filter(|word| !has(&format!("`{word}`")));
     assert_eq!(missing_words.collect::<Vec<_>>(), [&""; 0]);
-    let missing_functions = Function::ALL.iter().map(|function| function.name()).filter(|name| !has(&format!("`{name}(")));
+    let missing_functions = Function::ALL
+        .iter()
+        .map(|function| function.name())
+        .filter(|name| !has(&format!("`{name}(")));
     assert_eq!(missing_functions.collect::<Vec<_>>(), [""; 0]);
 }
 
 #[test]
 fn every_code_that_the_reference_names_exists() {
-    let families: BTreeSet<&str> = Code::ALL.iter().filter_map(|code| code.name().split('/').next()).collect();
+    let families: BTreeSet<&str> = Code::ALL
+        .iter()
+        .filter_map(|code| code.name().split('/').next())
+        .collect();
     for word in REFERENCE.split('`').skip(1).step_by(2) {
-        if word.split_once('/').is_some_and(|(family, _)| families.contains(family)) {
+        if word
+            .split_once('/')
+            .is_some_and(|(family, _)| families.contains(family))
+        {
             assert!(Code::find(word).is_some(), "there is no code {word}");
         }
     }
@@ -250,13 +252,23 @@ fn every_code_that_the_reference_names_exists() {
 #[test]
 fn the_readme_shows_an_example_and_what_the_program_prints_for_it() {
     let blocks = blocks(README);
-    let model = blocks.iter().find(|block| block.is_complete()).expect("the readme shows a model");
+    let model = blocks
+        .iter()
+        .find(|block| block.is_complete())
+        .expect("the readme shows a model");
     let name = model.name().expect("it is a file of the project");
-    let on_disk = std::fs::read_to_string(Path::new(env!("CARGO_MANIFEST_DIR")).join(name)).expect("the example exists");
+    let on_disk =
+        std::fs::read_to_string(Path::new(env!("CARGO_MANIFEST_DIR")).join(name)).expect("the example exists");
     assert_eq!(model.text, on_disk, "the readme shows another text than {name}");
-    let printed = blocks.iter().find(|block| block.is("text")).expect("the readme shows what is printed");
-    let checked = Checked::new(&blocks, name, &model.text, true);
-    let (model, results) = (checked.model.as_ref().expect("it is sound"), checked.results().expect("it is sound"));
+    let printed = blocks
+        .iter()
+        .find(|block| block.is("text"))
+        .expect("the readme shows what is printed");
+    let run = checked(&blocks, name, &model.text, true);
+    let (model, results) = (
+        run.model.as_ref().expect("it is sound"),
+        computed(&run).expect("it is sound"),
+    );
     let mut out = Vec::new();
     text::write(&mut out, model, &results).expect("a vector takes all");
     assert_eq!(printed.text, String::from_utf8_lossy(&out));
@@ -265,12 +277,18 @@ fn the_readme_shows_an_example_and_what_the_program_prints_for_it() {
 #[test]
 fn the_readme_shows_what_the_program_says_of_a_mistake() {
     let blocks = blocks(README);
-    let model = blocks.iter().find(|block| block.is_complete()).expect("the readme shows a model");
-    let shown = blocks.iter().find(|block| block.is("console")).expect("the readme shows a mistake");
+    let model = blocks
+        .iter()
+        .find(|block| block.is_complete())
+        .expect("the readme shows a model");
+    let shown = blocks
+        .iter()
+        .find(|block| block.is("console"))
+        .expect("the readme shows a mistake");
     let sound = "squared_exponential(length: 0.4 s)";
-    let mistaken = model.text.replace(sound, "oscillator(frequency: 1.4 1/s, damping: 1 %)");
-    let checked = Checked::new(&blocks, model.name().expect("it is a file"), &mistaken, true);
-    let findings = checked.findings();
-    let said: Vec<&str> = findings.trim_end().lines().map(str::trim_end).collect();
-    assert_eq!(shown.text.lines().collect::<Vec<_>>(), said);
+    let mistaken = model
+        .text
+        .replace(sound, "oscillator(frequency: 1.4 1/s, damping: 1 %)");
+    let run = checked(&blocks, model.name().expect("it is a file"), &mistaken, true);
+    assert_eq!(shown.text.trim_end(), run.shown().trim_end());
 }
