@@ -76,9 +76,11 @@ pub struct Moments {
     /// The coherent SI unit.
     pub unit: String,
     /// The mean.
-    pub mean: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub mean: Option<Real>,
     /// The standard deviation.
-    pub standard_deviation: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub standard_deviation: Option<Real>,
     /// The standard deviation of the derivative.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub derivative_standard_deviation: Option<Real>,
@@ -87,10 +89,10 @@ pub struct Moments {
     pub zero_upcrossing_rate: Option<Real>,
     /// `sqrt(1 - lambda_1^2 / (lambda_0 lambda_2))`
     #[serde(skip_serializing_if = "Option::is_none")]
-    pub bandwidth: Option<f64>,
+    pub bandwidth: Option<Real>,
     /// `lambda_2 / sqrt(lambda_0 lambda_4)`; left out where `lambda_4` is infinite.
     #[serde(skip_serializing_if = "Option::is_none")]
-    pub irregularity: Option<f64>,
+    pub irregularity: Option<Real>,
     /// `lambda_0`, `lambda_1`, `lambda_2`, `lambda_4` of the one-sided density over omega in rad/s. Left out where one
     /// of them is not known.
     #[serde(skip_serializing_if = "Option::is_none")]
@@ -112,19 +114,26 @@ pub struct LimitStateResult {
     /// The method, as the language names it.
     pub first_passage: &'static str,
     /// The mean rate of entries into failure, in 1/s.
-    pub upcrossing_rate: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub upcrossing_rate: Option<Real>,
     /// The probability of being failed at the start.
-    pub initial_failure_probability: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub initial_failure_probability: Option<Real>,
     /// The probability of surviving the reference period.
-    pub survival: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub survival: Option<Real>,
     /// The probability of failing within it.
-    pub failure_probability: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub failure_probability: Option<Real>,
     /// The reliability index over it.
-    pub reliability_index: Real,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reliability_index: Option<Real>,
     /// The mean time to failure in s.
-    pub mean_time_to_failure: Real,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub mean_time_to_failure: Option<Real>,
     /// An estimate of the relative error of the failure probability, from rounding in the moments.
-    pub relative_error: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub relative_error: Option<Real>,
     /// Survival at the times asked for.
     pub table: Vec<TableRow>,
     /// What is demanded.
@@ -139,13 +148,17 @@ pub struct TableRow {
     /// The time in s.
     pub t: f64,
     /// The probability of surviving it.
-    pub survival: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub survival: Option<Real>,
     /// The probability of failing within it.
-    pub failure_probability: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub failure_probability: Option<Real>,
     /// The reliability index over it.
-    pub reliability_index: Real,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reliability_index: Option<Real>,
     /// The mean rate of entries into failure at that time, in 1/s.
-    pub upcrossing_rate: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub upcrossing_rate: Option<Real>,
 }
 
 /// A demand and its verdict.
@@ -153,8 +166,9 @@ pub struct TableRow {
 pub struct RequirementResult {
     /// The demand as written.
     pub text: String,
-    /// What was found.
-    pub value: Real,
+    /// What was found; left out where it does not exist.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub value: Option<Real>,
     /// What is demanded.
     pub limit: f64,
     /// The time it is about, in s.
@@ -172,10 +186,10 @@ pub struct RequirementResult {
 /// A judged value in the units of the text.
 #[derive(Clone, Debug, Default, PartialEq)]
 pub struct Shown {
+    /// What was demanded, with its time where that matters.
+    pub demand: String,
     /// What was found.
     pub value: String,
-    /// The time it is about.
-    pub over: String,
 }
 
 /// Something the results rest on.

@@ -56,6 +56,12 @@ pub fn check(
         diagnostics.extend(found);
         model = Some(lowered);
     }
+    if let Some(model) = &model
+        && settings.require_parameters
+        && !any_error(&diagnostics)
+    {
+        diagnostics.extend(model.unexplained());
+    }
     sort(&mut diagnostics);
     if any_error(&diagnostics) {
         model = None;

@@ -4,6 +4,7 @@
 use super::names::ItemId;
 use crate::covariance::form::LinearForm;
 use crate::covariance::source::Source;
+use crate::diagnostics::{Code, Diagnostic};
 use crate::reliability::crossings::FailureRegion;
 use crate::reliability::first_passage::Method;
 use crate::reliability::verdict::Demand;
@@ -27,6 +28,8 @@ pub struct Model {
     pub limit_states: Vec<LimitState>,
     /// What the author expects.
     pub expectations: Vec<Expectation>,
+    /// Places of declarations that came to nothing, whatever the reason.
+    pub(super) lost: Vec<Span>,
 }
 
 /// A parameter with the value it has in this run.
@@ -199,7 +202,18 @@ impl Model {
             varying: Vec::new(),
             limit_states: Vec::new(),
             expectations: Vec::new(),
+            lost: Vec::new(),
         }
+    }
+
+    /// Declarations that came to nothing although nothing was found wrong: a model must not shrink in silence.
+    pub(super) fn unexplained(&self) -> Option<Diagnostic> {
+        let first = self.lost.first()?;
+        let message = "nothing came of this declaration, and the program does not know why";
+        Some(
+            Diagnostic::new(Code::ModelUnexplained, *first, message)
+                .help("this is a fault of the program: please report it"),
+        )
     }
 }
 

@@ -91,6 +91,7 @@ catalogue! {
     LimitCondition Error "limit/condition" "a condition of failure that cannot be judged"
     QuantityUnknown Error "quantity/unknown" "a quantity that does not exist or does not belong to the thing it is asked of"
     ModelTooLarge Error "model/too-large" "a model larger than the program computes"
+    ModelUnexplained Error "model/unexplained" "a declaration from which nothing came, for no reason the program knows"
     TableContent Error "table/content" "a data file whose content cannot be used"
 }
 

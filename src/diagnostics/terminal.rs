@@ -87,7 +87,7 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
     };
     let main = Label::new(place(files, diagnostic.place))
         .with_color(tint)
-        .with_order(-1)
+        .with_order(order(diagnostic.place, diagnostic.place))
         .with_message(harmless(here));
     let mut builder = Report::build(kind, place(files, diagnostic.place))
         .with_config(config)
@@ -98,6 +98,7 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
         builder = builder.with_label(
             Label::new(place(files, label.place))
                 .with_color(Color::Blue)
+                .with_order(order(label.place, diagnostic.place))
                 .with_message(harmless(&label.text)),
         );
     }
@@ -105,6 +106,18 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
         builder = builder.with_help(harmless(help));
     }
     builder.finish()
+}
+
+/// Labels are drawn from the top of the text down, those in other files after those beside the main one.
+fn order(span: Span, main: Span) -> i32 {
+    let file = i32::try_from(span.file.0).unwrap_or(i32::MAX).min(i32::MAX - 1);
+    let start = i32::try_from(span.start).unwrap_or(i32::MAX);
+    // The main file's labels are at or below 0, so that every other file comes after them.
+    if span.file == main.file {
+        start.saturating_sub(i32::MAX)
+    } else {
+        file + 1
+    }
 }
 
 /// The span with both ends on character boundaries inside the file: ariadne panics inside a character.

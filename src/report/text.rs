@@ -110,14 +110,14 @@ fn moments_row(named: &Named, result: &Moments) -> Vec<String> {
         _ => show_number(value.value(), DIGITS),
     });
     let bandwidth = match result.bandwidth {
-        Some(bandwidth) => show_number(bandwidth, 3),
+        Some(bandwidth) => show_number(bandwidth.value(), 3),
         None if result.unreached => "not reached".to_string(),
         None => String::new(),
     };
     vec![
         result.name.clone(),
-        show(result.mean, unit, DIGITS),
-        show(result.standard_deviation, unit, DIGITS),
+        known(result.mean, |mean| show(mean, unit, DIGITS)),
+        known(result.standard_deviation, |deviation| show(deviation, unit, DIGITS)),
         derivative.unwrap_or_default(),
         result.zero_upcrossing_rate.map(per_second).unwrap_or_default(),
         bandwidth,
@@ -150,7 +150,7 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
         ],
         vec![
             format!("reliability index over {period}"),
-            show_number(result.reliability_index.value(), DIGITS),
+            number(result.reliability_index),
         ],
         vec![format!("survival over {period}"), survival(result.survival)],
         vec![
@@ -159,16 +159,16 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
         ],
         vec![
             "entries into failure".to_string(),
-            format!("{} /s", probability(result.upcrossing_rate)),
+            known(result.upcrossing_rate, |rate| format!("{} /s", small(rate))),
         ],
         vec![
             "mean time to failure".to_string(),
-            long_time(result.mean_time_to_failure),
+            known(result.mean_time_to_failure, long_time),
         ],
         vec!["first passage by".to_string(), result.first_passage.to_string()],
         vec![
             "numerical error, relative".to_string(),
-            show_number(result.relative_error, 1),
+            known(result.relative_error, |error| show_number(error, 1)),
         ],
     ];
     columns(out, 2, &[Side::Left, Side::Left], &rows)?;
@@ -181,7 +181,7 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
             .map(|requirement| {
                 vec![
                     requirement.verdict.to_string(),
-                    format!("{} over {}", requirement.text, requirement.shown.over),
+                    requirement.shown.demand.clone(),
                     format!("found {}", requirement.shown.value),
                     requirement.basis.clone().unwrap_or_default(),
                 ]
@@ -206,15 +206,35 @@ fn table(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResul
         vec![
             show(row.t, &time.unit, DIGITS),
             probability(row.failure_probability),
-            show_number(row.reliability_index.value(), DIGITS),
+            number(row.reliability_index),
             survival(row.survival),
         ]
     }));
     columns(out, 4, &[Side::Right, Side::Right, Side::Right, Side::Right], &rows)
 }
 
-/// Survival with as many digits as it needs to differ from 1, up to what a double holds.
-fn survival(value: f64) -> String {
+/// A number that may not exist.
+fn known(value: Option<Real>, show: impl Fn(f64) -> String) -> String {
+    value.map_or_else(|| "not known".to_string(), |value| show(value.value()))
+}
+
+fn number(value: Option<Real>) -> String {
+    known(value, |value| show_number(value, DIGITS))
+}
+
+fn probability(value: Option<Real>) -> String {
+    known(value, small)
+}
+
+fn survival(value: Option<Real>) -> String {
+    known(value, next_to_one)
+}
+
+/// With as many digits as it needs to differ from 1, up to what a double holds.
+fn next_to_one(value: f64) -> String {
+    if value < 0.1 {
+        return small(value);
+    }
     let lost = 1.0 - value;
     let digits = if lost > 0.0 && lost < 0.1 {
         (3.0 - lost.log10().floor()) as usize
@@ -224,16 +244,16 @@ fn survival(value: f64) -> String {
     show_number(value, digits.clamp(DIGITS, 16))
 }
 
-fn long_time(seconds: Real) -> String {
-    if seconds.value().is_finite() {
-        time_in_words(seconds.value(), DIGITS)
+fn long_time(seconds: f64) -> String {
+    if seconds.is_finite() {
+        time_in_words(seconds, DIGITS)
     } else {
         "beyond 1e308 s".to_string()
     }
 }
 
 /// A probability or a rate; one that no double can hold is not zero.
-fn probability(value: f64) -> String {
+fn small(value: f64) -> String {
     if value == 0.0 {
         "below 1e-307".to_string()
     } else {

@@ -108,12 +108,12 @@ fn moments_of(named: &Named, moments: &FormMoments) -> Moments {
     Moments {
         name: named.name.clone(),
         unit: named.dimension.si_name(),
-        mean: named.form.mean(),
-        standard_deviation: moments.standard_deviation(),
+        mean: Real::new(named.form.mean()),
+        standard_deviation: Real::new(moments.standard_deviation()),
         derivative_standard_deviation: moments.derivative_standard_deviation().and_then(Real::new),
         zero_upcrossing_rate: zero_upcrossing_rate(moments).and_then(Real::new),
-        bandwidth: moments.bandwidth(),
-        irregularity: moments.irregularity(),
+        bandwidth: moments.bandwidth().and_then(Real::new),
+        irregularity: moments.irregularity().and_then(Real::new),
         spectral_moments: spectral.and_then(|moments| moments.try_into().ok()),
         unreached: moments.lambda.contains(&Moment::Unreached),
     }
@@ -165,13 +165,13 @@ impl<'m> Judged<'m> {
             failure_when: limit_state.failure_when.clone(),
             reference_period: period,
             first_passage: limit_state.method.name(),
-            upcrossing_rate: self.passage.ln_rate.exp(),
-            initial_failure_probability: self.passage.initial.failure(),
-            survival: over.survival(),
-            failure_probability: over.failure(),
+            upcrossing_rate: Real::new(self.passage.ln_rate.exp()),
+            initial_failure_probability: Real::new(self.passage.initial.failure()),
+            survival: Real::new(over.survival()),
+            failure_probability: Real::new(over.failure()),
             reliability_index: index(over),
-            mean_time_to_failure: real(self.passage.ln_mean_time_to_failure().exp()),
-            relative_error: self.relative_error,
+            mean_time_to_failure: Real::new(self.passage.ln_mean_time_to_failure().exp()),
+            relative_error: Real::new(self.relative_error),
             table: limit_state.tabulate.iter().map(|time| self.row(time.seconds)).collect(),
             requirements: limit_state
                 .requirements
@@ -186,10 +186,10 @@ impl<'m> Judged<'m> {
         let over = self.passage.within(time);
         TableRow {
             t: time,
-            survival: over.survival(),
-            failure_probability: over.failure(),
+            survival: Real::new(over.survival()),
+            failure_probability: Real::new(over.failure()),
             reliability_index: index(over),
-            upcrossing_rate: self.passage.ln_rate.exp(),
+            upcrossing_rate: Real::new(self.passage.ln_rate.exp()),
         }
     }
 
@@ -229,13 +229,21 @@ impl<'m> Judged<'m> {
         };
         RequirementResult {
             text: requirement.text.clone(),
-            value: real(value),
+            value: Real::new(value),
             limit: requirement.demand.limit(),
             over: time,
             verdict: verdict.words(),
             shown: Shown {
+                demand: if by_formula {
+                    format!(
+                        "{} over {}",
+                        requirement.text,
+                        show(time, &requirement.over.unit, DIGITS)
+                    )
+                } else {
+                    requirement.text.clone()
+                },
                 value: show(value, &requirement.unit, DIGITS),
-                over: show(time, &requirement.over.unit, DIGITS),
             },
             basis: requirement.basis.clone(),
         }
@@ -339,13 +347,8 @@ fn of_probability(quantity: LimitQuantity, probability: Probability) -> f64 {
     }
 }
 
-fn index(probability: Probability) -> Real {
-    real(probability.reliability_index())
-}
-
-/// The number, which the checks before have made one.
-fn real(value: f64) -> Real {
-    Real::new(value).unwrap_or(Real::INFINITE)
+fn index(probability: Probability) -> Option<Real> {
+    Real::new(probability.reliability_index())
 }
 
 fn expected(
@@ -403,14 +406,18 @@ impl Results {
     /// could not be computed to six digits.
     pub fn out_of_reach(&self, tolerance: f64) -> Vec<String> {
         let moments = self.processes.iter().chain(&self.margins).filter(|one| one.unreached);
-        let limit_states = self.limit_states.iter().filter(|one| one.relative_error > tolerance);
+        let inexact = |one: &&LimitStateResult| one.relative_error.is_none_or(|error| error.value() > tolerance);
+        let limit_states = self.limit_states.iter().filter(inexact);
         let of_moments = moments.map(|one| format!("the spectral moments of `{}`: too many digits cancel", one.name));
-        let of_limit_states = limit_states.map(|one| {
-            let error = show_number(one.relative_error, 1);
-            format!(
-                "the failure probability of `{}`: its relative error is {error}",
-                one.name
-            )
+        let of_limit_states = limit_states.map(|one| match one.relative_error {
+            Some(error) => {
+                let error = show_number(error.value(), 1);
+                format!(
+                    "the failure probability of `{}`: its relative error is {error}",
+                    one.name
+                )
+            }
+            None => format!("the limit state `{}`: its moments leave the range of numbers", one.name),
         });
         of_moments.chain(of_limit_states).collect()
     }

@@ -7,9 +7,6 @@ use serde::{Serialize, Serializer};
 pub struct Real(f64);
 
 impl Real {
-    /// Beyond all bounds.
-    pub const INFINITE: Self = Self(f64::INFINITY);
-
     /// The number; `None` of what is no number.
     pub fn new(value: f64) -> Option<Self> {
         (!value.is_nan()).then_some(Self(value))

@@ -7,7 +7,12 @@ use outcross::diagnostics::Code;
 const MAIN: &str = "example.limit";
 
 /// Codes without an example, as it would be too large to be read by anyone.
-const WITHOUT_EXAMPLE: [Code; 3] = [Code::FileTooLarge, Code::SyntaxNesting, Code::ModelTooLarge];
+const WITHOUT_EXAMPLE: [Code; 4] = [
+    Code::FileTooLarge,
+    Code::SyntaxNesting,
+    Code::ModelTooLarge,
+    Code::ModelUnexplained,
+];
 
 /// A fenced block: what its head says, and what stands in it.
 struct Block<'a> {

@@ -11,6 +11,9 @@ use crate::units::{Dimension, show_number};
 /// A correlation function must be 1 at lag 0 to within this: weights such as `0.3` and `0.7` add up no better.
 const ONE: f64 = 1e-9;
 
+/// A kernel of one process is made of at most so many others.
+const MOST_PARTS: usize = 256;
+
 impl Lowering<'_, '_, '_> {
     /// A kernel of a dimension.
     pub(super) fn kernel(
@@ -31,7 +34,10 @@ impl Lowering<'_, '_, '_> {
 
     pub(super) fn covariance(&mut self, expression: &Expression, scope: Scope<'_>, what: &str) -> Option<Covariance> {
         match self.value(expression, scope.in_kernel()) {
-            Value::Kernel(covariance) => Some(covariance),
+            Value::Kernel(covariance) => {
+                self.small_enough(&covariance.kernel, expression.span)?;
+                Some(covariance)
+            }
             Value::Fault => None,
             Value::Scalar(Scalar {
                 value: Number::Unset, ..
@@ -42,6 +48,16 @@ impl Lowering<'_, '_, '_> {
                 None
             }
         }
+    }
+
+    /// Refuses kernels of so many parts that their integrals would take hours.
+    fn small_enough(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
+        if parts(kernel) <= MOST_PARTS {
+            return Some(());
+        }
+        let message = format!("this kernel is made of more than {MOST_PARTS} parts");
+        self.report(Diagnostic::new(Code::ModelTooLarge, place, message).help("use fewer terms and factors"));
+        None
     }
 
     /// The value at lag 0; its absence is reported.
@@ -76,7 +92,7 @@ impl Lowering<'_, '_, '_> {
 
     pub(super) fn positive_variance(&mut self, kernel: &Kernel, place: Span, what: &str) -> Option<()> {
         let variance = self.at_zero(kernel, place)?;
-        if variance > 0.0 && variance.is_finite() {
+        if variance > 0.0 && variance.is_normal() {
             return Some(());
         }
         let message = format!("the variance, which is the {what} at lag 0, must be greater than 0");
@@ -122,6 +138,15 @@ impl Lowering<'_, '_, '_> {
             return None;
         }
         Some(())
+    }
+}
+
+/// How many named, tabulated and written kernels a kernel is made of.
+fn parts(kernel: &Kernel) -> usize {
+    match kernel {
+        Kernel::Scaled(_, inner) => parts(inner),
+        Kernel::Sum(several) | Kernel::Product(several) => several.iter().map(parts).sum(),
+        Kernel::Constant | Kernel::Family(_) | Kernel::Tabulated(_) | Kernel::User(_) => 1,
     }
 }
 

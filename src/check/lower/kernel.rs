@@ -27,6 +27,12 @@ pub(super) const FAMILIES: &[&str] = &[
     "tabulated",
 ];
 
+/// Kernels made of kernels made of kernels are followed so deep.
+const DEEPEST_KERNEL: usize = 32;
+
+/// So many calls of kernels made of kernels are looked into in one model.
+const MOST_KERNEL_CALLS: usize = 100_000;
+
 /// A kernel that a model declares.
 #[derive(Clone)]
 pub(super) struct KernelDefinition {
@@ -206,6 +212,27 @@ impl Lowering<'_, '_, '_> {
 
     /// The body of a kernel made of kernels, with the values of its arguments.
     fn expanded(&mut self, item: ItemId, call: &Call, scalars: Vec<(&str, Scalar)>) -> Value {
+        if self.expansion_depth >= DEEPEST_KERNEL || self.expansions >= MOST_KERNEL_CALLS {
+            self.too_many_kernels(call);
+            return Value::Fault;
+        }
+        self.expansion_depth += 1;
+        self.expansions += 1;
+        let value = self.body_with(item, call, scalars);
+        self.expansion_depth -= 1;
+        value
+    }
+
+    fn too_many_kernels(&mut self, call: &Call) {
+        let message = format!(
+            "kernels made of kernels are followed {DEEPEST_KERNEL} deep and through {MOST_KERNEL_CALLS} calls, not further"
+        );
+        self.report(Diagnostic::new(Code::ModelTooLarge, call.function.span, message).help(
+            "write the kernel out: one that calls another twice, which calls a third twice, grows as powers of two",
+        ));
+    }
+
+    fn body_with(&mut self, item: ItemId, call: &Call, scalars: Vec<(&str, Scalar)>) -> Value {
         let DeclarationKind::Function { parameters, value, .. } = &self.names.declaration(item).kind else {
             return Value::Fault;
         };

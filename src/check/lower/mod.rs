@@ -81,6 +81,9 @@ pub struct Lowering<'p, 'l, 'f> {
     kernels: HashMap<ItemId, KernelDefinition>,
     tables: HashMap<std::path::PathBuf, Option<Rc<table::Table>>>,
     terms: usize,
+    /// How many kernels made of kernels are being looked into, and how many have been.
+    expansion_depth: usize,
+    expansions: usize,
     model: Model,
     varying: HashMap<ItemId, usize>,
     limit_states: HashMap<ItemId, usize>,
@@ -100,6 +103,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             kernels: HashMap::new(),
             tables: HashMap::new(),
             terms: 0,
+            expansion_depth: 0,
+            expansions: 0,
             model: Model::empty(tree.file),
             varying: HashMap::new(),
             limit_states: HashMap::new(),
@@ -114,6 +119,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         }
         for item in items {
             let value = self.item(*item);
+            self.note_if_lost(*item, &value);
             self.values[item.index()] = Some(value);
             if self.terms > MOST_TERMS {
                 self.too_large(*item);
@@ -122,6 +128,20 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         }
         self.in_order_of_the_text();
         (self.model, self.diagnostics)
+    }
+
+    /// Notes a declaration that should have come to something and did not.
+    fn note_if_lost(&mut self, item: ItemId, value: &Value) {
+        let declaration = self.names.declaration(item);
+        let lost = match &declaration.kind {
+            DeclarationKind::Definition { .. } | DeclarationKind::Parameter { .. } => matches!(value, Value::Fault),
+            DeclarationKind::LimitState { .. } => !self.limit_states.contains_key(&item),
+            DeclarationKind::Expect { .. } => self.model.expectations.last().is_none_or(|last| last.order != item),
+            _ => false,
+        };
+        if lost {
+            self.model.lost.push(place(declaration));
+        }
     }
 
     fn too_large(&mut self, item: ItemId) {

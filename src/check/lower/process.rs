@@ -84,6 +84,20 @@ impl Lowering<'_, '_, '_> {
         Value::Fault
     }
 
+    /// A correlation function times a variance, which must be a number that can be divided by.
+    fn scaled(&mut self, kernel: Kernel, variance: f64, place: Span) -> Option<Kernel> {
+        if variance.is_normal()
+            && let Ok(kernel) = kernel.scaled(variance)
+        {
+            return Some(kernel);
+        }
+        let message = "the variance of this process is beyond the range of numbers";
+        self.report(Diagnostic::new(Code::ValueNotFinite, place, message).help(
+            "check the unit of the standard deviation: its square must lie between 1e-307 and 1e308 in SI units",
+        ));
+        None
+    }
+
     fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
         let mut notes = description.notes;
         notes.extend(table_notes(&description.kernel, &self.names.full_name(item)));
@@ -195,7 +209,7 @@ impl Lowering<'_, '_, '_> {
         let value = known(&deviation)?;
         Some(Description {
             mean: mean_value,
-            kernel: kernel.scaled(value * value).ok()?,
+            kernel: self.scaled(kernel, value * value, call.brackets)?,
             dimension: deviation.dimension,
             unit: mean.unit.clone().or(deviation.unit),
             notes: Vec::new(),
