@@ -75,3 +75,20 @@ proptest! {
         }
     }
 }
+
+proptest! {
+    #![proptest_config(ProptestConfig { cases: 48, failure_persistence: None, ..ProptestConfig::default() })]
+
+    #[test]
+    fn spectra_of_trees_are_numbers(kernel in any_kernel(), power in -10.0..10.0_f64) {
+        for moment in kernel.moments().lambda {
+            if let Moment::Finite { value, error } | Moment::Unreached { value, error } = moment {
+                prop_assert!(value >= 0.0 && error >= 0.0, "{value} within {error}");
+            }
+        }
+        for omega in [0.0, 10.0_f64.powf(power)] {
+            let density = kernel.density(omega).expect("few lines");
+            prop_assert!(density.error >= 0.0 && density.value >= -density.error, "{density:?} at {omega}");
+        }
+    }
+}
