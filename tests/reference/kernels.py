@@ -175,7 +175,6 @@ def double(text):
 def rows():
     for make, first, second in CASES:
         name = make.__name__
-        if '-v' in sys.argv: print(name, first, second, flush=True)
         family = make(double(first), double(second))
         rho, (short, long) = family["rho"], family["times"]
         row = lambda quantity, place, order, value: (name, first, second, quantity, place, order, nstr(value, 20))

@@ -14,6 +14,8 @@ const FADED: f64 = 32.0;
 const RESOLVED: f64 = 3e4;
 /// With so many radians over its shortest time, a wave is much faster than the kernel.
 const SLOW: f64 = 8.0;
+/// What is left of a kernel that has faded, as a share of its variance.
+const NOTHING: f64 = 1e-9;
 /// Relative accuracy aimed at.
 const RELATIVE: f64 = 1e-11;
 
@@ -80,7 +82,8 @@ pub(super) fn cosine(
     times: (f64, f64),
     kinks: &[f64],
 ) -> Result<Estimate, Unavailable> {
-    let absolute = 1e-13 * f(0.0)?.abs() * times.0;
+    let variance = f(0.0)?.abs();
+    let absolute = 1e-13 * variance * times.0;
     let tolerance = Tolerance {
         absolute,
         relative: RELATIVE,
@@ -102,11 +105,7 @@ pub(super) fn cosine(
             absolute,
             relative: RELATIVE,
         };
-        let swing = if end < gone {
-            swing_beyond(|lag| f.at(lag), end)
-        } else {
-            0.0
-        };
+        let swing = swing_beyond(|lag| f.at(lag), end);
         head.plus(if swing == 0.0 {
             estimate(quadrature::oscillating_tail(
                 wave,
@@ -116,9 +115,15 @@ pub(super) fn cosine(
                 EVALUATIONS,
             ))
         } else {
-            // What still swings is not to be extrapolated, and bounded only: by its modulus, or where the wave is much
-            // faster, by parts.
-            let span = if omega * times.0 < SLOW { times.1 } else { 4.0 / omega };
+            // What still swings is not to be extrapolated, and bounded only: where the wave is much faster, by parts; else
+            // by its modulus over the time it takes to fade, if it does.
+            let span = if omega * times.0 >= SLOW {
+                4.0 / omega
+            } else if end < gone || swing < NOTHING * variance {
+                times.1
+            } else {
+                f64::INFINITY
+            };
             Estimate {
                 value: 0.0,
                 error: swing * span,
