@@ -1,6 +1,8 @@
 //! Special functions against tables computed with mpmath (`tables.py` beside this file) and the errors their
 //! documentation states.
 
+mod kernels;
+
 use outcross::numerics::{bessel, gamma, matern, normal};
 use serde::Deserialize;
 

@@ -167,9 +167,9 @@ impl Kernel {
                 .iter()
                 .filter_map(Kernel::times)
                 .reduce(|a, b| (a.0.min(b.0), a.1.max(b.1))),
-            // A product is gone when its first factor is, unless that factor only swings.
+            // A product is gone as soon as a factor is gone for good.
             Self::Product(parts) => {
-                let fading = parts.iter().filter(|part| part.has_density()).filter_map(Kernel::times);
+                let fading = parts.iter().filter(|part| part.fades()).filter_map(Kernel::times);
                 let longest = fading.map(|(_, long)| long).reduce(f64::min);
                 let all = parts
                     .iter()
@@ -177,6 +177,18 @@ impl Kernel {
                     .reduce(|a, b| (a.0.min(b.0), a.1.max(b.1)));
                 all.map(|(short, long)| (short, longest.unwrap_or(long).max(short)))
             }
+        }
+    }
+
+    /// Whether it is known to vanish, to any accuracy, within some tens of its longest time.
+    fn fades(&self) -> bool {
+        match self {
+            Self::Constant | Self::User(_) => false,
+            Self::Family(family) => family.fades(),
+            Self::Tabulated(table) => table.lines().is_empty(),
+            Self::Scaled(_, kernel) => kernel.fades(),
+            Self::Sum(parts) => parts.iter().all(Kernel::fades),
+            Self::Product(parts) => parts.iter().any(Kernel::fades),
         }
     }
 }

@@ -220,6 +220,7 @@ impl Kernel {
         Ok(match self {
             _ if weight == 0.0 => Self::zero(),
             kernel if weight == 1.0 => kernel,
+            Self::Scaled(inner, kernel) if weight * inner == 1.0 => Self::clone(&kernel),
             Self::Scaled(inner, kernel) if (weight * inner).is_normal() => Self::Scaled(weight * inner, kernel),
             kernel => Self::Scaled(weight, Arc::new(kernel)),
         })

@@ -92,10 +92,16 @@ impl Moment {
 
     fn product(&self, other: &Self) -> Self {
         let product = |one: Estimate, two: Estimate| {
-            let value = one.times(two.value);
+            if one.value == 0.0 || two.value == 0.0 {
+                // Nothing of an infinite moment is nothing.
+                return Estimate::closed(0.0);
+            }
+            if one.value.is_infinite() || two.value.is_infinite() {
+                return Estimate::closed(f64::INFINITY);
+            }
             Estimate {
-                error: value.error + one.value.abs().min(f64::MAX) * two.error,
-                ..value
+                value: one.value * two.value,
+                error: one.error * two.value.abs() + one.value.abs() * two.error,
             }
         };
         Self::of_result(self.estimate().and_then(|one| Ok(product(one, other.estimate()?))))

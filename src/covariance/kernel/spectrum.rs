@@ -176,12 +176,15 @@ impl Kernel {
     }
 
     /// 2/pi times the cosine transform of a function that varies as this kernel does.
-    fn transformed(
+    pub(super) fn transformed(
         &self,
         omega: f64,
         function: impl Fn(f64) -> Result<f64, Unavailable>,
     ) -> Result<Estimate, Unavailable> {
         let Some(times) = self.times() else {
+            // Constant, or an expression that has no value.
+            function(0.0)?;
+            function(1.0)?;
             return Ok(Estimate::closed(0.0));
         };
         let kinks: Vec<f64> = self.kinks().iter().map(|kink| kink.lag).collect();

@@ -8,10 +8,14 @@ use crate::numerics::quadrature::{self, Integral, Tolerance};
 
 /// Numbers of integrand values after which an integral is given up, its error stated.
 const EVALUATIONS: usize = 400_000;
-/// A kernel is taken to be smooth and fading after so many of its longest times.
-const FADED: f64 = 40.0;
-/// So many radians of oscillation are integrated one by one; what lies beyond is extrapolated.
-const RESOLVED: f64 = 5e3;
+/// What decays exponentially is gone after so many of its longest times.
+const FADED: f64 = 32.0;
+/// So many radians of oscillation are integrated one by one.
+const RESOLVED: f64 = 3e4;
+/// With so many radians over its shortest time, a wave is much faster than the kernel.
+const SLOW: f64 = 8.0;
+/// What is left of a kernel that has faded, as a share of its variance.
+const NOTHING: f64 = 1e-9;
 /// Relative accuracy aimed at.
 const RELATIVE: f64 = 1e-11;
 
@@ -78,7 +82,8 @@ pub(super) fn cosine(
     times: (f64, f64),
     kinks: &[f64],
 ) -> Result<Estimate, Unavailable> {
-    let absolute = 1e-13 * f(0.0)?.abs() * times.0;
+    let variance = f(0.0)?.abs();
+    let absolute = 1e-13 * variance * times.0;
     let tolerance = Tolerance {
         absolute,
         relative: RELATIVE,
@@ -89,7 +94,8 @@ pub(super) fn cosine(
         estimate(quadrature::to_infinity(|lag| f.at(lag), &lags, tolerance, EVALUATIONS))
     } else {
         let last_kink = kinks.iter().copied().fold(0.0, f64::max);
-        let end = (RESOLVED / omega).max(last_kink).min(FADED * times.1.max(last_kink));
+        let gone = FADED * times.1.max(last_kink);
+        let end = (RESOLVED / omega).max(last_kink).min(gone);
         lags.retain(|lag| *lag < end);
         lags.push(end);
         let wave = |lag: f64| f.at(lag) * (omega * lag).cos();
@@ -99,17 +105,52 @@ pub(super) fn cosine(
             absolute,
             relative: RELATIVE,
         };
-        head.plus(estimate(quadrature::oscillating_tail(
-            wave,
-            end,
-            PI / omega,
-            tolerance,
-            EVALUATIONS,
-        )))
+        let swing = swing_beyond(|lag| f.at(lag), end);
+        head.plus(if swing == 0.0 {
+            estimate(quadrature::oscillating_tail(
+                wave,
+                end,
+                PI / omega,
+                tolerance,
+                EVALUATIONS,
+            ))
+        } else {
+            // What still swings is not to be extrapolated, and bounded only: where the wave is much faster, by parts; else
+            // by its modulus over the time it takes to fade, if it does.
+            let span = if omega * times.0 >= SLOW {
+                4.0 / omega
+            } else if end < gone || swing < NOTHING * variance {
+                times.1
+            } else {
+                f64::INFINITY
+            };
+            Estimate {
+                value: 0.0,
+                error: swing * span,
+            }
+        })
     };
     f.check()?;
     Ok(sum)
 }
+
+/// The largest modulus of what swings beyond a lag; 0 for what falls steadily.
+fn swing_beyond(f: impl Fn(f64) -> f64, lag: f64) -> f64 {
+    let values: Vec<f64> = (0..=PROBES)
+        .map(|step| f(lag * (1.0 + f64::from(step) / f64::from(PROBES))))
+        .collect();
+    let steady = values
+        .windows(2)
+        .all(|pair| pair[0] * pair[1] >= 0.0 && pair[1].abs() <= pair[0].abs());
+    if steady {
+        0.0
+    } else {
+        values.iter().map(|value| value.abs()).fold(0.0, f64::max)
+    }
+}
+
+/// Lags that are looked at to see whether a kernel still swings.
+const PROBES: i32 = 37;
 
 /// The integral of a positive f(tau) / tau^2 between lags; the first must be positive.
 pub(super) fn over_square(f: impl Fn(f64) -> Result<f64, Unavailable>, lags: &[f64]) -> Result<Estimate, Unavailable> {

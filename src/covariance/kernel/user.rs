@@ -11,7 +11,8 @@ use crate::expression::{Number, Series, Tape};
 pub struct User {
     name: String,
     tape: Arc<Tape>,
-    arguments: Vec<(String, f64)>,
+    names: Vec<String>,
+    arguments: Vec<f64>,
     /// Taken off the expression: the constant part it was given with.
     constant: f64,
     times: Option<(f64, f64)>,
@@ -28,6 +29,7 @@ impl PartialEq for User {
     fn eq(&self, other: &Self) -> bool {
         Arc::ptr_eq(&self.tape, &other.tape)
             && self.name == other.name
+            && self.names == other.names
             && self.arguments == other.arguments
             && self.constant == other.constant
     }
@@ -37,9 +39,11 @@ impl User {
     /// From the name of the kernel, its expression in the lag (s) and arguments, and their names and values in SI
     /// units, in their order.
     pub fn new(name: impl Into<String>, tape: Arc<Tape>, arguments: Vec<(String, f64)>) -> Self {
+        let (names, arguments) = arguments.into_iter().unzip();
         let mut user = Self {
             name: name.into(),
             tape,
+            names,
             arguments,
             constant: 0.0,
             times: None,
@@ -65,17 +69,12 @@ impl User {
 
     /// Its value at a lag, which may be no number.
     fn evaluate(&self, lag: f64) -> f64 {
-        let arguments: Vec<f64> = self.arguments.iter().map(|(_, value)| *value).collect();
-        self.tape.evaluate(&lag, &arguments) - self.constant
+        self.tape.evaluate(&lag, &self.arguments) - self.constant
     }
 
     /// Its series right of a lag, or left of it in terms of the distance.
     fn series(&self, lag: f64, order: f64, direction: f64) -> Series {
-        let arguments: Vec<Series> = self
-            .arguments
-            .iter()
-            .map(|(_, value)| Series::constant(*value))
-            .collect();
+        let arguments: Vec<Series> = self.arguments.iter().map(|value| Series::constant(*value)).collect();
         Series::expand(0.0, order, |distance| {
             let there = Series::constant(lag).add(&distance.mul(&Series::constant(direction)));
             self.tape
@@ -194,7 +193,7 @@ const FOREVER: f64 = 1e6;
 impl fmt::Display for User {
     fn fmt(&self, out: &mut fmt::Formatter<'_>) -> fmt::Result {
         write!(out, "{}(", self.name)?;
-        for (place, (name, value)) in self.arguments.iter().enumerate() {
+        for (place, (name, value)) in self.names.iter().zip(&self.arguments).enumerate() {
             let comma = if place > 0 { ", " } else { "" };
             write!(out, "{comma}{name}: {value}")?;
         }

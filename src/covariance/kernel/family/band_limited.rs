@@ -113,6 +113,10 @@ impl Correlation for BandLimited {
         (1.0 / self.upper, 1.0 / self.half_width())
     }
 
+    fn fades(&self) -> bool {
+        false
+    }
+
     fn peaks(&self) -> Vec<Peak> {
         [self.lower, self.upper]
             .map(|frequency| Peak { frequency, width: 0.0 })

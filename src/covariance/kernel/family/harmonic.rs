@@ -82,6 +82,10 @@ impl Correlation for Harmonic {
         (1.0 / self.frequency, 1.0 / self.frequency)
     }
 
+    fn fades(&self) -> bool {
+        false
+    }
+
     fn peaks(&self) -> Vec<Peak> {
         Vec::new()
     }

@@ -72,6 +72,11 @@ pub trait Correlation {
     /// The shortest and the longest time over which rho changes by its own order of magnitude, in s.
     fn times(&self) -> (f64, f64);
 
+    /// Whether rho falls exponentially, or ends; else it falls as a power of the lag, or not at all.
+    fn fades(&self) -> bool {
+        true
+    }
+
     /// The lags above zero where a derivative jumps.
     fn kinks(&self) -> Vec<Kink> {
         Vec::new()
@@ -183,6 +188,10 @@ impl Correlation for Family {
 
     fn times(&self) -> (f64, f64) {
         each_family!(self, family => family.times())
+    }
+
+    fn fades(&self) -> bool {
+        each_family!(self, family => family.fades())
     }
 
     fn kinks(&self) -> Vec<Kink> {

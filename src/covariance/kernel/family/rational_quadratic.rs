@@ -124,6 +124,10 @@ impl Correlation for RationalQuadratic {
         // Below a mixture of 1 the singularity nearest to lag zero, at i l sqrt(2 alpha), is nearer than the length.
         (self.length * (2.0 * self.mixture).sqrt().min(1.0), self.length)
     }
+
+    fn fades(&self) -> bool {
+        false
+    }
 }
 
 impl fmt::Display for RationalQuadratic {
