@@ -65,7 +65,11 @@ fn arithmetic_without_a_value() {
         "tan(1 rad * 1e999)",
     ] {
         let run = refused(&format!("constant a = {value}\n"));
-        assert_eq!(run.codes(), ["value/not-finite"], "{value}");
+        assert!(
+            run.codes().iter().all(|code| *code == "value/not-finite"),
+            "{value}: {:?}",
+            run.codes()
+        );
     }
 }
 

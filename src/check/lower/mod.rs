@@ -467,6 +467,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         };
         let name_text = &name.text;
         match self.names.parts().arguments(instance) {
+            // Named wrongly or not at all: that is said where the `use` is looked at.
+            Some((_, _, arguments)) if self.meant_by(arguments, instance, name_text) => {}
             Some((origin, part, _)) => {
                 let user = self.names.parts().declaration(origin.user, origin.declaration);
                 let message = format!("the part `{}` needs its parameter `{name_text}`", part.text);
@@ -492,6 +494,17 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             }
             None => {}
         }
+    }
+
+    /// Whether one of the arguments of a `use` may have been meant to set a parameter, though it does not name it.
+    fn meant_by(&self, arguments: &[crate::language::tree::Argument], made: InstanceId, parameter: &str) -> bool {
+        arguments.iter().any(|argument| match &argument.name {
+            None => true,
+            Some(word) => {
+                let known = self.names.find(made, &word.text).is_some();
+                !known && !names::near(&word.text, std::iter::once(parameter)).is_empty()
+            }
+        })
     }
 
     /// Reports arguments of a `use` that name no parameter of the part, or one twice.
@@ -583,18 +596,30 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                     };
                     let mut finding = Diagnostic::new(Code::UnitUnknown, place, message);
                     let meant = choice(&one.suggestions).map(|near| format!("did you mean {near}?"));
-                    finding.help = match (meant, one.note) {
-                        (Some(meant), Some(note)) => Some(format!("{meant} {note}")),
-                        (meant, note) => meant.or(note),
-                    };
-                    if finding.help.is_none() {
-                        finding.help = Some("to multiply or divide by a name, put blanks around the `*` or `/`".into());
-                    }
+                    finding.help = Some(match (meant, one.note) {
+                        _ if self.is_declared(&one.symbol, place) => {
+                            format!(
+                                "`{}` is declared here: to multiply by it, write ` * ` before it",
+                                one.symbol
+                            )
+                        }
+                        (Some(meant), Some(note)) => format!("{meant} {note}"),
+                        (Some(meant), None) => meant,
+                        (None, Some(note)) => note.to_string(),
+                        (None, None) => "to multiply or divide by a name, put blanks around the `*` or `/`".to_string(),
+                    });
                     self.report(finding);
                 }
                 None
             }
         }
+    }
+
+    /// Whether the file of a place declares a name.
+    fn is_declared(&self, name: &str, place: Span) -> bool {
+        let mut instances = (0_u32..).map(InstanceId).zip(&self.names.parts().instances);
+        let there = instances.find(|(_, instance)| instance.tree.file == place.file);
+        there.is_some_and(|(id, _)| self.names.find(id, name).is_some())
     }
 
     /// The value a name stands for.
@@ -642,6 +667,11 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             ) => {
                 let help = format!("call it with its arguments: `{}(...)`", word_text(path));
                 self.wrong_kind(path.span, "a kernel", "a quantity", &help);
+                Value::Fault
+            }
+            (_, Some(Value::Form(_))) if scope.context == Context::Kernel => {
+                let help = "a kernel is made of the lag, its arguments, constants and other kernels";
+                self.wrong_kind(path.span, "a process", "a part of a kernel", help);
                 Value::Fault
             }
             (_, Some(value)) => value.clone(),

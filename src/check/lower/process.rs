@@ -10,7 +10,7 @@ use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Expression, ExpressionKind, Word};
 use crate::source::Span;
-use crate::units::{Dimension, Unit, show};
+use crate::units::{Dimension, Unit, show, show_number};
 use std::rc::Rc;
 
 /// A correlation function must be 1 at lag 0 to within this: weights such as `0.3` and `0.7` add up no better.
@@ -18,6 +18,9 @@ const ONE: f64 = 1e-9;
 
 /// The agreement asked of a raw autocorrelation's constant part with the square of the mean.
 const MEAN_SQUARE: f64 = 1e-6;
+
+/// The highest power of the lag with which a kernel can begin to fall.
+const FLATTEST: f64 = 2.0;
 
 const ARGUMENTS: &[&str] = &[
     "mean",
@@ -319,7 +322,7 @@ impl Lowering<'_, '_, '_> {
         if (at_zero - 1.0).abs() <= ONE {
             return Some(());
         }
-        let shown = crate::units::show_number(at_zero, 6);
+        let shown = show_number(at_zero, 6);
         self.report(
             Diagnostic::new(
                 Code::KernelNotOne,
@@ -379,7 +382,7 @@ impl Lowering<'_, '_, '_> {
             return Ok((constant, "its constant part is".to_string()));
         }
         let (lag, value) = kernel.at_long_lag()?;
-        let lag = crate::units::show_number(lag, 3);
+        let lag = show_number(lag, 3);
         Ok((value, format!("its value at the very long lag of {lag} s is")))
     }
 
@@ -389,7 +392,7 @@ impl Lowering<'_, '_, '_> {
             return Some(());
         }
         let message = format!("the variance, which is the {what} at lag 0, must be greater than 0");
-        let shown = crate::units::show_number(variance, 6);
+        let shown = show_number(variance, 6);
         self.report(Diagnostic::new(Code::ValueRange, place, message).here(format!("this is {shown} at lag 0")));
         None
     }
@@ -468,9 +471,9 @@ impl Lowering<'_, '_, '_> {
             if value.abs() <= at_zero * (1.0 + 1e-9) {
                 continue;
             }
-            let lag = crate::units::show_number(lag, 4);
+            let lag = show_number(lag, 4);
             let (message, here) = if value.is_finite() {
-                let ratio = crate::units::show_number(value / at_zero, 6);
+                let ratio = show_number(value / at_zero, 6);
                 (
                     format!("no process has this kernel: at a lag of {lag} s it is larger than at lag 0"),
                     format!("{ratio} times its value at lag 0"),
@@ -488,7 +491,47 @@ impl Lowering<'_, '_, '_> {
             );
             return None;
         }
-        Some(())
+        self.start_for_validity(kernel, at_zero, place)
+    }
+
+    /// A kernel that jumps at lag 0 is that of white noise beside something else. One that is flatter there than tau²
+    /// has a derivative of variance 0, so that only a constant can have it (H. Cramér and M. R. Leadbetter 1967,
+    /// Stationary and Related Stochastic Processes, sec. 7.4).
+    fn start_for_validity(&mut self, kernel: &Kernel, at_zero: f64, place: Span) -> Option<()> {
+        let start = kernel.expansion(FLATTEST + 1.0);
+        if start.reason().is_some() {
+            return Some(());
+        }
+        let varies = |value: f64| (value - at_zero).abs() > ONE * at_zero;
+        let limit = start.coefficient(0.0).filter(|limit| varies(*limit));
+        let bend = start.terms().iter().find(|term| term.exponent > 0.0);
+        let flat = bend.map_or(start.order() > FLATTEST, |term| term.exponent > FLATTEST);
+        let (message, here, help) = if let Some(limit) = limit {
+            let (from, to) = (show_number(at_zero, 6), show_number(limit, 6));
+            (
+                "this kernel jumps at lag 0, which is white noise: no process of finite power can follow it",
+                format!("{from} at lag 0, {to} right behind it"),
+                "leave the jump out, or give that share a kernel with a short length",
+            )
+        } else if flat
+            && probing_lags(kernel)
+                .filter_map(|lag| kernel.value(lag).ok())
+                .any(varies)
+        {
+            (
+                "no process has this kernel: it is flatter than tau² at lag 0, so the process could never move",
+                "falls later, but does not begin to".to_string(),
+                "use a kernel that begins to fall like tau² or faster, such as `squared_exponential(...)`",
+            )
+        } else {
+            return Some(());
+        };
+        self.report(
+            Diagnostic::new(Code::KernelInvalid, place, message)
+                .here(here)
+                .help(help),
+        );
+        None
     }
 }
 

@@ -135,6 +135,10 @@ impl Lowering<'_, '_, '_> {
                 return None;
             }
         };
+        if headers.is_empty() {
+            self.table_fault(Span::new(file, 0, 0), named, "this file is empty");
+            return None;
+        }
         let head = headers.position().map_or(0, |position| position.byte() as usize) + offset;
         let head = line_from(&text, head).map_or(Span::new(file, 0, 0), |range| Span::new(file, range.0, range.1));
         let found: Vec<Option<(usize, Rc<Unit>)>> = wanted
