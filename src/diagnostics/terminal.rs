@@ -87,7 +87,6 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
     };
     let main = Label::new(place(files, diagnostic.place))
         .with_color(tint)
-        .with_order(-1)
         .with_message(harmless(here));
     let mut builder = Report::build(kind, place(files, diagnostic.place))
         .with_config(config)

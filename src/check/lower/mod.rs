@@ -7,6 +7,7 @@ mod expectation;
 mod kernel;
 mod limit_state;
 mod mismatch;
+mod not_yet;
 mod operations;
 mod process;
 mod table;
@@ -26,6 +27,7 @@ use crate::language::tree::{
 use crate::source::Span;
 use crate::units::{self, Cause, Dimension, Unit};
 use kernel::KernelDefinition;
+use not_yet::Later;
 use std::collections::HashMap;
 use std::rc::Rc;
 
@@ -204,14 +206,14 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             DeclarationKind::Function {
                 keyword: FunctionKeyword::Profile,
                 ..
-            } => self.not_yet(declaration.keyword, "profiles of time"),
+            } => self.not_yet(declaration.keyword, Later::Profiles),
             DeclarationKind::Function {
                 keyword: FunctionKeyword::Spectrum,
                 ..
-            } => self.not_yet(declaration.keyword, "spectra"),
-            DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, "climates"),
-            DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, "correlated variables"),
-            DeclarationKind::Accept { .. } => self.not_yet(declaration.keyword, "accepted warnings"),
+            } => self.not_yet(declaration.keyword, Later::Spectra),
+            DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, Later::Climates),
+            DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, Later::Correlations),
+            DeclarationKind::Accept { .. } => self.not_yet(declaration.keyword, Later::Acceptances),
             DeclarationKind::LimitState { name, lines, close } => {
                 self.limit_state(item, name, lines, *close);
             }
@@ -222,19 +224,6 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             } => self.expectation(item, declaration, quantity, value, tolerance),
         }
         Value::Fault
-    }
-
-    /// One clear sentence for what the language has and this version does not compute.
-    fn not_yet(&mut self, place: Span, what: &str) {
-        self.report(
-            Diagnostic::new(
-                Code::LanguageNotYet,
-                place,
-                format!("this version does not compute {what} yet"),
-            )
-            .here("part of the language, but not of this version")
-            .help("leave it out, or say the same with processes and kernels"),
-        );
     }
 
     fn definition(
@@ -248,8 +237,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     ) -> Value {
         let scope = Scope::plain(self.names.item(item).instance);
         match keyword {
-            DefinitionKeyword::Variable => self.not_yet(declaration.keyword, "random variables"),
-            DefinitionKeyword::Quantity => self.not_yet(declaration.keyword, "quantities in time and variables"),
+            DefinitionKeyword::Variable => self.not_yet(declaration.keyword, Later::Variables),
+            DefinitionKeyword::Quantity => self.not_yet(declaration.keyword, Later::Quantities),
             DefinitionKeyword::Constant => {
                 let declared = unit.map(|unit| self.unit(unit));
                 let value = self.value(expression, scope);
@@ -619,7 +608,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     fn is_declared(&self, name: &str, place: Span) -> bool {
         let mut instances = (0_u32..).map(InstanceId).zip(&self.names.parts().instances);
         let there = instances.find(|(_, instance)| instance.tree.file == place.file);
-        there.is_some_and(|(id, _)| self.names.find(id, name).is_some())
+        there.is_some_and(|(id, _)| self.names.find(id, name).is_some() || self.names.is_lost(id, name))
     }
 
     /// The value a name stands for.
@@ -633,7 +622,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 name if self.names.find(scope.instance, name).is_some() => {}
                 "pi" => return Value::Scalar(Scalar::new(Number::Known(std::f64::consts::PI), Dimension::PLAIN)),
                 "t" => {
-                    self.not_yet(path.span, "quantities that change with the time `t`");
+                    self.not_yet(path.span, Later::Time);
                     return Value::Fault;
                 }
                 _ => {}
@@ -666,7 +655,16 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 _,
             ) => {
                 let help = format!("call it with its arguments: `{}(...)`", word_text(path));
-                self.wrong_kind(path.span, "a kernel", "a quantity", &help);
+                if scope.context == Context::Kernel {
+                    self.wrong_kind(
+                        path.span,
+                        "the name of a kernel",
+                        "the kernel with its arguments",
+                        &help,
+                    );
+                } else {
+                    self.wrong_kind(path.span, "a kernel", "a quantity", &help);
+                }
                 Value::Fault
             }
             (_, Some(Value::Form(_))) if scope.context == Context::Kernel => {

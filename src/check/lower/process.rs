@@ -1,6 +1,7 @@
 //! Sources: `gaussian(...)`, by whichever description the engineer has.
 
 use super::arguments::Arguments;
+use super::not_yet::Later;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::Kind;
 use crate::check::names::ItemId;
@@ -44,6 +45,8 @@ struct Subject<'a> {
 struct Description {
     mean: f64,
     kernel: Kernel,
+    /// Where the kernel stands.
+    place: Span,
     dimension: Dimension,
     unit: Option<Rc<Unit>>,
 }
@@ -73,7 +76,7 @@ impl Lowering<'_, '_, '_> {
         let Some(description) = self.description(call, subject) else {
             return Value::Fault;
         };
-        self.sample_for_validity(&description.kernel, expression.span)
+        self.sample_for_validity(&description.kernel, description.place)
             .and_then(|()| self.finish(item, name, description))
             .unwrap_or(Value::Fault)
     }
@@ -91,9 +94,9 @@ impl Lowering<'_, '_, '_> {
         let source = Source::new(self.names.full_name(item), description.kernel, name.span);
         if let Smoothness::Unclear { reason } = source.smoothness() {
             let message = format!("it cannot be told how smooth the process `{}` is", name.text);
-            let finding = Diagnostic::new(Code::KernelUnclear, name.span, message)
+            let finding = Diagnostic::new(Code::KernelUnclear, description.place, message)
                 .here(reason.clone())
-                .help("write the kernel so that its behaviour at lag 0 can be read off, without min, max or abs there");
+                .help("write the kernel so that it begins as 1 less a power of the lag");
             self.report(finding);
             return None;
         }
@@ -102,10 +105,16 @@ impl Lowering<'_, '_, '_> {
     }
 
     fn description(&mut self, call: &Call, subject: Subject<'_>) -> Option<Description> {
-        let arguments = self.arguments(call, &[], ARGUMENTS)?;
+        let Some(arguments) = self.arguments(call, &[], ARGUMENTS) else {
+            // What was meant is not known, but what is wrong within can be said all the same.
+            for argument in &call.arguments {
+                self.value(&argument.value, subject.scope.in_kernel());
+            }
+            return None;
+        };
         let name = &subject.name.text;
         if let Some(word) = arguments.word("spectrum") {
-            self.not_yet(word.span, "processes from spectra");
+            self.not_yet(word.span, Later::Spectra);
             return None;
         }
         let given = |names: &[&str]| -> Vec<Span> {
@@ -180,6 +189,7 @@ impl Lowering<'_, '_, '_> {
                     .help("add `correlation: ...`, such as `matern(smoothness: 5/2, length: 10 s)`"),
             );
         }
+        let given = deviation.or(variation);
         let mean = self.mean(arguments, subject);
         let scatter = match (deviation, variation) {
             (Some(expression), _) => self.deviation(expression, mean.as_ref(), subject),
@@ -194,12 +204,33 @@ impl Lowering<'_, '_, '_> {
         let (mean, deviation, kernel) = (mean?, scatter?, kernel?);
         let mean_value = known(&mean)?;
         let value = known(&deviation)?;
+        let place = correlation.map_or(call.brackets, |expression| expression.span);
+        let variance = value * value;
+        if !variance.is_normal() {
+            let place = given.map_or(call.brackets, |expression| expression.span);
+            self.variance_beyond_bounds(place, subject);
+            return None;
+        }
+        let kernel = kernel.scaled(variance).ok()?;
         Some(Description {
             mean: mean_value,
-            kernel: kernel.scaled(value * value).ok()?,
+            kernel,
+            place,
             dimension: deviation.dimension,
             unit: mean.unit.clone().or(deviation.unit),
         })
+    }
+
+    /// A variance that no double holds.
+    fn variance_beyond_bounds(&mut self, place: Span, subject: Subject<'_>) {
+        let message = format!(
+            "the square of the standard deviation of `{}` is beyond all bounds",
+            subject.name.text
+        );
+        self.report(
+            Diagnostic::new(Code::ValueRange, place, message)
+                .help("check its unit: the square must lie between 1e-307 and 1.8e308 in SI units"),
+        );
     }
 
     /// The mean; a bare 0 where none is given. `None` where it is at fault.
@@ -345,6 +376,7 @@ impl Lowering<'_, '_, '_> {
         Some(Description {
             mean: known(&mean)?,
             kernel: covariance.kernel,
+            place: expression.span,
             dimension,
             unit: mean.unit,
         })
@@ -406,7 +438,10 @@ impl Lowering<'_, '_, '_> {
         let dimension = self.root_dimension(&raw, expression.span, &mean, subject)?;
         let mean_value = known(&mean)?;
         let square = mean_value * mean_value;
-        let unit = Unit::si(raw.dimension);
+        let unit = mean.unit.as_ref().and_then(|unit| unit.power(2));
+        let unit = unit
+            .filter(|unit| unit.dimension() == raw.dimension)
+            .unwrap_or_else(|| Unit::si(raw.dimension));
         let at_zero = self.at_zero(&raw.kernel, expression.span)?;
         if at_zero <= square {
             let (total, square) = (show(at_zero, &unit, 6), show(square, &unit, 6));
@@ -450,6 +485,7 @@ impl Lowering<'_, '_, '_> {
         Some(Description {
             mean: mean_value,
             kernel,
+            place: expression.span,
             dimension,
             unit: mean.unit,
         })
@@ -507,10 +543,10 @@ impl Lowering<'_, '_, '_> {
         let bend = start.terms().iter().find(|term| term.exponent > 0.0);
         let flat = bend.map_or(start.order() > FLATTEST, |term| term.exponent > FLATTEST);
         let (message, here, help) = if let Some(limit) = limit {
-            let (from, to) = (show_number(at_zero, 6), show_number(limit, 6));
+            let share = show_number(limit / at_zero, 6);
             (
                 "this kernel jumps at lag 0, which is white noise: no process of finite power can follow it",
-                format!("{from} at lag 0, {to} right behind it"),
+                format!("falls to {share} of its value right behind lag 0"),
                 "leave the jump out, or give that share a kernel with a short length",
             )
         } else if flat
