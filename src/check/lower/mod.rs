@@ -32,7 +32,7 @@ use std::collections::HashMap;
 use std::rc::Rc;
 
 /// Terms of all forms of a model together; beyond this the model is refused, not computed for hours.
-const MOST_TERMS: usize = 20_000_000;
+const MOST_TERMS: usize = 2_000_000;
 
 /// What an expression sees around it.
 #[derive(Clone, Copy)]
