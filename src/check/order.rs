@@ -97,7 +97,10 @@ fn circular(names: &Names<'_>, circle: &[ItemId]) -> Diagnostic {
     };
     let mut finding = Diagnostic::new(Code::NameCycle, place, message)
         .here("needs itself")
-        .help("define one of them without the others");
+        .help(match circle.len() {
+            1 => "solve the equation for it by hand, or give it a value of its own",
+            _ => "define one of them without the others; an equation is solved by hand",
+        });
     for other in circle.iter().skip(1).take(8).filter_map(word) {
         finding = finding.label(other.span, "which is needed here");
     }

@@ -200,7 +200,11 @@ impl<'a> Library<'a> {
             path.span,
             match names.as_slice() {
                 [one] => format!("`{one}` uses itself"),
-                several => format!("these files use each other without end: {}", several.join(" -> ")),
+                [first, ..] => format!(
+                    "these files use each other without end: {} -> {first}",
+                    names.join(" -> ")
+                ),
+                [] => "files use each other without end".to_string(),
             },
         )
         .here("this `use` closes the circle")

@@ -87,37 +87,34 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
     };
     let main = Label::new(place(files, diagnostic.place))
         .with_color(tint)
-        .with_order(order(diagnostic.place, diagnostic.place))
+        .with_order(if stands_below(files, diagnostic) { 0 } else { -1 })
         .with_message(harmless(here));
+    let others = diagnostic.labels.iter().map(|label| {
+        let drawn = Label::new(place(files, label.place)).with_color(Color::Blue);
+        (label.place, drawn.with_message(harmless(&label.text)))
+    });
+    let mut labels: Vec<(Span, Label<Place>)> = std::iter::once((diagnostic.place, main)).chain(others).collect();
+    labels.sort_by_key(|(span, _)| (span.file != diagnostic.place.file, *span));
     let mut builder = Report::build(kind, place(files, diagnostic.place))
         .with_config(config)
         .with_code(diagnostic.code.name())
         .with_message(harmless(&diagnostic.message))
-        .with_label(main);
-    for label in &diagnostic.labels {
-        builder = builder.with_label(
-            Label::new(place(files, label.place))
-                .with_color(Color::Blue)
-                .with_order(order(label.place, diagnostic.place))
-                .with_message(harmless(&label.text)),
-        );
-    }
+        .with_labels(labels.into_iter().map(|(_, label)| label));
     if let Some(help) = &diagnostic.help {
         builder = builder.with_help(harmless(help));
     }
     builder.finish()
 }
 
-/// Labels are drawn from the top of the text down, those in other files after those beside the main one.
-fn order(span: Span, main: Span) -> i32 {
-    let file = i32::try_from(span.file.0).unwrap_or(i32::MAX).min(i32::MAX - 1);
-    let start = i32::try_from(span.start).unwrap_or(i32::MAX);
-    // The main file's labels are at or below 0, so that every other file comes after them.
-    if span.file == main.file {
-        start.saturating_sub(i32::MAX)
-    } else {
-        file + 1
-    }
+/// Whether another place of the finding stands on a line above it. The finding is drawn before others only where it is
+/// not: ariadne begins a new frame for a line above the last, under the heading of the first.
+fn stands_below(files: &Files, diagnostic: &Diagnostic) -> bool {
+    let line = |span: Span| files.place(span).line;
+    let mut labels = diagnostic
+        .labels
+        .iter()
+        .filter(|label| label.place.file == diagnostic.place.file);
+    labels.any(|label| line(label.place) < line(diagnostic.place))
 }
 
 /// The span with both ends on character boundaries inside the file: ariadne panics inside a character.

@@ -81,6 +81,7 @@ fn foreign_character(fault: &Fault<'_>) -> Option<Diagnostic> {
         '≥' => "write `>=`",
         '“' | '”' | '„' | '‟' | '«' | '»' => "write straight quotation marks, `\"`",
         '‘' | '’' | '\'' | '`' => "write texts in double quotation marks, `\"`",
+        '\u{300}'..='\u{36F}' => "type the letter anew, with its accent in one character",
         '⁰' | '¹' | '²' | '³' | '⁴'..='⁹' | '⁻' => "write a power of a value with `^`, as in `x^2`",
         _ if first.is_control() || first.is_whitespace() || is_invisible(first) => {
             let place = fault.reader.span(fault.at..fault.at + first.len_utf8());

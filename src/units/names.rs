@@ -130,14 +130,14 @@ static LEADING: [Leading; 12] = [
 type Spelt = (&'static str, &'static str, Exponent);
 
 impl Dimension {
-    /// What it is called: "a force", "a rate (1/time)"; without a name of its own "dimension force^2/length".
+    /// What it is called: "a force", "a rate (1/time)"; without a name of its own "something of dimension force^2/length".
     pub fn describe(self) -> String {
         match NAMED.iter().find(|named| named.dimension == self) {
             Some(named) => named.words.to_owned(),
             None => {
                 let factors = self.spelling();
                 let words = factors.iter().map(|&(_, word, power)| (word, power));
-                format!("dimension {}", spell(words, "1"))
+                format!("something of dimension {}", spell(words, "1"))
             }
         }
     }

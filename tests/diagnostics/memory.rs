@@ -2,6 +2,8 @@
 
 use outcross::check::{self, Model, Settings};
 use outcross::diagnostics::{Diagnostic, any_error, terminal};
+use outcross::language;
+use outcross::language::tree::{DeclarationKind, DefinitionKeyword};
 use outcross::source::{Files, Reader, Unreadable};
 use std::collections::HashMap;
 use std::path::{Component, Path, PathBuf};
@@ -62,6 +64,9 @@ pub fn run(reader: &dyn Reader, path: &Path, require_parameters: bool) -> Run {
     };
     let (model, diagnostics) = check::check(&mut files, reader, path, &settings);
     assert_eq!(model.is_none(), any_error(&diagnostics));
+    if let Some(model) = model.as_ref().filter(|_| require_parameters) {
+        nothing_is_dropped(&files, model);
+    }
     for one in &diagnostics {
         assert!(!one.message.is_empty(), "{one:?}");
         let places = one.labels.iter().map(|label| label.place);
@@ -75,6 +80,31 @@ pub fn run(reader: &dyn Reader, path: &Path, require_parameters: bool) -> Run {
         model,
         diagnostics,
     }
+}
+
+/// Everything the file declares stands in the model.
+fn nothing_is_dropped(files: &Files, model: &Model) {
+    let (tree, _) = language::parse(model.file, &files.get(model.file).text);
+    let count = |wanted: fn(&DeclarationKind) -> bool| tree.declarations.iter().filter(|one| wanted(&one.kind)).count();
+    let varying = count(|kind| {
+        use DefinitionKeyword::{Margin, Process};
+        matches!(
+            kind,
+            DeclarationKind::Definition {
+                keyword: Process | Margin,
+                ..
+            }
+        )
+    });
+    let in_file = model.varying.iter().filter(|one| !one.name.contains('.')).count();
+    assert_eq!(in_file, varying);
+    let in_file = model.limit_states.iter().filter(|one| !one.name.contains('.')).count();
+    assert_eq!(
+        in_file,
+        count(|kind| matches!(kind, DeclarationKind::LimitState { .. }))
+    );
+    let expectations = count(|kind| matches!(kind, DeclarationKind::Expect { .. }));
+    assert!(model.expectations.len() >= expectations);
 }
 
 impl Run {

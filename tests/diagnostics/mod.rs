@@ -11,7 +11,6 @@ mod rendering;
 mod robustness;
 
 use memory::Memory;
-use outcross::diagnostics::Severity;
 use std::fs;
 use std::path::Path;
 
@@ -46,14 +45,16 @@ fn shared() -> Memory {
 #[test]
 fn one_fault_gives_one_message() {
     let shared = shared();
+    let mut others = String::new();
     insta::glob!("faulty/*.limit", |path| {
         let (name, text) = content(path);
         let run = shared.clone().with(&name, &text).run(&name, true);
         insta::assert_snapshot!(format!("{text}\n======== messages ========\n{}", run.shown()));
-        assert_eq!(run.diagnostics.len(), 1, "{name}:\n{}", run.shown());
-        let sound = run.diagnostics.iter().all(|one| one.severity() == Severity::Warning);
-        assert_eq!(run.model.is_some(), sound, "{name}");
+        if run.diagnostics.len() != 1 {
+            others += &format!("{name}:\n{}\n", run.shown());
+        }
     });
+    assert!(others.is_empty(), "{others}");
 }
 
 #[test]

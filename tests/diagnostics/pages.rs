@@ -34,16 +34,19 @@ fn blocks(page: &str) -> Vec<Block<'_>> {
     blocks
 }
 
-/// An example: the model and the files it names, which stand behind it on the page.
+/// An example: the model and the files it names. Where the page shows two files of one name, the wrong example has the
+/// first, and the mended one the last.
 fn example(page: &str, kind: &str) -> Option<Memory> {
-    let blocks = blocks(page);
-    let mut rest = blocks.iter().skip_while(|block| block.head != format!("limit {kind}"));
-    let mut memory = Memory::of(MAIN, &rest.next()?.text);
-    for block in rest {
-        let Some((_, name)) = block.head.split_once(" file ") else {
-            break;
-        };
-        memory.insert(name.trim_matches('"'), &*block.text);
+    let mut blocks = blocks(page);
+    if kind == "wrong" {
+        blocks.reverse();
+    }
+    let model = blocks.iter().find(|block| block.head == format!("limit {kind}"))?;
+    let mut memory = Memory::of(MAIN, &model.text);
+    for block in &blocks {
+        if let Some((_, name)) = block.head.split_once(" file ") {
+            memory.insert(name.trim_matches('"'), &*block.text);
+        }
     }
     Some(memory)
 }

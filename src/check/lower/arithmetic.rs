@@ -38,15 +38,18 @@ impl Lowering<'_, '_, '_> {
     pub(super) fn finite(&mut self, scalar: Scalar, place: Span) -> Value {
         match scalar.value {
             Number::Known(value) if !value.is_finite() => {
-                let message = if value.is_nan() {
-                    "this has no value: it is undefined, such as 0/0 or the root of a negative number"
+                let (message, help) = if value.is_nan() {
+                    (
+                        "this has no value: it is undefined, such as 0/0 or the root of a negative number",
+                        "check the numbers it is made from",
+                    )
                 } else {
-                    "this is larger than any number the program can hold, or a division by 0"
+                    (
+                        "this is a division by 0, or larger than any number the program can hold",
+                        "check the numbers it is made from: at most 1.8e308 can be held, in SI units",
+                    )
                 };
-                self.report(
-                    Diagnostic::new(Code::ValueNotFinite, place, message)
-                        .help("check the numbers it is made from; a double holds up to 1.8e308, in SI units"),
-                );
+                self.report(Diagnostic::new(Code::ValueNotFinite, place, message).help(help));
                 Value::Fault
             }
             _ => Value::Scalar(scalar),
@@ -131,27 +134,28 @@ impl Lowering<'_, '_, '_> {
         if values.iter().any(|(_, _, value)| matches!(value, Value::Fault)) {
             return None;
         }
-        let dimension = |value: &Value| match value {
+        let of = |value: &Value| match value {
             Value::Scalar(scalar) if scalar.bare_zero => None,
-            Value::Scalar(scalar) => Some(scalar.dimension),
-            Value::Form(varying) => Some(varying.dimension),
-            Value::Kernel(covariance) => Some(covariance.dimension),
+            Value::Scalar(scalar) => Some((scalar.dimension, scalar.unit.clone())),
+            Value::Form(varying) => Some((varying.dimension, varying.unit.clone())),
+            Value::Kernel(covariance) => Some((covariance.dimension, None)),
             Value::Fault => None,
         };
-        let mut first: Option<(Span, Dimension)> = None;
+        let mut first: Option<(Span, Dimension, Option<Rc<Unit>>)> = None;
         let mut alike = true;
         for (sign, span, value) in values {
-            match (first, dimension(value)) {
-                (None, Some(dimension)) => first = Some((*span, dimension)),
-                (Some(before), Some(dimension)) if before.1 != dimension => {
+            match (&first, of(value)) {
+                (None, Some((dimension, unit))) => first = Some((*span, dimension, unit)),
+                (Some((before, first, first_unit)), Some((dimension, unit))) if *first != dimension => {
                     let verb = if *sign < 0.0 { "subtracted from" } else { "added to" };
-                    self.unlike(before, (*span, dimension), verb);
+                    let second = (*span, dimension, unit.as_ref());
+                    self.unlike((*before, *first, first_unit.as_ref()), second, verb);
                     alike = false;
                 }
                 _ => {}
             }
         }
-        alike.then(|| first.map_or(Dimension::PLAIN, |(_, dimension)| dimension))
+        alike.then(|| first.map_or(Dimension::PLAIN, |(_, dimension, _)| dimension))
     }
 
     fn sum_of_forms(&mut self, values: Vec<(f64, Span, Value)>, dimension: Dimension, unit: Option<Rc<Unit>>) -> Value {

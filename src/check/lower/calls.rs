@@ -1,5 +1,6 @@
 //! Calls: functions of numbers, operations on processes, kernels. What a call means depends on where it stands.
 
+use super::not_yet::Later;
 use super::operations::OPERATIONS;
 use super::{Lowering, Scope, kernel};
 use crate::check::names::{Resolved, choice, near};
@@ -64,11 +65,11 @@ impl Lowering<'_, '_, '_> {
                 return self.source_inside_arithmetic(span);
             }
             if DISTRIBUTIONS.contains(&name) {
-                self.not_yet(span, "random variables");
+                self.not_yet(span, Later::Variables);
                 return Value::Fault;
             }
             if SPECTRA.contains(&name) {
-                self.not_yet(span, "spectra");
+                self.not_yet(span, Later::Spectra);
                 return Value::Fault;
             }
         }
@@ -269,7 +270,9 @@ impl Lowering<'_, '_, '_> {
                 match unlike {
                     None => Some(leader.dimension),
                     Some((other, scalar)) => {
-                        self.unlike((*place, leader.dimension), (*other, scalar.dimension), "compared with");
+                        let first = (*place, leader.dimension, leader.unit.as_ref());
+                        let second = (*other, scalar.dimension, scalar.unit.as_ref());
+                        self.unlike(first, second, "compared with");
                         None
                     }
                 }

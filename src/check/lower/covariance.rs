@@ -11,6 +11,9 @@ use crate::units::{Dimension, show_number};
 /// A correlation function must be 1 at lag 0 to within this: weights such as `0.3` and `0.7` add up no better.
 const ONE: f64 = 1e-9;
 
+/// The highest power of the lag with which a kernel can begin to fall.
+const FLATTEST: f64 = 2.0;
+
 /// A kernel of one process is made of at most so many others.
 const MOST_PARTS: usize = 256;
 
@@ -137,7 +140,47 @@ impl Lowering<'_, '_, '_> {
             );
             return None;
         }
-        Some(())
+        self.start_for_validity(kernel, at_zero, place)
+    }
+
+    /// A kernel that jumps at lag 0 is that of white noise beside something else. One that is flatter there than tau²
+    /// has a derivative of variance 0, so that only a constant can have it (H. Cramér and M. R. Leadbetter 1967,
+    /// Stationary and Related Stochastic Processes, sec. 7.4).
+    fn start_for_validity(&mut self, kernel: &Kernel, at_zero: f64, place: Span) -> Option<()> {
+        let start = kernel.expansion(FLATTEST + 1.0);
+        if start.reason().is_some() {
+            return Some(());
+        }
+        let varies = |value: f64| (value - at_zero).abs() > ONE * at_zero;
+        let limit = start.coefficient(0.0).filter(|limit| varies(*limit));
+        let bend = start.terms().iter().find(|term| term.exponent > 0.0);
+        let flat = bend.map_or(start.order() > FLATTEST, |term| term.exponent > FLATTEST);
+        let (message, here, help) = if let Some(limit) = limit {
+            let share = show_number(limit / at_zero, 6);
+            (
+                "this kernel jumps at lag 0, which is white noise: no process of finite power can follow it",
+                format!("falls to {share} of its value right behind lag 0"),
+                "leave the jump out, or give that share a kernel with a short length",
+            )
+        } else if flat
+            && probing_lags(kernel)
+                .filter_map(|lag| kernel.value(lag).ok())
+                .any(varies)
+        {
+            (
+                "no process has this kernel: it is flatter than tau² at lag 0, so the process could never move",
+                "falls later, but does not begin to".to_string(),
+                "use a kernel that begins to fall like tau² or faster, such as `squared_exponential(...)`",
+            )
+        } else {
+            return Some(());
+        };
+        self.report(
+            Diagnostic::new(Code::KernelInvalid, place, message)
+                .here(here)
+                .help(help),
+        );
+        None
     }
 }
 

@@ -4,11 +4,13 @@ use super::{Context, Lowering, Scope};
 use crate::check::names::ItemId;
 use crate::check::value::{Covariance, Number, Scalar, Value};
 use crate::covariance::kernel::{
-    BandLimited, Beyond, Harmonic, InvalidParameter, Kernel, Length, LengthOf, Oscillator, Tabulated, User,
+    BandLimited, Beyond, Harmonic, InvalidParameter, Kernel, Length, LengthOf, NoLength, Oscillator, Tabulated, User,
 };
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::{Symbol, Tape};
-use crate::language::tree::{Call, DeclarationKind, Expression, FunctionParameter, UnitExpression, Word};
+use crate::language::tree::{
+    Call, DeclarationKind, Expression, ExpressionKind, FunctionParameter, UnitExpression, Word,
+};
 use crate::source::Span;
 use crate::units::{Dimension, show_number};
 use std::sync::Arc;
@@ -73,7 +75,10 @@ impl Lowering<'_, '_, '_> {
                 for (index, parameter) in others.iter().enumerate() {
                     if locals.iter().any(|(known, _)| *known == &*parameter.name.text) {
                         let message = format!("`{}` is an argument twice", parameter.name.text);
-                        self.report(Diagnostic::new(Code::NameRepeated, parameter.name.span, message));
+                        self.report(
+                            Diagnostic::new(Code::NameRepeated, parameter.name.span, message)
+                                .help("give one of the two another name"),
+                        );
                     }
                     let unit = parameter.unit.as_ref().map(|unit| self.unit(unit));
                     let dimension = unit.flatten().map_or(Dimension::PLAIN, |unit| unit.dimension());
@@ -382,8 +387,17 @@ impl Lowering<'_, '_, '_> {
                     .get(fault.parameter)
                     .map_or(span, |expression| expression.span);
                 let message = format!("`{}` of `{}` must be {}", fault.parameter, fault.family, fault.demand);
-                let here = format!("this is {} in SI units", show_number(fault.value, 6));
-                self.report(Diagnostic::new(Code::ValueRange, place, message).here(here));
+                let unit = match fault.parameter {
+                    "length" => " s",
+                    "frequency" | "lower" | "upper" => " rad/s",
+                    _ => "",
+                };
+                let here = format!("this is {}{unit}", show_number(fault.value, 6));
+                let mut finding = Diagnostic::new(Code::ValueRange, place, message).here(here);
+                if fault.parameter == "damping" && fault.value >= 1.0 {
+                    finding.help = Some("write it as a share of critical damping, such as `2 %`".to_string());
+                }
+                self.report(finding);
                 None
             }
         }
@@ -427,7 +441,15 @@ impl Lowering<'_, '_, '_> {
                 short
             }
             Length::None(why) => {
-                let finding = Diagnostic::new(Code::KernelFluctuation, expression.span, why.to_string());
+                let name = super::word_text(&call.function);
+                let message = match why {
+                    NoLength::TooLarge { largest } => format!(
+                        "no length of `{name}` has this scale of fluctuation: at this frequency it is at most {} s",
+                        show_number(largest, 4)
+                    ),
+                    other => format!("no length of `{name}` has this scale of fluctuation: {other}"),
+                };
+                let finding = Diagnostic::new(Code::KernelFluctuation, expression.span, message);
                 self.report(finding.help("give `length` instead"));
                 return None;
             }
@@ -448,7 +470,7 @@ impl Lowering<'_, '_, '_> {
     /// `tabulated("file.csv", beyond: POLICY)`
     fn tabulated_kernel(&mut self, call: &Call) -> Option<Kernel> {
         let arguments = self.arguments(call, &["the name of a file"], &["beyond"])?;
-        let beyond = self.beyond(&arguments);
+        let beyond = self.beyond(call, &arguments);
         let file = arguments.subjects.first().copied()?;
         let table = self.kernel_table(file);
         let (beyond, table) = (beyond?, table?);
@@ -461,10 +483,11 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    fn beyond(&mut self, arguments: &super::arguments::Arguments<'_>) -> Option<Beyond> {
-        let expression = self.required(arguments, "beyond", "zero")?;
-        let word = match &expression.kind {
-            crate::language::tree::ExpressionKind::Name(path) => super::word_text(path),
+    /// What holds outside of a table: there is no default.
+    fn beyond(&mut self, call: &Call, arguments: &super::arguments::Arguments<'_>) -> Option<Beyond> {
+        let given = arguments.get("beyond");
+        let word = match given.map(|expression| &expression.kind) {
+            Some(ExpressionKind::Name(path)) => super::word_text(path),
             _ => String::new(),
         };
         match word.as_str() {
@@ -472,13 +495,11 @@ impl Lowering<'_, '_, '_> {
             "hold" => Some(Beyond::Hold),
             "refuse" => Some(Beyond::Refuse),
             _ => {
+                let place = given.map_or(call.brackets, |expression| expression.span);
+                let message = "`beyond` must say what holds outside of the table";
                 self.report(
-                    Diagnostic::new(
-                        Code::CallArgument,
-                        expression.span,
-                        "`beyond` says what holds outside the table: `zero`, `hold` or `refuse`",
-                    )
-                    .help("write one of the three words"),
+                    Diagnostic::new(Code::CallArgument, place, message)
+                        .help("write `beyond: zero`, `beyond: hold` (the last value) or `beyond: refuse`"),
                 );
                 None
             }

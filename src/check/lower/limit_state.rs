@@ -1,5 +1,6 @@
 //! Limit states: what failure is, over how long, by which method, and what is required.
 
+use super::not_yet::Later;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::{LimitQuantity, LimitState, Requirement, Time};
 use crate::check::names::{self, ItemId, choice};
@@ -75,7 +76,7 @@ impl Lowering<'_, '_, '_> {
                 self.report(
                     Diagnostic::new(Code::LimitLine, name.span, message)
                         .label(close, "missing before this brace")
-                        .help(format!("add `{example}`, with your margin and time")),
+                        .help(format!("add `{example}`, with what is yours")),
                 );
             }
         }
@@ -89,7 +90,7 @@ impl Lowering<'_, '_, '_> {
         let times = lines.tabulate.map_or(Some(Vec::new()), |(_, times)| {
             let found: Vec<Option<Time>> = times
                 .iter()
-                .map(|time| self.time(time, scope, "a time of the table"))
+                .map(|time| self.time(time, scope, "each entry of `tabulate at`"))
                 .collect();
             found.into_iter().collect()
         });
@@ -178,7 +179,7 @@ impl Lowering<'_, '_, '_> {
             "poisson" => Some(Method::Poisson),
             "poisson_safe_start" => Some(Method::PoissonSafeStart),
             "vanmarcke" => {
-                self.not_yet(word.span, "first passage by `vanmarcke`");
+                self.not_yet(word.span, Later::Vanmarcke);
                 None
             }
             other => {
@@ -207,7 +208,7 @@ impl Lowering<'_, '_, '_> {
         };
         let found = self.limit_quantity(quantity);
         let over = match over {
-            Some(over) => self.time(over, scope, "the time of a requirement"),
+            Some(over) => self.time(over, scope, "the period of a requirement"),
             None => period.cloned(),
         };
         let (quantity_found, dimension) = found?;
@@ -249,7 +250,11 @@ impl Lowering<'_, '_, '_> {
             return Some(());
         }
         let message = format!("a demand on `{}` must be {range}", word.text);
-        self.report(Diagnostic::new(Code::ValueRange, place, message));
+        let mut finding = Diagnostic::new(Code::ValueRange, place, message);
+        if limit > 1.0 && limit <= 100.0 {
+            finding.help = Some(format!("write `{} %` if a percentage is meant", self.as_written(place)));
+        }
+        self.report(finding);
         None
     }
 
@@ -258,7 +263,7 @@ impl Lowering<'_, '_, '_> {
         let found = LimitQuantity::find(&word.text);
         if found.is_none() {
             if LATER_QUANTITIES.contains(&&*word.text) {
-                self.not_yet(word.span, &format!("`{}`", word.text));
+                self.not_yet(word.span, Later::Hazards);
             } else {
                 let known: Vec<&str> = LimitQuantity::names().collect();
                 let message = format!("a limit state has no quantity called `{}`", word.text);
@@ -277,7 +282,7 @@ impl Lowering<'_, '_, '_> {
     fn condition(&mut self, condition: &Condition, scope: Scope<'_>) -> Option<(Varying, FailureRegion)> {
         match &condition.kind {
             ConditionKind::Any(_) | ConditionKind::All(_) | ConditionKind::Named(_) => {
-                self.not_yet(condition.span, "systems of several conditions");
+                self.not_yet(condition.span, Later::Systems);
                 None
             }
             ConditionKind::Below(margin, level) => {
@@ -292,27 +297,27 @@ impl Lowering<'_, '_, '_> {
                     );
                     return None;
                 }
-                let varying = self.margin_of(margin, level, scope)?;
+                let varying = self.margin_of(margin, level, ">", scope)?;
                 let level = self.level(level, &varying, margin.span, scope)?;
                 Some((varying, FailureRegion::Below(level)))
             }
             ConditionKind::Above(margin, level) => {
                 if let Some(inner) = absolute(margin) {
-                    let varying = self.margin_of(inner, level, scope)?;
+                    let varying = self.margin_of(inner, level, "<", scope)?;
                     let value = self.level(level, &varying, margin.span, scope)?;
                     if value < 0.0 {
                         let message = "a level for `abs(...)` must not be negative: failure would be certain";
-                        self.report(Diagnostic::new(Code::ValueRange, level.span, message));
+                        self.report(Diagnostic::new(Code::ValueRange, level.span, message).help("remove the sign"));
                         return None;
                     }
                     return Some((varying, FailureRegion::Outside(-value, value)));
                 }
-                let varying = self.margin_of(margin, level, scope)?;
+                let varying = self.margin_of(margin, level, "<", scope)?;
                 let level = self.level(level, &varying, margin.span, scope)?;
                 Some((varying, FailureRegion::Above(level)))
             }
             ConditionKind::Outside(margin, lower, upper) => {
-                let varying = self.margin_of(margin, lower, scope)?;
+                let varying = self.margin_of(margin, lower, "<", scope)?;
                 let low = self.level(lower, &varying, margin.span, scope);
                 let high = self.level(upper, &varying, margin.span, scope);
                 let (low, high) = (low?, high?);
@@ -330,15 +335,27 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    fn margin_of(&mut self, margin: &Expression, level: &Expression, scope: Scope<'_>) -> Option<Varying> {
+    /// The margin on the left of a condition. `turned` is the mark that stands between the two if they change places.
+    fn margin_of(
+        &mut self,
+        margin: &Expression,
+        level: &Expression,
+        turned: &str,
+        scope: Scope<'_>,
+    ) -> Option<Varying> {
         match self.value(margin, scope) {
             Value::Form(varying) if !varying.form.is_constant() => Some(varying),
             Value::Fault => None,
             Value::Form(_) | Value::Scalar(_) => {
                 let swapped = matches!(self.value(level, scope), Value::Form(_));
                 let finding = if swapped {
+                    let (margin_written, level_written) = (self.as_written(level.span), self.as_written(margin.span));
                     Diagnostic::new(Code::LimitCondition, margin.span, "the margin stands on the wrong side")
-                        .help("write the margin first: `MARGIN < LEVEL` or `MARGIN > LEVEL`")
+                        .here("the level")
+                        .label(level.span, "the margin")
+                        .help(format!(
+                            "write the margin first: `{margin_written} {turned} {level_written}`"
+                        ))
                 } else {
                     let message = "nothing in this condition varies in time, so there are no crossings to count";
                     Diagnostic::new(Code::MarginNoProcess, margin.span, message)

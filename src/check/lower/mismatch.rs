@@ -8,6 +8,9 @@ use crate::source::Span;
 use crate::units::{Dimension, Unit};
 use std::rc::Rc;
 
+/// Where something stands, what it is, and the unit people see it in.
+pub(super) type Shown<'a> = (Span, Dimension, Option<&'a Rc<Unit>>);
+
 impl Lowering<'_, '_, '_> {
     /// A quantity of another dimension than the place asks for. `what` names what the quantity is for.
     pub(super) fn mismatch(
@@ -24,7 +27,7 @@ impl Lowering<'_, '_, '_> {
             let there = dimension_in_words(found.dimension, found.unit.as_ref());
             let message = format!("{what} must be {}, not {there}", wanted.describe());
             let mut finding = Diagnostic::new(Code::UnitMismatch, place, message).here(there);
-            finding.help = hint(found.dimension, wanted);
+            finding.help = hint(found.dimension, wanted, None);
             finding
         };
         let finding = match why {
@@ -34,9 +37,9 @@ impl Lowering<'_, '_, '_> {
         self.report(finding);
     }
 
-    /// Two things that are added or compared and are not of one dimension.
-    pub(super) fn unlike(&mut self, first: (Span, Dimension), second: (Span, Dimension), verb: &str) {
-        let ((a_place, a), (b_place, b)) = (first, second);
+    /// Two things that are added or compared and are not of one dimension, each with the unit people see it in.
+    pub(super) fn unlike(&mut self, first: Shown<'_>, second: Shown<'_>, verb: &str) {
+        let ((a_place, a, a_unit), (b_place, b, b_unit)) = (first, second);
         let code = if a.without_angle() == b.without_angle() {
             Code::UnitAngle
         } else {
@@ -44,12 +47,12 @@ impl Lowering<'_, '_, '_> {
         };
         let message = format!("{} cannot be {verb} {}", b.describe(), a.describe());
         let mut finding = Diagnostic::new(code, b_place, message)
-            .here(format!("{}, in {}", b.describe(), b.si_name()))
-            .label(a_place, format!("{}, in {}", a.describe(), a.si_name()));
-        finding.help = if code == Code::UnitAngle {
-            Some(angle_help(b, a))
-        } else {
-            hint(b, a)
+            .here(dimension_in_words(b, b_unit))
+            .label(a_place, dimension_in_words(a, a_unit));
+        finding.help = match code {
+            Code::UnitAngle => Some(angle_help(b, a)),
+            _ if a.is_plain() => hint(a, b, b_unit.map(|unit| &**unit)),
+            _ => hint(b, a, a_unit.map(|unit| &**unit)),
         };
         self.report(finding);
     }
@@ -82,7 +85,7 @@ impl Lowering<'_, '_, '_> {
         finding.help = if code == Code::UnitAngle {
             Some(angle_help(found, declared))
         } else {
-            hint(found, declared)
+            hint(found, declared, Some(unit))
         };
         self.report(finding);
     }
@@ -113,8 +116,8 @@ fn angle_help(found: Dimension, wanted: Dimension) -> String {
     help.to_string()
 }
 
-/// What is likely meant where one dimension stands for another.
-fn hint(found: Dimension, wanted: Dimension) -> Option<String> {
+/// What is likely meant where one dimension stands for another, which people see in a unit.
+fn hint(found: Dimension, wanted: Dimension, unit: Option<&Unit>) -> Option<String> {
     if wanted.power_i32(2) == Some(found) {
         return Some("this looks like a square, such as a variance: take its root with `sqrt(...)`".to_string());
     }
@@ -122,22 +125,34 @@ fn hint(found: Dimension, wanted: Dimension) -> Option<String> {
         return Some("this looks like a root, such as a standard deviation: square it with `^2`".to_string());
     }
     if found.is_plain() {
+        let example = match unit {
+            Some(unit) => unit.text().to_string(),
+            None if wanted == Dimension::TIME => "s` or `year".to_string(),
+            None if wanted == Dimension::ANGULAR_FREQUENCY => "Hz` or `rad/s".to_string(),
+            None => wanted.si_name(),
+        };
+        return Some(format!("write the unit behind the number, such as `{example}`"));
+    }
+    if wanted.is_plain() {
         return Some(format!(
-            "write the unit behind the number, such as `{}`",
-            wanted.si_name()
+            "divide it by something in {}, or leave the unit out",
+            found.si_name()
         ));
+    }
+    if (found, wanted) == (Dimension::TIME, Dimension::ANGULAR_FREQUENCY) {
+        return Some("write `1 turn / ...` to make a frequency of a period".to_string());
     }
     let factor = wanted.over(found)?;
     Some(format!(
-        "a factor in {} is missing, or a unit is wrong",
+        "multiply it by something in {}, or correct a unit",
         factor.si_name()
     ))
 }
 
-/// `a force (kN)`: a dimension in words, with the unit it was written in.
+/// `a force in kN`: a dimension in words, with the unit it was written in.
 fn dimension_in_words(dimension: Dimension, unit: Option<&Rc<Unit>>) -> String {
     match unit {
-        Some(unit) if unit.text() != "1" => format!("{} ({})", dimension.describe(), unit.text()),
+        Some(unit) if unit.text() != "1" => format!("{} in {}", dimension.describe(), unit.text()),
         _ => dimension.describe(),
     }
 }

@@ -8,6 +8,7 @@ mod expectation;
 mod kernel;
 mod limit_state;
 mod mismatch;
+mod not_yet;
 mod operations;
 mod process;
 mod table;
@@ -28,11 +29,12 @@ use crate::language::tree::{
 use crate::source::Span;
 use crate::units::{self, Cause, Dimension, Unit};
 use kernel::KernelDefinition;
+use not_yet::Later;
 use std::collections::HashMap;
 use std::rc::Rc;
 
 /// Terms of all forms of a model together; beyond this the model is refused, not computed for hours.
-const MOST_TERMS: usize = 20_000_000;
+const MOST_TERMS: usize = 2_000_000;
 
 /// What an expression sees around it.
 #[derive(Clone, Copy)]
@@ -226,14 +228,14 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             DeclarationKind::Function {
                 keyword: FunctionKeyword::Profile,
                 ..
-            } => self.not_yet(declaration.keyword, "profiles of time"),
+            } => self.not_yet(declaration.keyword, Later::Profiles),
             DeclarationKind::Function {
                 keyword: FunctionKeyword::Spectrum,
                 ..
-            } => self.not_yet(declaration.keyword, "spectra"),
-            DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, "climates"),
-            DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, "correlated variables"),
-            DeclarationKind::Accept { .. } => self.not_yet(declaration.keyword, "accepted warnings"),
+            } => self.not_yet(declaration.keyword, Later::Spectra),
+            DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, Later::Climates),
+            DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, Later::Correlations),
+            DeclarationKind::Accept { .. } => self.not_yet(declaration.keyword, Later::Acceptances),
             DeclarationKind::LimitState { name, lines, close } => {
                 self.limit_state(item, name, lines, *close);
             }
@@ -244,19 +246,6 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             } => self.expectation(item, declaration, quantity, value, tolerance),
         }
         Value::Fault
-    }
-
-    /// One clear sentence for what the language has and this version does not compute.
-    fn not_yet(&mut self, place: Span, what: &str) {
-        self.report(
-            Diagnostic::new(
-                Code::LanguageNotYet,
-                place,
-                format!("this version does not compute {what} yet"),
-            )
-            .here("part of the language, but not of this version")
-            .help("leave it out, or say the same with processes and kernels"),
-        );
     }
 
     fn definition(
@@ -270,8 +259,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     ) -> Value {
         let scope = Scope::plain(self.names.item(item).instance);
         match keyword {
-            DefinitionKeyword::Variable => self.not_yet(declaration.keyword, "random variables"),
-            DefinitionKeyword::Quantity => self.not_yet(declaration.keyword, "quantities in time and variables"),
+            DefinitionKeyword::Variable => self.not_yet(declaration.keyword, Later::Variables),
+            DefinitionKeyword::Quantity => self.not_yet(declaration.keyword, Later::Quantities),
             DefinitionKeyword::Constant => {
                 let declared = unit.map(|unit| self.unit(unit));
                 let value = self.value(expression, scope);
@@ -516,6 +505,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         };
         let name_text = &name.text;
         match self.names.parts().arguments(instance) {
+            // Named wrongly or not at all: that is said where the `use` is looked at.
+            Some((_, _, arguments)) if self.meant_by(arguments, instance, name_text) => {}
             Some((origin, part, _)) => {
                 let user = self.names.parts().declaration(origin.user, origin.declaration);
                 let message = format!("the part `{}` needs its parameter `{name_text}`", part.text);
@@ -541,6 +532,17 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             }
             None => {}
         }
+    }
+
+    /// Whether one of the arguments of a `use` may have been meant to set a parameter, though it does not name it.
+    fn meant_by(&self, arguments: &[crate::language::tree::Argument], made: InstanceId, parameter: &str) -> bool {
+        arguments.iter().any(|argument| match &argument.name {
+            None => true,
+            Some(word) => {
+                let known = self.names.find(made, &word.text).is_some();
+                !known && !names::near(&word.text, std::iter::once(parameter)).is_empty()
+            }
+        })
     }
 
     /// Reports arguments of a `use` that name no parameter of the part, or one twice.
@@ -632,18 +634,30 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                     };
                     let mut finding = Diagnostic::new(Code::UnitUnknown, place, message);
                     let meant = choice(&one.suggestions).map(|near| format!("did you mean {near}?"));
-                    finding.help = match (meant, one.note) {
-                        (Some(meant), Some(note)) => Some(format!("{meant} {note}")),
-                        (meant, note) => meant.or(note),
-                    };
-                    if finding.help.is_none() {
-                        finding.help = Some("to multiply or divide by a name, put blanks around the `*` or `/`".into());
-                    }
+                    finding.help = Some(match (meant, one.note) {
+                        _ if self.is_declared(&one.symbol, place) => {
+                            format!(
+                                "`{}` is declared here: to multiply by it, write ` * ` before it",
+                                one.symbol
+                            )
+                        }
+                        (Some(meant), Some(note)) => format!("{meant} {note}"),
+                        (Some(meant), None) => meant,
+                        (None, Some(note)) => note.to_string(),
+                        (None, None) => "to multiply or divide by a name, put blanks around the `*` or `/`".to_string(),
+                    });
                     self.report(finding);
                 }
                 None
             }
         }
+    }
+
+    /// Whether the file of a place declares a name.
+    fn is_declared(&self, name: &str, place: Span) -> bool {
+        let mut instances = (0_u32..).map(InstanceId).zip(&self.names.parts().instances);
+        let there = instances.find(|(_, instance)| instance.tree.file == place.file);
+        there.is_some_and(|(id, _)| self.names.find(id, name).is_some() || self.names.is_lost(id, name))
     }
 
     /// The value a name stands for.
@@ -657,7 +671,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 name if self.names.find(scope.instance, name).is_some() => {}
                 "pi" => return Value::Scalar(Scalar::new(Number::Known(std::f64::consts::PI), Dimension::PLAIN)),
                 "t" => {
-                    self.not_yet(path.span, "quantities that change with the time `t`");
+                    self.not_yet(path.span, Later::Time);
                     return Value::Fault;
                 }
                 _ => {}
@@ -690,7 +704,21 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 _,
             ) => {
                 let help = format!("call it with its arguments: `{}(...)`", word_text(path));
-                self.wrong_kind(path.span, "a kernel", "a quantity", &help);
+                if scope.context == Context::Kernel {
+                    self.wrong_kind(
+                        path.span,
+                        "the name of a kernel",
+                        "the kernel with its arguments",
+                        &help,
+                    );
+                } else {
+                    self.wrong_kind(path.span, "a kernel", "a quantity", &help);
+                }
+                Value::Fault
+            }
+            (_, Some(Value::Form(_))) if scope.context == Context::Kernel => {
+                let help = "a kernel is made of the lag, its arguments, constants and other kernels";
+                self.wrong_kind(path.span, "a process", "a part of a kernel", help);
                 Value::Fault
             }
             (_, Some(value)) => value.clone(),

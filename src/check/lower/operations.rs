@@ -1,5 +1,6 @@
 //! Linear operations on processes.
 
+use super::not_yet::Later;
 use super::{Lowering, Scope};
 use crate::check::value::{Number, Value, Varying};
 use crate::diagnostics::{Code, Diagnostic};
@@ -19,11 +20,11 @@ impl Lowering<'_, '_, '_> {
             "derivative" => self.derivative(call, scope),
             "delay" => self.delay(call, scope),
             "average" => {
-                self.not_yet(call.function.span, "averages of processes");
+                self.not_yet(call.function.span, Later::Averages);
                 Value::Fault
             }
             _ => {
-                self.not_yet(call.function.span, "responses of systems");
+                self.not_yet(call.function.span, Later::Responses);
                 Value::Fault
             }
         }

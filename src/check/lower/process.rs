@@ -2,6 +2,7 @@
 
 use super::arguments::Arguments;
 use super::covariance::{constant_of, table_notes};
+use super::not_yet::Later;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::Kind;
 use crate::check::names::ItemId;
@@ -39,6 +40,8 @@ struct Subject<'a> {
 struct Description {
     mean: f64,
     kernel: Kernel,
+    /// Where the kernel stands.
+    place: Span,
     dimension: Dimension,
     unit: Option<Rc<Unit>>,
     /// What was taken for granted, for the reader of results.
@@ -70,7 +73,7 @@ impl Lowering<'_, '_, '_> {
         let Some(description) = self.description(call, subject) else {
             return Value::Fault;
         };
-        self.sample_for_validity(&description.kernel, expression.span)
+        self.sample_for_validity(&description.kernel, description.place)
             .and_then(|()| self.finish(item, name, description))
             .unwrap_or(Value::Fault)
     }
@@ -84,29 +87,15 @@ impl Lowering<'_, '_, '_> {
         Value::Fault
     }
 
-    /// A correlation function times a variance, which must be a number that can be divided by.
-    fn scaled(&mut self, kernel: Kernel, variance: f64, place: Span) -> Option<Kernel> {
-        if variance.is_normal()
-            && let Ok(kernel) = kernel.scaled(variance)
-        {
-            return Some(kernel);
-        }
-        let message = "the variance of this process is beyond the range of numbers";
-        self.report(Diagnostic::new(Code::ValueNotFinite, place, message).help(
-            "check the unit of the standard deviation: its square must lie between 1e-307 and 1e308 in SI units",
-        ));
-        None
-    }
-
     fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
         let mut notes = description.notes;
         notes.extend(table_notes(&description.kernel, &self.names.full_name(item)));
         let source = Source::new(self.names.full_name(item), description.kernel, name.span, notes);
         if let Smoothness::Unclear { reason } = source.smoothness() {
             let message = format!("it cannot be told how smooth the process `{}` is", name.text);
-            let finding = Diagnostic::new(Code::KernelUnclear, name.span, message)
+            let finding = Diagnostic::new(Code::KernelUnclear, description.place, message)
                 .here(reason.clone())
-                .help("write the kernel so that its behaviour at lag 0 can be read off, without min, max or abs there");
+                .help("write the kernel so that it begins as 1 less a power of the lag");
             self.report(finding);
             return None;
         }
@@ -115,10 +104,16 @@ impl Lowering<'_, '_, '_> {
     }
 
     fn description(&mut self, call: &Call, subject: Subject<'_>) -> Option<Description> {
-        let arguments = self.arguments(call, &[], ARGUMENTS)?;
+        let Some(arguments) = self.arguments(call, &[], ARGUMENTS) else {
+            // What was meant is not known, but what is wrong within can be said all the same.
+            for argument in &call.arguments {
+                self.value(&argument.value, subject.scope.in_kernel());
+            }
+            return None;
+        };
         let name = &subject.name.text;
         if let Some(word) = arguments.word("spectrum") {
-            self.not_yet(word.span, "processes from spectra");
+            self.not_yet(word.span, Later::Spectra);
             return None;
         }
         let given = |names: &[&str]| -> Vec<Span> {
@@ -193,6 +188,7 @@ impl Lowering<'_, '_, '_> {
                     .help("add `correlation: ...`, such as `matern(smoothness: 5/2, length: 10 s)`"),
             );
         }
+        let given = deviation.or(variation);
         let mean = self.mean(arguments, subject);
         let scatter = match (deviation, variation) {
             (Some(expression), _) => self.deviation(expression, mean.as_ref(), subject),
@@ -207,13 +203,34 @@ impl Lowering<'_, '_, '_> {
         let (mean, deviation, kernel) = (mean?, scatter?, kernel?);
         let mean_value = known(&mean)?;
         let value = known(&deviation)?;
+        let place = correlation.map_or(call.brackets, |expression| expression.span);
+        let variance = value * value;
+        if !variance.is_normal() {
+            let place = given.map_or(call.brackets, |expression| expression.span);
+            self.variance_beyond_bounds(place, subject);
+            return None;
+        }
+        let kernel = kernel.scaled(variance).ok()?;
         Some(Description {
             mean: mean_value,
-            kernel: self.scaled(kernel, value * value, call.brackets)?,
+            kernel,
+            place,
             dimension: deviation.dimension,
             unit: mean.unit.clone().or(deviation.unit),
             notes: Vec::new(),
         })
+    }
+
+    /// A variance that no double holds.
+    fn variance_beyond_bounds(&mut self, place: Span, subject: Subject<'_>) {
+        let message = format!(
+            "the square of the standard deviation of `{}` is beyond all bounds",
+            subject.name.text
+        );
+        self.report(
+            Diagnostic::new(Code::ValueRange, place, message)
+                .help("check its unit: the square must lie between 1e-307 and 1.8e308 in SI units"),
+        );
     }
 
     /// The mean; a bare 0 where none is given. `None` where it is at fault.
@@ -303,6 +320,7 @@ impl Lowering<'_, '_, '_> {
         Some(Description {
             mean: known(&mean)?,
             kernel: covariance.kernel,
+            place: expression.span,
             dimension,
             unit: mean.unit,
             notes: Vec::new(),
@@ -344,7 +362,10 @@ impl Lowering<'_, '_, '_> {
         let dimension = self.root_dimension(&raw, expression.span, &mean, subject)?;
         let mean_value = known(&mean)?;
         let square = mean_value * mean_value;
-        let unit = Unit::si(raw.dimension);
+        let unit = mean.unit.as_ref().and_then(|unit| unit.power(2));
+        let unit = unit
+            .filter(|unit| unit.dimension() == raw.dimension)
+            .unwrap_or_else(|| Unit::si(raw.dimension));
         let at_zero = self.at_zero(&raw.kernel, expression.span)?;
         if at_zero <= square {
             let (total, square) = (show(at_zero, &unit, 6), show(square, &unit, 6));
@@ -388,6 +409,7 @@ impl Lowering<'_, '_, '_> {
         Some(Description {
             mean: mean_value,
             kernel,
+            place: expression.span,
             dimension,
             unit: mean.unit,
             notes,

@@ -135,6 +135,10 @@ impl Lowering<'_, '_, '_> {
                 return None;
             }
         };
+        if headers.is_empty() {
+            self.table_fault(Span::new(file, 0, 0), named, "this file is empty");
+            return None;
+        }
         let head = headers.position().map_or(0, |position| position.byte() as usize) + offset;
         let head = line_from(&text, head).map_or(Span::new(file, 0, 0), |range| Span::new(file, range.0, range.1));
         let found: Vec<Option<(usize, Rc<Unit>)>> = wanted
@@ -211,10 +215,13 @@ impl Lowering<'_, '_, '_> {
             Unit::one()
         } else {
             match header_unit(head.file, text) {
-                Some(unit) => unit,
-                None => {
+                Ok(unit) => unit,
+                Err(suggestions) => {
                     let message = format!("the unit `{text}` of the column `{}` cannot be read", wanted.name);
-                    self.table_fault(head, named, &message);
+                    let mut finding =
+                        Diagnostic::new(Code::TableContent, head, message).label(named, "the file is named here");
+                    finding.help = choice(&suggestions).map(|near| format!("did you mean {near}?"));
+                    self.report(finding);
                     return None;
                 }
             }
@@ -239,12 +246,17 @@ impl Lowering<'_, '_, '_> {
     }
 }
 
-/// The unit of a column, read as the language reads it behind a number.
-fn header_unit(file: FileId, text: &str) -> Option<Unit> {
-    let expression = parse_expression(file, &format!("1 {text}")).ok()?;
+/// The unit of a header, or the units that may have been meant.
+fn header_unit(file: FileId, text: &str) -> Result<Unit, Vec<String>> {
+    let expression = parse_expression(file, &format!("1 {text}")).map_err(|_| Vec::new())?;
     match &expression.kind {
-        ExpressionKind::Number(number) => units::resolve(number.unit.as_ref()?).ok(),
-        _ => None,
+        ExpressionKind::Number(number) => match &number.unit {
+            Some(unit) => {
+                units::resolve(unit).map_err(|unknown| unknown.into_iter().flat_map(|one| one.suggestions).collect())
+            }
+            None => Err(Vec::new()),
+        },
+        _ => Err(Vec::new()),
     }
 }
 
