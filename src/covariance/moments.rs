@@ -15,6 +15,7 @@ use super::first_moment;
 use super::form::{Exact, LinearForm, Operator, SourceId, Term};
 use super::kernel::{self, Kernel, Smoothness, SpectralMoments};
 use super::source::Source;
+use nalgebra::{DMatrix, DVector};
 use std::cell::{OnceCell, RefCell};
 use std::collections::HashMap;
 use std::rc::Rc;
@@ -184,6 +185,30 @@ impl<'s> MomentTable<'s> {
         }
     }
 
+    /// The covariance of two forms, `Cov[one(t), other(t + lag)]`, in the product of their units: the sum over the sources
+    /// they share. The lag is in s, of either sign.
+    pub fn covariance(&self, one: &LinearForm, other: &LinearForm, lag: f64) -> Moment {
+        let mut sum = Sum::default();
+        let mut others = other.by_source().peekable();
+        for (source, terms) in one.by_source() {
+            // Both walks rise through the sources.
+            while others.next_if(|(earlier, _)| *earlier < source).is_some() {}
+            let Some((_, shared)) = others.next_if(|(same, _)| *same == source) else {
+                continue;
+            };
+            for a in terms {
+                for b in shared {
+                    let order = (a.operator.derivatives + b.operator.derivatives) as usize;
+                    let parity = if a.operator.derivatives % 2 == 1 { -1.0 } else { 1.0 };
+                    let at = lag + a.operator.delay - b.operator.delay;
+                    let weight = parity * a.coefficient() * b.coefficient();
+                    sum.add(self.derivative(source, order, at).times(weight));
+                }
+            }
+        }
+        sum.moment()
+    }
+
     fn kernel(&self, source: SourceId) -> &'s Kernel {
         &self.sources[source.0 as usize].kernel
     }
@@ -212,26 +237,42 @@ impl<'s> MomentTable<'s> {
         [variance, first, curvature, fourth]
     }
 
-    /// lambda_n for an even n: (-1)^(n/2) times the n-th derivative of the covariance at lag 0.
+    /// lambda_n for an even n, (-1)^(n/2) times the n-th derivative of the covariance at lag 0: a quadratic form in the
+    /// coefficients, its matrix made of derivatives of the kernel at the differences of delays.
     fn even(&self, source: SourceId, terms: &[Term], n: usize) -> Moment {
         let sign = if n % 4 == 2 { -1.0 } else { 1.0 };
-        let mut sum = Sum::default();
-        for (index, one) in terms.iter().enumerate() {
-            for (other_index, other) in terms.iter().enumerate().skip(index) {
-                // The pair (j, i) gives what the pair (i, j) gives.
-                let both = if other_index == index { 1.0 } else { 2.0 };
-                let parity = if one.operator.derivatives % 2 == 1 { -1.0 } else { 1.0 };
-                let weight = sign * both * parity * one.coefficient() * other.coefficient();
-                let order = (one.operator.derivatives + other.operator.derivatives) as usize + n;
-                let lag = one.operator.delay - other.operator.delay;
-                sum.add(self.derivative(source, order, lag).times(weight));
+        let mut spoilt = Moment::ZERO;
+        let matrix = DMatrix::from_fn(terms.len(), terms.len(), |row, column| {
+            let (one, other) = (&terms[row].operator, &terms[column].operator);
+            let parity = if one.derivatives % 2 == 1 { -sign } else { sign };
+            let order = (one.derivatives + other.derivatives) as usize + n;
+            match self.derivative(source, order, one.delay - other.delay) {
+                Moment::Finite { value, .. } => parity * value,
+                not_finite => {
+                    spoilt = spoilt.plus(not_finite);
+                    0.0
+                }
             }
+        });
+        if spoilt != Moment::ZERO {
+            return spoilt;
         }
-        match sum.cancelled() {
-            true if n == 0 => self
-                .variance_by_differences(source, terms)
-                .unwrap_or_else(|| sum.moment()),
-            _ => sum.moment(),
+        let coefficients = DVector::from_iterator(terms.len(), terms.iter().map(Term::coefficient));
+        let value = coefficients.dot(&(&matrix * &coefficients));
+        let sizes = coefficients.abs();
+        let size = sizes.dot(&(matrix.abs() * &sizes));
+        if n == 0
+            && value.abs() < 1e-3 * size
+            && let Some(variance) = self.variance_by_differences(source, terms)
+        {
+            return variance;
+        }
+        if !value.is_finite() {
+            return Moment::Unreached;
+        }
+        Moment::Finite {
+            value,
+            error: size * (CLOSED_FORM + f64::EPSILON * terms.len() as f64),
         }
     }
 
@@ -385,11 +426,6 @@ impl Sum {
         }
     }
 
-    /// Whether more than three digits went in the sum.
-    fn cancelled(&self) -> bool {
-        self.spoilt.is_none() && self.value.value().abs() < 1e-3 * self.size
-    }
-
     fn moment(self) -> Moment {
         self.spoilt.unwrap_or_else(|| {
             let value = self.value.value();
@@ -402,5 +438,62 @@ impl Sum {
                 Moment::Unreached
             }
         })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::covariance::kernel::SquaredExponential;
+    use crate::source::{FileId, Span};
+
+    fn sources() -> Vec<Source> {
+        let source = |name: &str, length: f64| {
+            let kernel = SquaredExponential::new(length).expect("a positive length").into();
+            Source::new(name.into(), kernel, Span::new(FileId(0), 0, 0), Vec::new())
+        };
+        vec![source("x", 1.0), source("y", 2.0)]
+    }
+
+    fn value(moment: Moment) -> f64 {
+        moment.value().expect("a known moment")
+    }
+
+    /// Closed forms of exp(-tau²/2) and its derivatives; signs by Cramér and Leadbetter 1967, sec. 9.3:
+    /// Cov[X'(t), X(t + tau)] = -K'(tau), Cov[X(t), X'(t + tau)] = K'(tau).
+    #[test]
+    fn covariances_between_forms() {
+        let sources = sources();
+        let table = MomentTable::new(&sources);
+        let x = LinearForm::source(7.0, SourceId(0));
+        let y = LinearForm::source(-3.0, SourceId(1));
+        let k = |tau: f64| (-0.5 * tau * tau).exp();
+        let slope = |tau: f64| -tau * k(tau);
+        let close = |a: f64, b: f64| assert!((a - b).abs() < 1e-14, "{a} against {b}");
+        close(value(table.covariance(&x, &y, 0.3)), 0.0);
+        close(value(table.covariance(&x, &x.delayed(0.5), 2.0)), k(1.5));
+        close(value(table.covariance(&x.derivative(), &x, 0.7)), -slope(0.7));
+        close(value(table.covariance(&x, &x.derivative(), 0.7)), slope(0.7));
+        close(value(table.covariance(&x, &x.derivative(), -0.7)), slope(-0.7));
+        let mixed = LinearForm::combination([(2.0, &x), (-1.0, &y), (0.5, &x.derivative())]);
+        let expected = 2.0 * k(1.0) - 0.5 * slope(1.0);
+        close(value(table.covariance(&mixed, &x, 1.0)), expected);
+        // Both orders: Cov[A(t), B(t + tau)] = Cov[B(t), A(t - tau)].
+        close(value(table.covariance(&x, &mixed, -1.0)), expected);
+    }
+
+    #[test]
+    fn small_differences_keep_their_digits() {
+        let sources = sources();
+        let table = MomentTable::new(&sources);
+        let x = LinearForm::source(0.0, SourceId(0));
+        let step = 1e-6;
+        let difference = LinearForm::combination([(1.0, &x), (-1.0, &x.delayed(step))]);
+        let variance = value(table.moments(&difference).lambda[0]);
+        let expected = -2.0 * (-0.5 * step * step).exp_m1();
+        assert!(
+            (variance / expected - 1.0).abs() < 1e-12,
+            "{variance} against {expected}"
+        );
     }
 }

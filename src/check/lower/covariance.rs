@@ -75,6 +75,20 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
+    /// A constant among the terms of a correlation is a part of the process that never changes.
+    pub(super) fn no_constant_term(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
+        if !has_constant_term(kernel) {
+            return Some(());
+        }
+        let message = "a correlation function cannot hold a constant: that part of the process would never change";
+        self.report(
+            Diagnostic::new(Code::KernelInvalid, place, message)
+                .here("has a constant term")
+                .help("leave it out, or give the function as `autocovariance` if a part is drawn once for all time"),
+        );
+        None
+    }
+
     pub(super) fn one_at_zero(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
         let at_zero = self.at_zero(kernel, place)?;
         if (at_zero - 1.0).abs() <= ONE {
@@ -181,6 +195,16 @@ impl Lowering<'_, '_, '_> {
                 .help(help),
         );
         None
+    }
+}
+
+fn has_constant_term(kernel: &Kernel) -> bool {
+    match kernel {
+        Kernel::Constant => true,
+        Kernel::Scaled(_, inner) => has_constant_term(inner),
+        Kernel::Sum(terms) => terms.iter().any(has_constant_term),
+        Kernel::Product(factors) => factors.iter().all(has_constant_term),
+        Kernel::Family(_) | Kernel::Tabulated(_) | Kernel::User(_) => false,
     }
 }
 

@@ -36,6 +36,9 @@ use std::rc::Rc;
 /// Terms of all forms of a model together; beyond this the model is refused, not computed for hours.
 const MOST_TERMS: usize = 2_000_000;
 
+/// Pairs of terms over one source, in all forms of a model together: each pair is a lag at which a kernel is needed.
+const MOST_PAIRS: usize = 1_000_000;
+
 /// What an expression sees around it.
 #[derive(Clone, Copy)]
 struct Scope<'a> {
@@ -83,6 +86,8 @@ pub struct Lowering<'p, 'l, 'f> {
     kernels: HashMap<ItemId, KernelDefinition>,
     tables: HashMap<std::path::PathBuf, Option<Rc<table::Table>>>,
     terms: usize,
+    /// Pairs of terms over one source, in all forms together.
+    pairs: usize,
     /// How many kernels made of kernels are being looked into, and how many have been.
     expansion_depth: usize,
     expansions: usize,
@@ -105,6 +110,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             kernels: HashMap::new(),
             tables: HashMap::new(),
             terms: 0,
+            pairs: 0,
             expansion_depth: 0,
             expansions: 0,
             model: Model::empty(tree.file),
@@ -123,7 +129,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             let value = self.item(*item);
             self.note_if_lost(*item, &value);
             self.values[item.index()] = Some(value);
-            if self.terms > MOST_TERMS {
+            if self.terms > MOST_TERMS || self.pairs > MOST_PAIRS {
                 self.too_large(*item);
                 break;
             }
@@ -148,11 +154,18 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
 
     fn too_large(&mut self, item: ItemId) {
         let place = place(self.names.declaration(item));
-        let message = format!("the processes and margins up to here have more than {MOST_TERMS} terms together");
-        self.report(
-            Diagnostic::new(Code::ModelTooLarge, place, message)
-                .help("build margins from fewer sources: sums of sums grow with every step"),
-        );
+        let (message, help) = if self.terms > MOST_TERMS {
+            (
+                format!("the processes and margins up to here have more than {MOST_TERMS} terms together"),
+                "build margins from fewer sources: sums of sums grow with every step",
+            )
+        } else {
+            (
+                format!("the processes and margins up to here pair more than {MOST_PAIRS} delays of one process"),
+                "use fewer delays of one process: the work grows as their square",
+            )
+        };
+        self.report(Diagnostic::new(Code::ModelTooLarge, place, message).help(help));
     }
 
     /// Items were met in the order of their needs; people read them in the order of the text.
@@ -906,6 +919,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         unit: Option<Rc<Unit>>,
     ) -> Value {
         self.terms = self.terms.saturating_add(form.terms().len());
+        let several = form.by_source().filter(|(_, terms)| terms.len() > 1);
+        self.pairs = several.fold(self.pairs, |pairs, (_, terms)| pairs.saturating_add(terms.len().pow(2)));
         Value::Form(Varying {
             form: Rc::new(form),
             dimension,

@@ -198,6 +198,7 @@ impl Lowering<'_, '_, '_> {
         let kernel = correlation.and_then(|expression| {
             let kernel = self.kernel(expression, subject.scope, Dimension::PLAIN, "a correlation function")?;
             self.one_at_zero(&kernel, expression.span)?;
+            self.no_constant_term(&kernel, expression.span)?;
             Some(kernel)
         });
         let (mean, deviation, kernel) = (mean?, scatter?, kernel?);
