@@ -431,7 +431,7 @@ impl Lowering<'_, '_, '_> {
                 self.report(
                     Diagnostic::new(Code::TypeNonlinear, base.span, "a power of a process is not Gaussian")
                         .here("this varies in time")
-                        .help("the base would have to be a constant"),
+                        .help("use its tangent at the mean, such as `mean * (2 * X - mean)` for the square of X"),
                 );
                 return Value::Fault;
             }
