@@ -186,7 +186,8 @@ impl Lowering<'_, '_, '_> {
                 scalars.push((name, scalar));
             }
         }
-        if scalars.len() < definition.parameters.len() {
+        let unset = scalars.iter().any(|(_, scalar)| scalar.value == Number::Unset);
+        if unset || scalars.len() < definition.parameters.len() {
             return Value::Fault;
         }
         let known: Option<Vec<(String, f64)>> = scalars
@@ -351,8 +352,8 @@ impl Lowering<'_, '_, '_> {
                 .and_then(|expression| self.number(expression, scope, *dimension, &format!("`{name}`"), None));
             match scalar.map(|scalar| scalar.value) {
                 Some(Number::Known(value)) => *slot = value,
-                Some(_) => known = false,
-                None => sound = false,
+                Some(Number::Open(_)) => known = false,
+                Some(Number::Unset) | None => sound = false,
             }
         }
         if sound { Ok(known.then_some(values)) } else { Err(()) }
@@ -427,8 +428,10 @@ impl Lowering<'_, '_, '_> {
             None => ("length", self.required(&arguments, "length", "10 s")?),
         };
         let length = self.number(expression, scope, Dimension::TIME, &format!("`{name}`"), None)?;
-        let (Some(values), Number::Known(length)) = (values.ok()?, length.value) else {
-            return Some(Kernel::Constant);
+        let (values, length) = match (values.ok()?, length.value) {
+            (_, Number::Unset) => return None,
+            (Some(values), Number::Known(length)) => (values, length),
+            _ => return Some(Kernel::Constant),
         };
         let family = build(values);
         if fluctuation.is_none() {
