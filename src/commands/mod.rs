@@ -43,6 +43,20 @@ check. Requirements of local codes and authorities go first.
 Exit status: 0 all requirements and expectations hold; 1 one does not; 2 the model, a file or the command line is wrong;
 3 a result could not be reached to its tolerance.";
 
+const CHECK_STATUS: &str = "\
+Findings go to standard error, a line that counts what the model has to standard output.
+
+Exit status: 0 nothing wrong (there may be warnings); 2 a model, a data file or the command line is wrong.";
+
+const EVALUATE_STATUS: &str = "\
+Results go to standard output, findings to standard error. With --json, all numbers are in coherent SI units; several
+files give an array.
+
+Exit status: 0 all requirements and expectations hold; 1 one does not; 2 a model, a data file or the command line is
+wrong and nothing was computed; 3 a result could not be reached to its tolerance.
+
+Results do not replace the code of practice that applies, the judgement of a licensed engineer, or an independent check.";
+
 /// Checks and computes stochastic limit states: whether a margin of Gaussian processes stays positive for years.
 #[derive(Parser)]
 #[command(name = "outcross", version, styles = Styles::plain(), after_help = CAUTION, max_term_width = 100)]
@@ -64,8 +78,10 @@ enum ColorChoice {
 #[derive(Subcommand)]
 enum Command {
     /// Check names, parts, units, kinds and kernels; every problem is shown, not the first
+    #[command(after_help = CHECK_STATUS)]
     Check(CheckArguments),
     /// Check, then compute moments, crossing rates, survival, requirements and expectations
+    #[command(after_help = EVALUATE_STATUS)]
     Evaluate(EvaluateArguments),
     /// Explain a code of a finding, such as `unit/mismatch`, with an example and the mend
     Explain(ExplainArguments),
@@ -76,7 +92,7 @@ struct ModelArguments {
     /// Model files (`.limit`); `-` reads standard input
     #[arg(required = true, value_name = "FILE")]
     files: Vec<PathBuf>,
-    /// Set a parameter of the file, with its unit: `--set rod_diameter="36 mm"`; may be repeated
+    /// Set a parameter of the file in any unit of its dimension: `--set rod_diameter="36 mm"`; may be repeated
     #[arg(long = "set", value_name = "NAME=VALUE")]
     set: Vec<String>,
     /// Write a JSON document to standard output
