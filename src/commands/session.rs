@@ -101,6 +101,11 @@ pub(super) fn print(write: impl FnOnce(&mut dyn Write) -> io::Result<()>) -> io:
     unless_gone(written)
 }
 
+/// Says something on standard error, if anybody listens.
+pub(super) fn complain(words: &str) -> io::Result<()> {
+    unless_gone(writeln!(io::stderr(), "outcross: {words}"))
+}
+
 fn unless_gone(written: io::Result<()>) -> io::Result<()> {
     match written {
         Err(error) if error.kind() == io::ErrorKind::BrokenPipe => Ok(()),

@@ -159,7 +159,9 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
         ],
         vec![
             "entries into failure".to_string(),
-            known(result.upcrossing_rate, |rate| entries(rate, &limit_state.reference_period.unit)),
+            known(result.upcrossing_rate, |rate| {
+                entries(rate, &limit_state.reference_period.unit)
+            }),
         ],
         vec![
             "mean time to failure".to_string(),
@@ -199,7 +201,7 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
 /// A rate per unit of the reference period, in which people compare it with the period: `5.7e-7 /year`.
 fn entries(rate: f64, period: &Unit) -> String {
     match Unit::one().over(period) {
-        Some(unit) => show(rate, &unit, DIGITS),
+        Some(unit) => format!("{} {}", small(unit.from_si(rate)), unit.text()),
         None => format!("{} /s", small(rate)),
     }
 }

@@ -46,3 +46,30 @@ fn examples_show_results_in_the_units_of_their_trade() {
         }
     });
 }
+
+const README: &str = include_str!("../../README.md");
+
+/// What stands in a block of the readme that begins with this line.
+fn of_readme(fence: &str) -> &'static str {
+    let (_, from) = README
+        .split_once(&format!("\n{fence}\n"))
+        .expect("the readme has the block");
+    from.split_once("```").expect("a block ends").0
+}
+
+fn without_digest(text: &str) -> String {
+    let lines = text.lines().map(|line| line.split(" (SHA-256").next().unwrap_or(line));
+    lines.collect::<Vec<_>>().join("\n")
+}
+
+#[test]
+fn the_readme_shows_the_example_and_what_it_prints() {
+    let name = "footbridge_hanger.limit";
+    let file = fs::read_to_string(Path::new(env!("CARGO_MANIFEST_DIR")).join("examples").join(name));
+    assert_eq!(
+        of_readme("```limit examples/footbridge_hanger.limit"),
+        file.expect("the example can be read")
+    );
+    let run = run("evaluate", name).ends_with(0);
+    assert_eq!(without_digest(of_readme("```text")), without_digest(&run.out));
+}

@@ -59,7 +59,7 @@ fn faults_of_a_setting_are_shown_in_its_text() {
         ("level", "syntax/unexpected", "NAME=VALUE"),
         ("level=", "syntax/unexpected", "--set"),
         ("level=6 kN)", "syntax/unexpected", "--set"),
-        ("level=6 qN", "unit/unknown", "qN"),
+        ("level=6 furlong", "unit/unknown", "furlong"),
         ("level=1e999 kN", "value/not-finite", "1e999"),
         ("pull=6 kN", "name/unknown", "pull"),
     ] {
@@ -73,7 +73,7 @@ fn faults_of_a_setting_are_shown_in_its_text() {
 
 #[test]
 fn a_parameter_of_a_part_is_not_reached() {
-    let folder = Folder::with("a.limit", "use \"b.limit\" as b (level: 3 kN)");
+    let folder = Folder::with("a.limit", "use \"b.limit\" as b (level: 7 kN)");
     folder.write("b.limit", GUST);
     folder.run(["evaluate", "a.limit"]).ends_with(0);
     folder

@@ -8,14 +8,14 @@ const MODEL: &str = r#"
 parameter level : <force> = <18 kN>
 process swing : <force> = gaussian(
     mean: <2 kN>
-    autocovariance: (<1.5 kN>)^2 * oscillator(frequency: <0.2 Hz>, damping: <3 %>)
+    autocovariance: (<1.5 kN>)^2 * squared_exponential(length: <40 s>) * harmonic(frequency: <0.2 Hz>)
 )
 process drift : <force> = gaussian(
     standard_deviation: <0.8 kN>
     correlation: matern(smoothness: 5/2, length: <6 min>)
 )
 margin both : <force> = level - swing - 2 * delay(drift, by: <30 s>) - <2 s> * derivative(swing)
-limit state over {
+limit state late {
     failure when both < 0
     reference period <3 h>
     first passage poisson_safe_start
@@ -31,7 +31,7 @@ const SPELLINGS: [[&str; 2]; 11] = [
     ["2 kN", "2e-3 MN"],
     ["1.5 kN", "1500 N"],
     ["0.2 Hz", "1.2566370614359172 rad/s"],
-    ["3 %", "0.03"],
+    ["40 s", "40e3 ms"],
     ["0.8 kN", "0.8e6 mN"],
     ["6 min", "360 s"],
     ["30 s", "0.5 min"],
