@@ -5,7 +5,7 @@ use serde_json::Value;
 
 /// One model with blanks for its units.
 const MODEL: &str = r#"
-parameter level : <force> = <18 kN>
+parameter level : <force> = <24 kN>
 process swing : <force> = gaussian(
     mean: <2 kN>
     autocovariance: (<1.5 kN>)^2 * squared_exponential(length: <40 s>) * harmonic(frequency: <0.2 Hz>)
@@ -27,7 +27,7 @@ expect standard_deviation(swing) = <1.5 kN> within <15 N>
 
 /// The blanks, and the same quantities otherwise.
 const SPELLINGS: [[&str; 2]; 11] = [
-    ["18 kN", "18000 N"],
+    ["24 kN", "24000 N"],
     ["2 kN", "2e-3 MN"],
     ["1.5 kN", "1500 N"],
     ["0.2 Hz", "1.2566370614359172 rad/s"],
