@@ -1,6 +1,6 @@
 //! `outcross evaluate FILE...`
 
-use super::session::{Session, print};
+use super::session::{Session, complain, print};
 use super::{ColorChoice, EvaluateArguments, Status};
 use crate::check::names_near;
 use crate::report::text;
@@ -21,7 +21,7 @@ pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Resu
         return Ok(Status::Wrong);
     }
     if let Some(words) = unknown_limit_state(&sessions, &arguments.only) {
-        writeln!(io::stderr(), "outcross: {words}")?;
+        complain(&words)?;
         return Ok(Status::Wrong);
     }
     let mut documents: Vec<Results> = Vec::new();
@@ -51,7 +51,7 @@ pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Resu
         .flat_map(|results| results.out_of_reach(arguments.tolerance))
         .collect();
     for words in &out_of_reach {
-        writeln!(io::stderr(), "outcross: not reached to its tolerance: {words}")?;
+        complain(&format!("not reached to its tolerance: {words}"))?;
     }
     Ok(status(&documents, out_of_reach.is_empty()))
 }

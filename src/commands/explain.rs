@@ -1,6 +1,6 @@
 //! `outcross explain CODE`
 
-use super::session::print;
+use super::session::{complain, print};
 use super::{ExplainArguments, Status};
 use crate::check::names_near;
 use crate::diagnostics::Code;
@@ -22,7 +22,7 @@ pub(super) fn run(arguments: &ExplainArguments) -> io::Result<Status> {
                 Some(near) => format!("did you mean {near}?"),
                 None => "`outcross explain` lists them all".to_string(),
             };
-            writeln!(io::stderr(), "outcross: there is no code `{name}`; {help}")?;
+            complain(&format!("there is no code `{name}`; {help}"))?;
             Ok(Status::Wrong)
         }
     }

@@ -35,13 +35,39 @@ impl From<Status> for ExitCode {
     }
 }
 
+// Lines are short enough that no terminal but a narrow one breaks them again.
 const CAUTION: &str = "\
-Results are as good as the model and its assumptions: Gaussian, stationary processes and crossings counted as a Poisson
-process. They do not replace the code of practice that applies, the judgement of a licensed engineer, or an independent
-check. Requirements of local codes and authorities go first.
+Results are as good as the model and its assumptions: Gaussian, stationary processes and crossings
+counted as a Poisson process. They do not replace the code of practice that applies, the judgement
+of a licensed engineer, or an independent check. Requirements of local codes and authorities go
+first.
 
-Exit status: 0 all requirements and expectations hold; 1 one does not; 2 the model, a file or the command line is wrong;
-3 a result could not be reached to its tolerance.";
+Exit status
+  0   done; every requirement is met and every expectation holds
+  1   done; a requirement is not met or not established, or an expectation does not hold
+  2   the model, a data file or the command line is wrong; nothing was computed
+  3   a result could not be reached to its tolerance; what was computed is printed";
+
+const OF_CHECK: &str = "\
+Findings go to standard error; a line that counts what the model has goes to standard output.
+With --json, the findings are a document on standard output.
+
+Exit status
+  0   nothing is wrong (there may be warnings)
+  2   a model, a data file or the command line is wrong";
+
+const OF_EVALUATE: &str = "\
+Results go to standard output, findings to standard error. With --json, the results are a document
+in coherent SI units, or an array of them for several files.
+
+Exit status
+  0   done; every requirement is met and every expectation holds
+  1   done; a requirement is not met or not established, or an expectation does not hold
+  2   a model, a data file or the command line is wrong; nothing was computed
+  3   a result could not be reached to its tolerance; what was computed is printed
+
+Results do not replace the code of practice that applies, the judgement of a licensed engineer, or
+an independent check.";
 
 /// Checks and computes stochastic limit states: whether a margin of Gaussian processes stays positive for years.
 #[derive(Parser)]
@@ -64,8 +90,10 @@ enum ColorChoice {
 #[derive(Subcommand)]
 enum Command {
     /// Check names, parts, units, kinds and kernels; every problem is shown, not the first
+    #[command(after_help = OF_CHECK)]
     Check(CheckArguments),
     /// Check, then compute moments, crossing rates, survival, requirements and expectations
+    #[command(after_help = OF_EVALUATE)]
     Evaluate(EvaluateArguments),
     /// Explain a code of a finding, such as `unit/mismatch`, with an example and the mend
     Explain(ExplainArguments),
@@ -76,7 +104,7 @@ struct ModelArguments {
     /// Model files (`.limit`); `-` reads standard input
     #[arg(required = true, value_name = "FILE")]
     files: Vec<PathBuf>,
-    /// Set a parameter of the file, with its unit: `--set rod_diameter="36 mm"`; may be repeated
+    /// Set a parameter of the file in any unit of its dimension: `--set rod_diameter="36 mm"`; may be repeated
     #[arg(long = "set", value_name = "NAME=VALUE")]
     set: Vec<String>,
     /// Write a JSON document to standard output

@@ -66,8 +66,7 @@ impl Session {
             }
         };
         let mut out = io::BufWriter::new(error.lock());
-        terminal::write(&mut out, &self.files, &self.diagnostics, color)?;
-        out.flush()
+        unless_gone(terminal::write(&mut out, &self.files, &self.diagnostics, color).and_then(|()| out.flush()))
     }
 }
 
@@ -93,19 +92,30 @@ fn override_of(files: &mut Files, set: &str) -> Result<Overrides, Vec<Diagnostic
     })
 }
 
-/// Writes to standard output; a reader that has gone away ends the run without a word.
+/// Writes to standard output. A reader that has gone away does not change what the run ends with.
 pub(super) fn print(write: impl FnOnce(&mut dyn Write) -> io::Result<()>) -> io::Result<()> {
     let mut out = io::BufWriter::new(io::stdout().lock());
-    write(&mut out)?;
-    out.flush()
+    let written = write(&mut out).and_then(|()| out.flush());
+    // What is left in the buffer has no reader either.
+    let _ = out.into_parts();
+    unless_gone(written)
+}
+
+/// Says something on standard error, if anybody listens.
+pub(super) fn complain(words: &str) -> io::Result<()> {
+    unless_gone(writeln!(io::stderr(), "outcross: {words}"))
+}
+
+fn unless_gone(written: io::Result<()>) -> io::Result<()> {
+    match written {
+        Err(error) if error.kind() == io::ErrorKind::BrokenPipe => Ok(()),
+        other => other,
+    }
 }
 
 /// What to do when the output cannot be written.
 pub(super) fn output_failed(error: io::Error) -> Status {
-    if error.kind() != io::ErrorKind::BrokenPipe {
-        // There is nobody left to tell if this fails as well.
-        let _ = writeln!(io::stderr(), "outcross: cannot write the output: {error}");
-        return Status::NotReached;
-    }
-    Status::Holds
+    // There is nobody left to tell if this fails as well.
+    let _ = writeln!(io::stderr(), "outcross: cannot write the output: {error}");
+    Status::NotReached
 }

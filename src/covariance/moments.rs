@@ -135,12 +135,15 @@ impl FormMoments {
     }
 }
 
+/// The derivatives of kernels by order, for each source and lag (as the bits of a double).
+type ByLag = HashMap<(SourceId, u64), Rc<Vec<Moment>>>;
+
 /// The sources of a model with what has been found out about each: every kernel is asked once.
 pub struct MomentTable<'s> {
     sources: &'s [Source],
     of_sources: Vec<OnceCell<SpectralMoments>>,
     at_zero: Vec<OnceCell<Vec<Moment>>>,
-    at_lags: RefCell<HashMap<(SourceId, u64), Rc<Vec<Moment>>>>,
+    at_lags: RefCell<ByLag>,
     of_forms: RefCell<HashMap<*const LinearForm, FormMoments>>,
 }
 

@@ -159,7 +159,9 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
         ],
         vec![
             "entries into failure".to_string(),
-            known(result.upcrossing_rate, |rate| format!("{} /s", small(rate))),
+            known(result.upcrossing_rate, |rate| {
+                entries(rate, &limit_state.reference_period.unit)
+            }),
         ],
         vec![
             "mean time to failure".to_string(),
@@ -196,6 +198,14 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
     Ok(())
 }
 
+/// A rate per unit of the reference period, in which people compare it with the period: `5.7e-7 /year`.
+fn entries(rate: f64, period: &Unit) -> String {
+    match Unit::one().over(period) {
+        Some(unit) => format!("{} {}", small(unit.from_si(rate)), unit.text()),
+        None => format!("{} /s", small(rate)),
+    }
+}
+
 fn table(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResult) -> io::Result<()> {
     if result.table.is_empty() {
         return Ok(());
@@ -210,7 +220,7 @@ fn table(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResul
             survival(row.survival),
         ]
     }));
-    columns(out, 4, &[Side::Right, Side::Right, Side::Right, Side::Right], &rows)
+    columns(out, 4, &[Side::Right, Side::Right, Side::Right, Side::Left], &rows)
 }
 
 /// A number that may not exist.

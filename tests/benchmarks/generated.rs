@@ -25,18 +25,18 @@ pub fn model(scale: usize) -> String {
         for index in 5 * block..5 * block + 5 {
             let load = |offset: usize| (3 * block + index * 7 + offset) % (3 * scale);
             let (a, b, c) = (load(0), load(1), load(2));
-            let _ = write!(
+            let _ = writeln!(
                 text,
-                "margin reserve_{index} : kN = 900 kN - 1.{} * load_{a} - 0.5 * (load_{b} + 0.8 * load_{c})\n",
+                "margin reserve_{index} : kN = 900 kN - 1.{} * load_{a} - 0.5 * (load_{b} + 0.8 * load_{c})",
                 index % 10,
             );
         }
         for index in 2 * block..2 * block + 2 {
             let margin = (5 * block + index) % (5 * scale);
-            let _ = write!(
+            let _ = writeln!(
                 text,
                 "limit state failing_{index} {{\n    failure when reserve_{margin} < 0\n    reference period 50 year\n    \
-                 require failure_probability <= 0.5 over 1 year basis \"Agreed\"\n}}\n",
+                 require failure_probability <= 0.5 over 1 year basis \"Agreed\"\n}}",
             );
         }
     }

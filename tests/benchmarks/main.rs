@@ -3,6 +3,13 @@
 //! Baselines: `pest_alone` reads the same text with the grammar and throws the pairs away; `nothing` is a Rust program
 //! that does nothing, run as a whole process.
 
+#![allow(missing_docs, reason = "what pest_derive makes has none")]
+#![allow(
+    clippy::expect_used,
+    clippy::panic,
+    reason = "a benchmark of something broken should stop"
+)]
+
 mod generated;
 
 use divan::{Bencher, black_box};

@@ -52,6 +52,7 @@ impl Lowering<'_, '_, '_> {
             "the expected value",
             Some((quantity.span, "expected of this")),
         );
+        let text = self.as_written(quantity.span.to(tolerance.span));
         let tolerance = self.tolerance(tolerance, dimension, scope);
         let (Some(expected), Some(tolerance)) = (expected, tolerance) else {
             return;
@@ -59,12 +60,8 @@ impl Lowering<'_, '_, '_> {
         let Number::Known(number) = expected.value else {
             return;
         };
-        let written = match &declaration.basis {
-            Some(_) => quantity.span.to(value.span),
-            None => quantity.span.to(declaration.span),
-        };
         self.model.expectations.push(Expectation {
-            text: self.as_written(written),
+            text,
             subject,
             expected: number,
             tolerance,

@@ -102,10 +102,10 @@ impl Lowering<'_, '_, '_> {
             Value::Scalar(scalar) => match self.node(scalar.value) {
                 Some(node) => {
                     let dimension = scalar.dimension;
-                    if let Some(Some(unit)) = &declared {
-                        if unit.dimension() != dimension {
-                            self.not_in_declared_unit(name, unit, body.span, dimension, None);
-                        }
+                    if let Some(Some(unit)) = &declared
+                        && unit.dimension() != dimension
+                    {
+                        self.not_in_declared_unit(name, unit, body.span, dimension, None);
                     }
                     Body::Tape(Arc::new(Tape::compile(&self.arena, node)), dimension)
                 }

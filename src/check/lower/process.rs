@@ -138,9 +138,9 @@ impl Lowering<'_, '_, '_> {
                 ));
                 None
             }
-            [_] if !ways[1].is_empty() => self.from_autocovariance(&arguments, subject),
-            [_] if !ways[2].is_empty() => self.from_autocorrelation(&arguments, subject),
-            [_] => self.from_correlation(call, &arguments, subject),
+            [_] if !ways[1].is_empty() => self.by_autocovariance(&arguments, subject),
+            [_] if !ways[2].is_empty() => self.by_autocorrelation(&arguments, subject),
+            [_] => self.by_correlation(call, &arguments, subject),
             [first, second, ..] => {
                 let message = format!("the process `{name}` is described twice");
                 self.report(
@@ -155,12 +155,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// Standard deviation or coefficient of variation, and a correlation function.
-    fn from_correlation(
-        &mut self,
-        call: &Call,
-        arguments: &Arguments<'_>,
-        subject: Subject<'_>,
-    ) -> Option<Description> {
+    fn by_correlation(&mut self, call: &Call, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
         let (deviation, variation) = (
             arguments.get("standard_deviation"),
             arguments.get("coefficient_of_variation"),
@@ -311,7 +306,7 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    fn from_autocovariance(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
+    fn by_autocovariance(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
         let mean = self.mean(arguments, subject);
         let expression = arguments.get("autocovariance")?;
         let covariance = self.covariance(expression, subject.scope, "an autocovariance")?;
@@ -355,7 +350,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// The raw second moment: the square of the mean is taken off, after it has been looked for.
-    fn from_autocorrelation(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
+    fn by_autocorrelation(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
         let mean = self.mean(arguments, subject);
         let expression = arguments.get("autocorrelation")?;
         let raw = self.covariance(expression, subject.scope, "a raw autocorrelation")?;
@@ -389,7 +384,8 @@ impl Lowering<'_, '_, '_> {
                 return None;
             }
         };
-        if !((constant - square).abs() <= MEAN_SQUARE * at_zero) {
+        let agree = (constant - square).abs() <= MEAN_SQUARE * at_zero;
+        if !agree {
             let (constant, square) = (show(constant, &unit, 6), show(square, &unit, 6));
             let message = format!(
                 "the autocorrelation of `{}` does not go down to the square of its mean",

@@ -89,10 +89,11 @@ impl Lowering<'_, '_, '_> {
             self.table_fault(end, named, "a kernel's table needs at least three rows");
         }
         for pair in rows.windows(2) {
-            if let [(earlier, _, _), (later, _, place)] = pair {
-                if later <= earlier && self.diagnostics.len() < before + MOST_FINDINGS {
-                    self.table_fault(*place, named, "the lags must grow from row to row: this one does not");
-                }
+            if let [(earlier, _, _), (later, _, place)] = pair
+                && later <= earlier
+                && self.diagnostics.len() < before + MOST_FINDINGS
+            {
+                self.table_fault(*place, named, "the lags must grow from row to row: this one does not");
             }
         }
         for (_, correlation, place) in &rows {
