@@ -49,10 +49,10 @@ pub fn wide_margin() -> String {
     let mut text = String::new();
     let mut margin = String::from("margin wide : kN = 9000 kN");
     for index in 0..500 {
-        let _ = write!(
+        let _ = writeln!(
             text,
             "process p{index} : kN = gaussian(mean: 1 kN, standard_deviation: 2 kN, correlation: \
-             squared_exponential(length: {} s))\n",
+             squared_exponential(length: {} s))",
             3 + index % 7
         );
         let _ = write!(

@@ -61,7 +61,6 @@ fn greatest(rows: &[Row], floor: f64, f: impl Fn(&Row) -> f64) -> (f64, String) 
 }
 
 fn assert_within(bound: f64, function: &str, (error, place): (f64, String)) {
-    println!("{function}: {error:.2e} at {place}");
     assert!(
         error <= bound,
         "{function}: relative error {error:e} above {bound:e} at {place}"
