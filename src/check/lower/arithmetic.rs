@@ -6,9 +6,7 @@ use crate::covariance::form::LinearForm;
 use crate::covariance::kernel::{Kernel, User};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::{NodeId, Operand, Tape};
-use crate::language::tree::{
-    self, Expression, ExpressionKind, Factor, FactorOperator, Sign, Term, UnitExpression, UnitFactor,
-};
+use crate::language::tree::{self, Expression, Factor, FactorOperator, Sign, Term};
 use crate::source::Span;
 use crate::units::{Dimension, Unit};
 use std::rc::Rc;
@@ -294,39 +292,6 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    /// `2/s`: a number directly followed by `/` and words that are units and that nothing declares is a number with a
-    /// unit, since a quotient by a unit means nothing else.
-    fn unit_behind_slash<'e>(
-        &self,
-        before: &'e Factor,
-        factor: &Factor,
-        scope: Scope<'_>,
-    ) -> Option<(&'e tree::Number, UnitExpression)> {
-        let ExpressionKind::Number(number) = &before.value.kind else {
-            return None;
-        };
-        let adjacent = before.value.span.end + 1 == factor.value.span.start;
-        if number.unit.is_some() || factor.operator != FactorOperator::Over || !adjacent {
-            return None;
-        }
-        let mut factors = Vec::new();
-        unit_factors(&factor.value, -1, &mut factors)?;
-        let is_unit = |one: &UnitFactor| {
-            let word = &one.symbol.text;
-            Unit::named(word).is_some()
-                && self.names.find(scope.instance, word).is_none()
-                && !scope.locals.iter().any(|(local, _)| *local == &**word)
-                && &**word != "t"
-        };
-        factors.iter().all(is_unit).then(|| {
-            let unit = UnitExpression {
-                span: factor.value.span,
-                factors,
-            };
-            (number, unit)
-        })
-    }
-
     fn two_vary(&mut self, first: Span, second: Span, quotient: bool) {
         let what = if quotient { "quotient" } else { "product" };
         self.report(
@@ -422,58 +387,6 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    pub(super) fn power(&mut self, span: Span, base: &Expression, exponent: &Expression, scope: Scope<'_>) -> Value {
-        let base_value = self.value(base, scope);
-        let exponent_value = self.number(exponent, scope, Dimension::PLAIN, "an exponent", None);
-        let (base_value, exponent_value) = match (base_value, exponent_value) {
-            (Value::Fault, _) | (_, None) => return Value::Fault,
-            (Value::Form(_), _) => {
-                self.report(
-                    Diagnostic::new(Code::TypeNonlinear, base.span, "a power of a process is not Gaussian")
-                        .here("this varies in time")
-                        .help("use its tangent at the mean, such as `mean * (2 * X - mean)` for the square of X"),
-                );
-                return Value::Fault;
-            }
-            (Value::Kernel(_), _) => {
-                let help = "multiply the kernel with itself instead";
-                self.wrong_kind(base.span, "a kernel", "a number to take a power of", help);
-                return Value::Fault;
-            }
-            (Value::Scalar(base), Some(exponent)) => (base, exponent),
-        };
-        let known = match exponent_value.value {
-            Number::Known(exponent) => Some(exponent),
-            _ => None,
-        };
-        let dimension = match known {
-            Some(exponent) => base_value.dimension.power_f64(exponent),
-            None => base_value.dimension.is_plain().then_some(Dimension::PLAIN),
-        };
-        let Some(dimension) = dimension else {
-            let message = format!("{} cannot have this power", base_value.dimension.describe());
-            self.report(
-                Diagnostic::new(Code::UnitMismatch, exponent.span, message).help(
-                    "a quantity with a unit takes whole powers and simple fractions, known when the file is read",
-                ),
-            );
-            return Value::Fault;
-        };
-        let unit = known
-            .filter(|exponent| exponent.fract() == 0.0 && exponent.abs() < 100.0)
-            .and_then(|exponent| base_value.unit.as_ref()?.power(exponent as i32).map(Rc::new));
-        let value = match (base_value.value, exponent_value.value) {
-            (Number::Known(base), Number::Known(exponent)) => {
-                Number::Known(crate::expression::Number::power(&base, &exponent))
-            }
-            (base, exponent) => match (self.node(base), self.node(exponent)) {
-                (Some(base), Some(exponent)) => Number::Open(self.arena.power(base, exponent)),
-                _ => Number::Unset,
-            },
-        };
-        self.finite(Scalar::new(value, dimension).shown_in(unit), span)
-    }
-
     pub(super) fn dimension_too_large(&mut self, place: Span) {
         self.report(
             Diagnostic::new(Code::ValueRange, place, "the dimension of this is beyond all bounds")
@@ -526,46 +439,4 @@ fn product_unit(values: &[(bool, Span, Value)]) -> Option<Rc<Unit>> {
         });
     }
     product
-}
-
-/// The factors of an expression that is written like a unit: words, `*`, `/`, whole powers and brackets.
-fn unit_factors(expression: &Expression, sign: i32, into: &mut Vec<UnitFactor>) -> Option<()> {
-    match &expression.kind {
-        ExpressionKind::Name(path) => {
-            let [word] = path.words.as_slice() else {
-                return None;
-            };
-            into.push(UnitFactor {
-                symbol: word.clone(),
-                power: sign,
-            });
-            Some(())
-        }
-        ExpressionKind::Power(base, exponent) => {
-            let (ExpressionKind::Name(path), ExpressionKind::Number(power)) = (&base.kind, &exponent.kind) else {
-                return None;
-            };
-            let [word] = path.words.as_slice() else {
-                return None;
-            };
-            if power.value.fract() != 0.0 || power.value.abs() > 100.0 {
-                return None;
-            }
-            into.push(UnitFactor {
-                symbol: word.clone(),
-                power: sign * power.value as i32,
-            });
-            Some(())
-        }
-        ExpressionKind::Bracket(inner) => unit_factors(inner, sign, into),
-        ExpressionKind::Product(factors) => factors.iter().try_for_each(|factor| {
-            let sign = if factor.operator == FactorOperator::Over {
-                -sign
-            } else {
-                sign
-            };
-            unit_factors(&factor.value, sign, into)
-        }),
-        _ => None,
-    }
 }

@@ -2,7 +2,7 @@
 
 use super::not_yet::Later;
 use super::operations::OPERATIONS;
-use super::{Lowering, Scope, kernel};
+use super::{Lowering, Scope, family};
 use crate::check::names::{Resolved, choice, near};
 use crate::check::value::{Number, Scalar, Value};
 use crate::diagnostics::{Code, Diagnostic};
@@ -51,7 +51,7 @@ impl Lowering<'_, '_, '_> {
             if let Some((_, divisor)) = ANGLE_COUNTS.iter().find(|(known, _)| *known == name) {
                 return self.angle_count(span, call, *divisor, scope);
             }
-            if kernel::FAMILIES.contains(&name) {
+            if family::FAMILIES.contains(&name) {
                 return if Self::in_kernel(scope) {
                     self.family(span, call, name, scope)
                 } else {
@@ -122,7 +122,7 @@ impl Lowering<'_, '_, '_> {
         let angles = ANGLE_COUNTS.iter().map(|(known, _)| *known);
         let known = functions
             .chain(angles)
-            .chain(kernel::FAMILIES.iter().copied())
+            .chain(family::FAMILIES.iter().copied())
             .chain(OPERATIONS.iter().copied())
             .chain(["gaussian"])
             .chain(declared);
