@@ -1,7 +1,7 @@
 //! M. Abramowitz and I. A. Stegun 1964, Handbook of Mathematical Functions, Table 26.2: the normal tail Q(x) for extended
 //! arguments, printed as -log10 Q(x). From memory, and found again with 40-digit arithmetic.
 
-use crate::support::{limit_state, results, within};
+use crate::support::{results, within};
 
 const TABLE_26_2: &[(f64, f64)] = &[
     (5.0, 6.54265),
@@ -21,15 +21,15 @@ fn deep_tails() {
              limit state overload {{ failure when load > {} kN reference period 1e-300 s }}",
             2.0 + 4.0 * argument
         ));
-        let overload = limit_state(&results, "overload");
+        let overload = results.limit_state("overload");
         within(
-            -overload.initial_failure_probability.log10(),
+            -overload.number("initial_failure_probability").log10(),
             *printed,
             0.5e-5,
             &format!("Q({argument})"),
         );
         within(
-            overload.reliability_index.value(),
+            overload.number("reliability_index"),
             *argument,
             1e-12,
             &format!("index at {argument}"),
@@ -45,8 +45,13 @@ fn indices_beyond_the_doubles() {
             "process load = gaussian(standard_deviation: 1, correlation: matern(smoothness: 3, length: 1 s))
              limit state overload {{ failure when load > {argument} reference period 1e-300 s }}"
         ));
-        let overload = limit_state(&results, "overload");
-        assert_eq!(overload.initial_failure_probability, 0.0);
-        within(overload.reliability_index.value(), argument, 1e-11 * argument, "index");
+        let overload = results.limit_state("overload");
+        assert_eq!(overload.number("initial_failure_probability"), 0.0);
+        within(
+            overload.number("reliability_index"),
+            argument,
+            1e-11 * argument,
+            "index",
+        );
     }
 }

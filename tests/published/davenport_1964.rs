@@ -35,10 +35,9 @@ fn peak_factor() {
             .unwrap();
         }
         let passed: Vec<f64> = results(&text)
-            .limit_states
-            .iter()
+            .entries("limit_states")
             // The published maximum counts crossings alone; the start is put aside.
-            .map(|one| 1.0 - one.survival / (1.0 - one.initial_failure_probability))
+            .map(|one| 1.0 - one.number("survival") / (1.0 - one.number("initial_failure_probability")))
             .collect();
         let ends = 0.5 * (passed[0] + passed[LEVELS]);
         let found = STEP * (passed.iter().sum::<f64>() - ends);

@@ -1,7 +1,7 @@
 //! ISO 2394:1998, General principles on reliability for structures, Table E.2: life-time target indices. From memory;
 //! the probabilities are the tail of the normal distribution at the indices, to three digits.
 
-use crate::support::{close, limit_state, results};
+use crate::support::{close, results};
 
 #[test]
 fn table_e2() {
@@ -13,7 +13,7 @@ fn table_e2() {
              limit state fracture {{ failure when resistance < 0 reference period 1 s }}",
             10.0 * index
         ));
-        let found = limit_state(&results, "fracture").initial_failure_probability;
+        let found = results.limit_state("fracture").number("initial_failure_probability");
         close(found, probability, 1e-3, &format!("index {index}"));
     }
 }

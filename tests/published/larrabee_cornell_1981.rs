@@ -2,7 +2,7 @@
 //! 107, 223-239. From memory: the point-crossing bound on the rate of a sum of two equal, independent Gaussian processes is
 //! sqrt 2 times the rate, at every level.
 
-use crate::support::{close, limit_state, results};
+use crate::support::{close, results};
 use std::f64::consts::{SQRT_2, TAU};
 use std::fmt::Write;
 
@@ -33,12 +33,12 @@ fn point_crossing_bound() {
         // The trapezoidal rule on a product of two Gaussian curves has all digits at this step.
         let convolved: f64 = levels
             .iter()
-            .zip(&results.limit_states[1..])
-            .map(|(at, one)| STEP * one.upcrossing_rate * (-0.5 * (level - at).powi(2)).exp() / TAU.sqrt())
+            .zip(results.entries("limit_states").skip(1))
+            .map(|(at, one)| STEP * one.number("upcrossing_rate") * (-0.5 * (level - at).powi(2)).exp() / TAU.sqrt())
             .sum();
         let bound = 2.0 * convolved;
         close(
-            bound / limit_state(&results, "sum").upcrossing_rate,
+            bound / results.limit_state("sum").number("upcrossing_rate"),
             SQRT_2,
             1e-12,
             &format!("level {level}"),

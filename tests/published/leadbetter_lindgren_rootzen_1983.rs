@@ -1,7 +1,7 @@
 //! M. R. Leadbetter, G. Lindgren and H. Rootzen 1983, Extremes and Related Properties of Random Sequences and Processes,
 //! Springer: the cosine process of section 7.4. From memory.
 
-use crate::support::{limit_state, results, within};
+use crate::support::{results, within};
 
 /// `A cos t + B sin t` stays below u over T < pi with probability `Phi(u) - T/(2 pi) exp(-u^2/2)`, and over 2 pi with
 /// `1 - exp(-u^2/2)`: level, time, probability.
@@ -16,10 +16,13 @@ fn cosine_process() {
             "process x = gaussian(standard_deviation: 1, correlation: harmonic(frequency: 1 rad/s))
              limit state above {{ failure when x > {level} reference period {time} s }}"
         ));
-        let above = limit_state(&results, "above");
-        let (start, crossings) = (above.initial_failure_probability, above.upcrossing_rate * time);
+        let above = results.limit_state("above");
+        let (start, crossings) = (
+            above.number("initial_failure_probability"),
+            above.number("upcrossing_rate") * time,
+        );
         within(1.0 - start - crossings, *stays, 0.6e-6, &format!("level {level}"));
-        let short = start + crossings - above.failure_probability;
+        let short = start + crossings - above.number("failure_probability");
         let second_order = crossings * start + 0.5 * crossings * crossings;
         assert!(short > 0.0 && short <= second_order, "{short} against {second_order}");
     }
@@ -33,9 +36,9 @@ fn whole_period() {
         "process x = gaussian(standard_deviation: 1, correlation: harmonic(frequency: 1 rad/s))
          limit state above { failure when x > 2 reference period 2 * pi * 1 s }",
     );
-    let above = limit_state(&results, "above");
+    let above = results.limit_state("above");
     within(
-        1.0 - above.upcrossing_rate * above.reference_period,
+        1.0 - above.number("upcrossing_rate") * above.number("reference_period"),
         0.864665,
         0.5e-6,
         "amplitude",

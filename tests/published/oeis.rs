@@ -1,6 +1,6 @@
 //! The On-Line Encyclopedia of Integer Sequences (seen).
 
-use crate::support::{limit_state, results};
+use crate::support::results;
 
 /// A353321: the whole part of one over the two-sided normal tail beyond n standard deviations.
 const A353321: [f64; 9] = [
@@ -22,7 +22,7 @@ fn a353321_two_sided_tails() {
             "process sway : mm = gaussian(standard_deviation: 3 mm, correlation: squared_exponential(length: 1 s))
              limit state contact {{ failure when abs(sway) > {n} * 3 mm reference period 1 s }}"
         ));
-        let inverse = 1.0 / limit_state(&results, "contact").initial_failure_probability;
+        let inverse = 1.0 / results.limit_state("contact").number("initial_failure_probability");
         // The digits before the point, as far as a double holds them.
         let rounding = 4e-14 * whole;
         assert!(

@@ -1,10 +1,9 @@
-//! C. E. Rasmussen and C. K. I. Williams 2006, Gaussian Processes for Machine Learning, MIT Press, chapter 4: kernels,
-//! their spectra and their smoothness. Formulas from memory; the half-integer Matern forms were seen, and the values at lag
+//! C. E. Rasmussen and C. K. I. Williams 2006, Gaussian Processes for Machine Learning, MIT Press, chapter 4: kernels
+//! and their smoothness. Formulas from memory; the half-integer Matern forms were seen, and the values at lag
 //! 1 are those that scikit-learn 1.9.1 prints.
 
-use crate::support::{close, correlation, errors, moments, results, spectral_moment};
-use outcross::covariance::kernel::{Kernel, Matern, SquaredExponential};
-use std::f64::consts::{PI, TAU};
+use crate::support::{close, correlation, results, run};
+use std::f64::consts::PI;
 
 /// Kernel, length in s, correlation at a lag of 1 s.
 const VALUES: &[(&str, f64)] = &[
@@ -53,7 +52,7 @@ const DECAYING: &str = "kernel decaying(tau, rate: /s, frequency: rad/s) =
 fn second_moments() {
     for (kernel, curvature) in CURVATURES {
         let results = results(&format!("{DECAYING}{}", model(kernel)));
-        close(spectral_moment(moments(&results, "x"), 2), *curvature, 2e-14, kernel);
+        close(results.moments("x").spectral_moments()[2], *curvature, 2e-14, kernel);
     }
 }
 
@@ -75,38 +74,12 @@ fn rough_kernels_have_no_crossings() {
              {}limit state overload {{ failure when x > 3 reference period 1 s }}",
             model(kernel)
         );
-        assert_eq!(errors(&text), ["process/not-differentiable"], "{kernel}");
+        assert_eq!(run(&text).errors(), ["process/not-differentiable"], "{kernel}");
         // Its moments are infinite where it is only looked at.
         let results = results(&format!(
             "kernel stretched(tau) = exp(-(tau / 1 s)^1.9)\n{}",
             model(kernel)
         ));
-        assert_eq!(spectral_moment(moments(&results, "x"), 2), f64::INFINITY, "{kernel}");
-    }
-}
-
-/// Eq. 4.15: two-sided densities over omega, twice which is the one-sided.
-#[test]
-fn densities() {
-    let matern = |smoothness: f64| Kernel::from(Matern::new(smoothness, 1.0).unwrap());
-    for omega in [0.0_f64, 0.3, 1.0, 4.0, 30.0] {
-        let three = 3.0 + omega * omega;
-        let five = 5.0 + omega * omega;
-        let rows = [
-            ("matern 3/2", matern(1.5), 2.0 * 3f64.powf(1.5) / (PI * three.powi(2))),
-            (
-                "matern 5/2",
-                matern(2.5),
-                8.0 * 5f64.powf(2.5) / (3.0 * PI * five.powi(3)),
-            ),
-            (
-                "squared exponential",
-                Kernel::from(SquaredExponential::new(1.0).unwrap()),
-                (-0.5 * omega * omega).exp() / TAU.sqrt(),
-            ),
-        ];
-        for (name, kernel, two_sided) in rows {
-            close(kernel.density(omega).unwrap().value, 2.0 * two_sided, 1e-13, name);
-        }
+        assert_eq!(results.moments("x").spectral_moments()[2], f64::INFINITY, "{kernel}");
     }
 }

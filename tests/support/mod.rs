@@ -1,17 +1,19 @@
-//! Running the program on texts in memory, as `check` and `evaluate` run it on files.
+//! Running the program on texts in memory, as `check` and `evaluate` run it on files, and reading its results as another
+//! program would: from the JSON document.
 
 use outcross::check::{Settings, check};
-use outcross::diagnostics::{Diagnostic, any_error};
-use outcross::results::{LimitStateResult, Moments, Results, evaluate};
+use outcross::diagnostics::{Diagnostic, Severity};
+use outcross::results::evaluate;
 use outcross::source::{Files, Reader, Unreadable};
-use std::collections::BTreeMap;
+use serde_json::Value;
+use std::collections::{BTreeMap, BTreeSet};
 use std::path::{Path, PathBuf};
 
 /// The name of the model among the texts.
 const MODEL: &str = "model.limit";
 
 /// Texts by path, in place of a disk.
-pub struct Texts(BTreeMap<PathBuf, String>);
+struct Texts(BTreeMap<PathBuf, String>);
 
 impl Reader for Texts {
     fn read(&self, path: &Path) -> Result<String, Unreadable> {
@@ -34,15 +36,12 @@ pub struct Outcome {
 impl Outcome {
     /// The codes of the errors, each once.
     pub fn errors(&self) -> Vec<&'static str> {
-        let mut codes: Vec<&str> = self
+        let errors = self
             .findings
             .iter()
-            .filter(|finding| any_error(std::slice::from_ref(finding)))
-            .map(|finding| finding.code.name())
-            .collect();
-        codes.sort_unstable();
-        codes.dedup();
-        codes
+            .filter(|finding| finding.code.severity() == Severity::Error);
+        let codes: BTreeSet<&str> = errors.map(|finding| finding.code.name()).collect();
+        codes.into_iter().collect()
     }
 }
 
@@ -60,7 +59,10 @@ pub fn run_beside(model: &str, neighbours: &[(&str, &str)]) -> Outcome {
     };
     let mut files = Files::new();
     let (model, findings) = check(&mut files, &Texts(texts), Path::new(MODEL), &settings);
-    let results = model.map(|model| evaluate(&files, &model, &findings, &[]));
+    let results = model.map(|model| {
+        let results = evaluate(&files, &model, &findings, &[]);
+        Results(serde_json::to_value(results).expect("results are JSON"))
+    });
     Outcome { results, findings }
 }
 
@@ -70,41 +72,105 @@ pub fn run(model: &str) -> Outcome {
 }
 
 /// The results of a model in which nothing is wrong.
+#[track_caller]
 pub fn results(model: &str) -> Results {
     let outcome = run(model);
     let findings: Vec<&str> = outcome.findings.iter().map(|finding| &*finding.message).collect();
-    outcome.results.unwrap_or_else(|| panic!("{findings:#?} in\n{model}"))
+    match outcome.results {
+        Some(results) => results,
+        None => panic!("{findings:#?} in\n{model}"),
+    }
 }
 
-/// The codes of what is wrong with a model.
-pub fn errors(model: &str) -> Vec<&'static str> {
-    run(model).errors()
+/// The document of `evaluate --json`.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Results(pub Value);
+
+impl Results {
+    /// A process or margin.
+    #[track_caller]
+    pub fn moments(&self, name: &str) -> Entry<'_> {
+        self.entries("processes")
+            .chain(self.entries("margins"))
+            .find(|entry| entry.0["name"] == name)
+            .unwrap_or_else(|| panic!("no process or margin {name}"))
+    }
+
+    /// A limit state.
+    #[track_caller]
+    pub fn limit_state(&self, name: &str) -> Entry<'_> {
+        self.entries("limit_states")
+            .find(|entry| entry.0["name"] == name)
+            .unwrap_or_else(|| panic!("no limit state {name}"))
+    }
+
+    /// The entries of a list.
+    pub fn entries(&self, list: &str) -> impl Iterator<Item = Entry<'_>> {
+        self.0[list].as_array().into_iter().flatten().map(Entry)
+    }
+
+    /// Whether every expectation holds, and there is one.
+    pub fn expectations_hold(&self) -> bool {
+        let mut count = 0;
+        self.entries("expectations")
+            .inspect(|_| count += 1)
+            .all(|one| one.0["holds"] == true)
+            && count > 0
+    }
 }
 
-/// A process or margin of some results.
-pub fn moments<'r>(results: &'r Results, name: &str) -> &'r Moments {
-    let mut all = results.processes.iter().chain(&results.margins);
-    all.find(|one| one.name == name).unwrap_or_else(|| panic!("{name}"))
+/// A process, margin, limit state, row or requirement of the document.
+#[derive(Clone, Copy, Debug)]
+pub struct Entry<'r>(pub &'r Value);
+
+impl Entry<'_> {
+    /// A number, which must be there; infinite ones are words.
+    #[track_caller]
+    pub fn number(&self, key: &str) -> f64 {
+        match number(&self.0[key]) {
+            Some(number) => number,
+            None => panic!("no number {key} in {:#}", self.0),
+        }
+    }
+
+    /// lambda_0, lambda_1, lambda_2 and lambda_4.
+    #[track_caller]
+    pub fn spectral_moments(&self) -> [f64; 4] {
+        let moments = &self.0["spectral_moments"];
+        std::array::from_fn(|place| match number(&moments[place]) {
+            Some(number) => number,
+            None => panic!("no spectral moments in {:#}", self.0),
+        })
+    }
+
+    /// The verdicts of a limit state.
+    pub fn verdicts(&self) -> Vec<&str> {
+        let requirements = self.0["requirements"].as_array().into_iter().flatten();
+        requirements.filter_map(|one| one["verdict"].as_str()).collect()
+    }
+
+    /// The rows of a limit state's table.
+    pub fn table(&self) -> impl Iterator<Item = Entry<'_>> {
+        self.0["table"].as_array().into_iter().flatten().map(Entry)
+    }
 }
 
-/// A limit state of some results.
-pub fn limit_state<'r>(results: &'r Results, name: &str) -> &'r LimitStateResult {
-    let found = results.limit_states.iter().find(|one| one.name == name);
-    found.unwrap_or_else(|| panic!("{name}"))
-}
-
-/// A spectral moment of a process or margin: 0 for lambda_0, 1 and 2 for lambda_1 and lambda_2, 3 for lambda_4.
-pub fn spectral_moment(of: &Moments, place: usize) -> f64 {
-    let moments = of.spectral_moments.unwrap_or_else(|| panic!("moments of {}", of.name));
-    moments[place].value()
+fn number(value: &Value) -> Option<f64> {
+    match value.as_str() {
+        Some("infinite") => Some(f64::INFINITY),
+        Some("-infinite") => Some(f64::NEG_INFINITY),
+        _ => value.as_f64(),
+    }
 }
 
 /// The correlation coefficient of a process at a lag, read off the variances of `X(t) + X(t - d)` and `X(t) - X(t - d)`:
 /// their difference is four times the covariance. The model has a process called `x`; `lag` is written with its unit.
+#[track_caller]
 pub fn correlation(model: &str, lag: &str) -> f64 {
-    let model = format!("{model}\nmargin plus = x + delay(x, by: {lag})\nmargin minus = x - delay(x, by: {lag})\n");
-    let results = results(&model);
-    let variance = |name: &str| spectral_moment(moments(&results, name), 0);
+    let results = results(&format!(
+        "{model}\nmargin plus = x + delay(x, by: {lag})\nmargin minus = x - delay(x, by: {lag})\n"
+    ));
+    let variance = |name: &str| results.moments(name).number("standard_deviation").powi(2);
     (variance("plus") - variance("minus")) / (4.0 * variance("x"))
 }
 
