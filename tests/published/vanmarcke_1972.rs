@@ -48,7 +48,7 @@ fn approximate_bandwidth() {
         let approximate = 4.0 * damping / PI * (1.0 - 1.1 * damping);
         close(
             approximate / (bandwidth * bandwidth),
-            bandwidth * bandwidth,
+            1.0,
             tolerance,
             &format!("damping {damping}"),
         );

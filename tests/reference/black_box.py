@@ -406,8 +406,10 @@ def passages(program, rng):
             rate = frequency / (2 * mp.pi) * mp.fsum(mp.exp(-x * x / 2) for x in r)
             hazard = rate if method == "poisson" else rate / safe
             place = f"{name}: {condition}, {method}, {mp.nstr(period, 8)} s in\n{model}"
-            start.relative(one["initial_failure_probability"], initial, place)
-            rates.relative(one["upcrossing_rate"], rate, place) if rate > mp.mpf("1e-300") else None
+            if initial > mp.mpf("1e-300"):
+                start.relative(one["initial_failure_probability"], initial, place)
+            if rate > mp.mpf("1e-300"):
+                rates.relative(one["upcrossing_rate"], rate, place)
             if safe / hazard < mp.mpf("1e300"):
                 lives.relative(one["mean_time_to_failure"], safe / hazard, place)
             table = one["table"][0]
@@ -480,8 +482,6 @@ def written_kernels(program, rng):
             rho = lambda t: function(mp.mpf(t), p, w)
             plus, minus = (found[side]["standard_deviation"] for side in ("plus", "minus"))
             values.absolute((plus * plus - minus * minus) / 4, rho(lag), model)
-            with mp.workdps(60):
-                series = mp.taylor(rho, 0, 4, direction=1, h=p * mp.mpf("1e-12")) if crossable else None
             reported = moments_of(found["x"])
             for place, order in ((0, 0), (2, 2), (3, 4)):
                 if order == 0:

@@ -1,7 +1,7 @@
 //! Running the program on texts in memory, as `check` and `evaluate` run it on files, and reading its results as another
 //! program would: from the JSON document.
 
-use outcross::check::{Settings, check};
+use outcross::check::{Model, Settings, check};
 use outcross::diagnostics::{Diagnostic, Severity};
 use outcross::results::evaluate;
 use outcross::source::{Files, Reader, Unreadable};
@@ -45,8 +45,8 @@ impl Outcome {
     }
 }
 
-/// Checks and computes a model; its neighbours are `(path, text)`.
-pub fn run_beside(model: &str, neighbours: &[(&str, &str)]) -> Outcome {
+/// Checks a model beside other texts, `(path, text)`.
+fn checked(model: &str, neighbours: &[(&str, &str)]) -> (Files, Option<Model>, Vec<Diagnostic>) {
     let mut texts = BTreeMap::from([(PathBuf::from(MODEL), model.to_string())]);
     texts.extend(
         neighbours
@@ -59,6 +59,12 @@ pub fn run_beside(model: &str, neighbours: &[(&str, &str)]) -> Outcome {
     };
     let mut files = Files::new();
     let (model, findings) = check(&mut files, &Texts(texts), Path::new(MODEL), &settings);
+    (files, model, findings)
+}
+
+/// Checks and computes a model beside other texts, `(path, text)`.
+fn run_beside(model: &str, neighbours: &[(&str, &str)]) -> Outcome {
+    let (files, model, findings) = checked(model, neighbours);
     let results = model.map(|model| {
         let results = evaluate(&files, &model, &findings, &[]);
         Results(serde_json::to_value(results).expect("results are JSON"))
@@ -71,15 +77,32 @@ pub fn run(model: &str) -> Outcome {
     run_beside(model, &[])
 }
 
+/// The model that a text says, which must be sound.
+#[track_caller]
+pub fn model(text: &str) -> Model {
+    let (_, model, findings) = checked(text, &[]);
+    sound(model, &findings, text)
+}
+
 /// The results of a model in which nothing is wrong.
 #[track_caller]
 pub fn results(model: &str) -> Results {
-    let outcome = run(model);
-    let findings: Vec<&str> = outcome.findings.iter().map(|finding| &*finding.message).collect();
-    match outcome.results {
-        Some(results) => results,
-        None => panic!("{findings:#?} in\n{model}"),
-    }
+    results_beside(model, &[])
+}
+
+/// The same beside other texts, `(path, text)`.
+#[track_caller]
+pub fn results_beside(model: &str, neighbours: &[(&str, &str)]) -> Results {
+    let outcome = run_beside(model, neighbours);
+    sound(outcome.results, &outcome.findings, model)
+}
+
+#[track_caller]
+fn sound<T>(found: Option<T>, findings: &[Diagnostic], text: &str) -> T {
+    found.unwrap_or_else(|| {
+        let messages: Vec<&str> = findings.iter().map(|finding| &*finding.message).collect();
+        panic!("{messages:#?} in\n{text}")
+    })
 }
 
 /// The document of `evaluate --json`.
