@@ -10,5 +10,7 @@
 mod commands;
 mod diagnostics;
 mod language;
+mod properties;
 mod published;
 mod reference;
+mod support;

@@ -1,0 +1,8 @@
+//! What must hold for every model, on random ones.
+
+mod covariance;
+mod models;
+mod numbers;
+mod passage;
+mod units;
+mod writings;

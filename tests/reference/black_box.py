@@ -1,0 +1,580 @@
+#!/usr/bin/env python3
+"""The program against general-purpose libraries, from outside: black_box.py BINARY [SEED]
+
+Random models go through the binary's JSON and are computed again by other means: kernels by scikit-learn, splines by SciPy,
+probabilities and moments by mpmath at 30 to 50 digits, from spectral densities or correlation functions as the literature
+has them. Prints a line a family of checks, with the largest difference, its bound and where it arose; exits with 1 when a
+bound is exceeded. Needs numpy, scipy, mpmath and scikit-learn.
+"""
+
+import json
+import math
+import random
+import subprocess
+import sys
+import tempfile
+from pathlib import Path
+
+import mpmath as mp
+import numpy as np
+from scipy.interpolate import CubicSpline
+from sklearn.gaussian_process import kernels as sk
+
+mp.mp.dps = 30
+INFINITE = mp.inf
+
+
+class Family:
+    """The largest difference of a family of checks, and where it arose."""
+
+    all = []
+
+    def __init__(self, name, bound):
+        self.name, self.bound = name, bound
+        self.worst, self.place, self.count = 0.0, "", 0
+        Family.all.append(self)
+
+    def note(self, difference, place):
+        self.count += 1
+        difference = float(difference)
+        if not difference <= self.worst:
+            self.worst, self.place = difference, place
+
+    def relative(self, found, exact, place):
+        """Against a number that may be infinite or 0; a missing number is a fault."""
+        found = {"infinite": mp.inf, None: mp.nan}.get(found, found)
+        if mp.isinf(exact) or mp.isinf(found):
+            return self.note(0 if found == exact else mp.inf, place)
+        self.note(abs(mp.mpf(found) - exact) / (abs(exact) if exact else 1), place)
+
+    def absolute(self, found, exact, place):
+        self.note(abs(mp.mpf(mp.nan if found is None else found) - exact), place)
+
+    def report(self):
+        verdict = "holds" if self.worst <= self.bound and self.count else "EXCEEDED"
+        print(f"{self.name:<58} {self.count:6d} values, at most {self.worst:8.1e} of {self.bound:7.0e}  {verdict}")
+        if verdict != "holds":
+            print(f"    {self.place}")
+        return verdict == "holds"
+
+
+class Program:
+    """The binary, and a folder for its files."""
+
+    def __init__(self, binary, folder):
+        self.binary, self.folder = Path(binary).resolve(), Path(folder)
+
+    def run(self, text, command="evaluate"):
+        path = self.folder / "model.limit"
+        path.write_text(text)
+        return subprocess.run([self.binary, command, "--json", path], capture_output=True, text=True, check=False)
+
+    def results(self, text):
+        done = self.run(text)
+        if done.returncode not in (0, 1):
+            print(f"exit status {done.returncode} on\n{text}\n{done.stderr}")
+            if not done.stdout:
+                sys.exit(1)
+        return json.loads(done.stdout)
+
+    def named(self, text):
+        """Processes and margins by name."""
+        found = self.results(text)
+        return {one["name"]: one for one in found["processes"] + found["margins"]}
+
+    def codes(self, text):
+        return sorted({one["code"] for one in json.loads(self.run(text, "check").stdout)["diagnostics"]})
+
+
+def number(value):
+    """A double as the language reads it back."""
+    return repr(float(value))
+
+
+def moments_of(entry):
+    return entry.get("spectral_moments", [None] * 4)
+
+
+# --------------------------------------------------------------------------------------------- kernels by scikit-learn
+
+
+def random_family(rng, depth):
+    """A kernel as text, and scikit-learn's."""
+    kind = rng.choice(["se", "matern", "matern", "rq", "sum", "product"] if depth else ["se", "matern", "matern", "rq"])
+    length = math.exp(rng.uniform(-2, 2))
+    if kind == "se":
+        return f"squared_exponential(length: {number(length)} s)", sk.RBF(length)
+    if kind == "matern":
+        smoothness = rng.choice([0.5, 1.5, 2.5, round(rng.uniform(0.2, 6), 3), rng.uniform(0.2, 6)])
+        text = f"matern(smoothness: {number(smoothness)}, length: {number(length)} s)"
+        return text, sk.Matern(length, nu=smoothness)
+    if kind == "rq":
+        mixture = math.exp(rng.uniform(-2, 3))
+        text = f"rational_quadratic(mixture: {number(mixture)}, length: {number(length)} s)"
+        return text, sk.RationalQuadratic(length, mixture)
+    one, one_kernel = random_family(rng, depth - 1)
+    two, two_kernel = random_family(rng, depth - 1)
+    if kind == "product":
+        return f"({one}) * ({two})", one_kernel * two_kernel
+    weight = rng.randint(1, 1023) / 1024
+    text = f"({number(weight)} * ({one}) + {number(1 - weight)} * ({two}))"
+    return text, sk.ConstantKernel(weight) * one_kernel + sk.ConstantKernel(1 - weight) * two_kernel
+
+
+def kernels(program, rng):
+    family = Family("kernels, sums and products against scikit-learn", 1e-12)
+    for _ in range(80):
+        text, kernel = random_family(rng, 2)
+        lags = [math.exp(rng.uniform(-4, 2.5)) for _ in range(8)]
+        lines = [f"process x = gaussian(standard_deviation: 1, correlation: {text})"]
+        for index, lag in enumerate(lags):
+            lines.append(f"margin plus{index} = x + delay(x, by: {number(lag)} s)")
+            lines.append(f"margin minus{index} = x - delay(x, by: {number(lag)} s)")
+        found = program.named("\n".join(lines))
+        for index, lag in enumerate(lags):
+            plus, minus = (found[f"{side}{index}"]["standard_deviation"] for side in ("plus", "minus"))
+            expected = float(kernel(np.array([[0.0]]), np.array([[lag]]))[0, 0])
+            family.absolute((plus * plus - minus * minus) / 4, expected, f"{text} at {lag}")
+
+
+# --------------------------------------------------------------------------------------- moments of linear combinations
+
+
+class Exponentials:
+    """K(tau) = sum of Re(p(tau) exp(s tau)) for tau >= 0, the p polynomials: Matérn of half-integer smoothness, oscillators.
+
+    Derivatives are exact: (p exp(s tau))' = (p' + s p) exp(s tau)."""
+
+    def __init__(self, parts):
+        self.orders = [[([mp.mpc(c) for c in p], mp.mpc(s)) for p, s in parts]]
+
+    def derivative(self, order, tau):
+        while len(self.orders) <= order:
+            following = []
+            for p, s in self.orders[-1]:
+                slope = [k * c for k, c in enumerate(p)][1:] + [0]
+                following.append(([s * c + d for c, d in zip(p, slope)], s))
+            self.orders.append(following)
+        return mp.fsum(mp.re(mp.polyval(p[::-1], tau) * mp.exp(s * tau)) for p, s in self.orders[order])
+
+    def reach(self):
+        """Where it has fallen by 35 digits or so."""
+        return max(85 / -mp.re(s) for _, s in self.orders[0])
+
+
+def matern(half, length):
+    """Smoothness half + 1/2 (Rasmussen and Williams 2006, eq. 4.16)."""
+    rate = mp.sqrt(2 * half + 1) / mp.mpf(length)
+    polynomial = [
+        mp.factorial(half) / mp.factorial(2 * half) * mp.factorial(half + i) / (mp.factorial(i) * mp.factorial(half - i))
+        * (2 * rate) ** (half - i)
+        for i in range(half + 1)
+    ]
+    return Exponentials([(polynomial[::-1], -rate)])
+
+
+def oscillator(frequency, damping):
+    """exp(-z w tau) (cos wd tau + z/sqrt(1-z^2) sin wd tau) as the real part of one complex exponential."""
+    frequency, damping = mp.mpf(frequency), mp.mpf(damping)
+    damped = mp.sqrt(1 - damping**2)
+    return Exponentials([([mp.mpc(1, -damping / damped)], frequency * mp.mpc(-damping, damped))])
+
+
+class Rational:
+    """Sources by their correlation function; terms are (coefficient, derivatives, delay)."""
+
+    def __init__(self, text, kernel, tail):
+        # tail: the density falls with omega^-tail
+        self.text, self.kernel, self.tail = text, kernel, tail
+
+    def covariance(self, terms, tau, order=0):
+        """The derivative of the terms' autocovariance, at tau > 0 or from the right at 0."""
+        total = mp.mpf(0)
+        for a, n, d in terms:
+            for b, m, e in terms:
+                lag = tau + mp.mpf(d) - mp.mpf(e)
+                k = n + m + order
+                sign = -1 if lag < 0 and k % 2 else 1
+                total += a * b * (-1) ** n * sign * self.kernel.derivative(k, abs(lag))
+        return total
+
+    def moment(self, terms, order):
+        most = max(n for _, n, _ in terms)
+        if self.tail - 2 * most - order <= 1:
+            return INFINITE
+        if order % 2 == 0:
+            # At an even order the kinks of odd derivatives cancel in pairs.
+            return (-1) ** (order // 2) * self.covariance(terms, mp.mpf(0), order)
+        # lambda_1 = (2/pi) integral of (C(0) - C(tau))/tau^2: the pair 1/tau^2 and omega of cosine transforms.
+        at_zero = self.covariance(terms, mp.mpf(0))
+        curvature = self.covariance(terms, mp.mpf(0), 2)
+        delays = [mp.mpf(d) for _, _, d in terms]
+        spread = max(delays) - min(delays)
+        end = self.kernel.reach() + spread
+        kinks = sorted({abs(a - b) for a in delays for b in delays})
+        points = [mp.mpf(0)] + [k for k in kinks if k > 0]
+        step = self.step()
+        while points[-1] < end:
+            points.append(points[-1] + step)
+            step *= mp.mpf("1.15") if len(points) > 40 else 1
+        small = step * mp.mpf("1e-12")
+
+        def integrand(tau):
+            if tau < small:
+                return -curvature / 2
+            return (at_zero - self.covariance(terms, tau)) / tau**2
+
+        return 2 / mp.pi * (mp.quad(integrand, points, maxdegree=7) + at_zero / points[-1])
+
+    def step(self):
+        return min(1 / abs(s) for _, s in self.kernel.orders[0]) * 3
+
+
+class Spectral:
+    """Sources by their one-sided density on an interval outside which it vanishes (or is below 1e-40)."""
+
+    def __init__(self, text, density, lower, upper):
+        self.text, self.density, self.lower, self.upper = text, density, mp.mpf(lower), mp.mpf(upper)
+
+    def moment(self, terms, order):
+        def transfer(omega):
+            return mp.fsum(a * mp.mpc(0, omega) ** n * mp.expj(-omega * mp.mpf(d)) for a, n, d in terms)
+
+        delays = [mp.mpf(d) for _, _, d in terms]
+        pieces = int(2 + (max(delays) - min(delays)) * (self.upper - self.lower) / 6)
+        points = mp.linspace(self.lower, self.upper, pieces + 1)
+        return mp.quad(lambda w: w**order * abs(transfer(w)) ** 2 * self.density(w), points)
+
+
+def random_source(rng):
+    scale = math.exp(rng.uniform(-3, 3))
+    kind = rng.choice(["se", "band", "matern", "matern", "oscillator"])
+    if kind == "se":
+        density = lambda w: mp.sqrt(2 / mp.pi) * mp.mpf(scale) * mp.exp(-((w * mp.mpf(scale)) ** 2) / 2)
+        return Spectral(f"squared_exponential(length: {number(scale)} s)", density, 0, 15 / mp.mpf(scale)), scale
+    if kind == "band":
+        upper = 1 / scale
+        lower = rng.choice([0, upper * rng.random()])
+        density = lambda w: 1 / (mp.mpf(upper) - mp.mpf(lower))
+        text = f"band_limited(lower: {number(lower)} rad/s, upper: {number(upper)} rad/s)"
+        return Spectral(text, density, lower, upper), scale
+    if kind == "matern":
+        half = rng.randint(1, 6)
+        text = f"matern(smoothness: {2 * half + 1}/2, length: {number(scale)} s)"
+        return Rational(text, matern(half, scale), 2 * half + 2), scale
+    damping = rng.choice([0.05, 0.2, 0.7, 0.95])
+    text = f"oscillator(frequency: {number(1 / scale)} rad/s, damping: {number(damping)})"
+    return Rational(text, oscillator(1 / scale, damping), 4), scale
+
+
+def random_terms(rng, source, scale):
+    """Terms whose derivative variance is finite, and their text in x."""
+    limit = 2 if isinstance(source, Spectral) else int(source.tail - 4) // 2
+    terms, texts = [], []
+    for _ in range(rng.choice([1, 1, 2, 2, 3])):
+        coefficient = rng.choice([-1, 1]) * math.exp(rng.uniform(-1, 1))
+        derivatives = rng.randint(0, min(2, limit)) if rng.random() < 0.5 else 0
+        delay = rng.choice([0.0, scale * rng.uniform(0.05, 4), -scale * rng.uniform(0.05, 4)])
+        if any((n, d) == (derivatives, delay) for _, n, d in terms):
+            continue
+        # Derivatives are worth as much as the process itself.
+        coefficient *= scale**derivatives
+        text = f"delay(x, by: {number(delay)} s)" if delay else "x"
+        text = "derivative(" * derivatives + text + ")" * derivatives
+        unit = f" s^{derivatives}" if derivatives else ""
+        texts.append(f"{number(coefficient)}{unit} * {text}")
+        terms.append((mp.mpf(coefficient), derivatives, delay))
+    return terms, " + ".join(f"({text})" for text in texts)
+
+
+def forms(program, rng):
+    even = Family("lambda_0, lambda_2, lambda_4 of one source, terms delayed", 1e-10)
+    first = Family("lambda_1 of one source, terms delayed", 1e-7)
+    plain = Family("lambda_1 of a source alone", 1e-10)
+    width = Family("bandwidth, squared", 1e-7)
+    several = Family("lambda_0, lambda_2, lambda_4 of several sources", 1e-10)
+    for _ in range(110):
+        parts = []
+        for index in range(rng.choice([1, 1, 1, 2])):
+            source, scale = random_source(rng)
+            terms, text = random_terms(rng, source, scale)
+            name = f"x{index}"
+            parts.append((name, source, terms, text.replace("x)", f"{name})").replace("x,", f"{name},")))
+        lines = []
+        for name, source, terms, text in parts:
+            text = " ".join(name if word == "x" else word for word in text.replace(")", " ) ").split(" "))
+            lines.append(f"process {name} = gaussian(standard_deviation: 1, correlation: {source.text})")
+            lines.append(f"process form_{name} = {text}")
+        lines.append("margin m = " + " + ".join(f"form_{name}" for name, *_ in parts))
+        model = "\n".join(lines)
+        found = program.named(model)
+        sums = [mp.mpf(0)] * 4
+        for name, source, terms, _ in parts:
+            exact = [source.moment(terms, order) for order in (0, 1, 2, 4)]
+            sums = [a + b for a, b in zip(sums, exact)]
+            values = moments_of(found[f"form_{name}"])
+            alone = len(terms) == 1 and terms[0][1] == 0
+            for value, moment, order in zip(values, exact, (0, 1, 2, 4)):
+                group = even if order != 1 else plain if alone else first
+                group.relative(value, moment, f"lambda_{order} {value} not {mp.nstr(moment, 17)} of {name} in\n{model}")
+        if len(parts) > 1:
+            for place, order in ((0, 0), (2, 2), (3, 4)):
+                several.relative(moments_of(found["m"])[place], sums[place], model)
+        squared = 1 - sums[1] ** 2 / (sums[0] * sums[2])
+        width.absolute(found["m"].get("bandwidth", math.nan) ** 2, squared, model)
+
+
+# ----------------------------------------------------------------------------------- rates, survival, reliability index
+
+UNITS = [("kN", 1000), ("N", 1), ("MPa", 10**6), ("mm", mp.mpf(1) / 1000), ("m", 1)]
+TIMES = [("ms", mp.mpf(1) / 1000), ("s", 1), ("h", 3600), ("day", 86400), ("year", 31557600)]
+
+
+def tail(x):
+    return mp.erfc(x / mp.sqrt(2)) / 2
+
+
+def index_of(failure, survival):
+    """-Phi^-1(failure), by Newton's method on the logarithm of the smaller tail."""
+    if failure > survival:
+        return -index_of(survival, failure)
+    target = mp.log(failure)
+    x = mp.sqrt(max(-2 * target - mp.log(2 * mp.pi), mp.mpf("0.01")))
+    for _ in range(100):
+        step = (mp.log(tail(x)) - target) * tail(x) / (mp.npdf(x))
+        x += step
+        if abs(step) < mp.mpf(10) ** -35:
+            break
+    return x
+
+
+def passages(program, rng):
+    mp.mp.dps = 50
+    failure = Family("failure probability from 0.5 down to 1e-300", 1e-9)
+    survival = Family("survival where failure is likelier", 1e-9)
+    index = Family("reliability index, over max(1, index)", 1e-9)
+    start = Family("failure probability at the start", 1e-9)
+    rates = Family("rate of entries", 1e-9)
+    lives = Family("mean time to failure", 1e-9)
+    honest = Family("miss over the stated relative error", 1)
+    for number_of_run in range(60):
+        unit, size = rng.choice(UNITS)
+        mean, deviation = rng.uniform(-5, 5), math.exp(rng.uniform(-2, 2))
+        length = math.exp(rng.uniform(-6, 8))
+        smoothness = rng.choice([1.5, 2.5, round(rng.uniform(1.2, 6), 2)])
+        lines = [
+            f"process load : {unit} = gaussian(mean: {number(mean)} {unit}, standard_deviation: {number(deviation)} {unit},"
+            f" correlation: matern(smoothness: {number(smoothness)}, length: {number(length)} s))"
+        ]
+        frequency = mp.sqrt(mp.mpf(smoothness) / (mp.mpf(smoothness) - 1)) / mp.mpf(length)
+        cases = []
+        for case in range(16):
+            reduced = rng.choice([0.0, rng.uniform(0, 3), rng.uniform(0, 8), rng.uniform(0, 38)])
+            other = reduced + rng.choice([0.0, rng.uniform(0, 0.1), rng.uniform(0, 10)])
+            if rng.random() < 0.1:
+                reduced = -reduced / 8
+            kind = rng.choice(["below", "above", "abs", "outside"])
+            lower, upper = mean - reduced * deviation, mean + other * deviation
+            if kind == "below":
+                condition, levels = f"load < {number(lower)} {unit}", (lower, None)
+            elif kind == "above":
+                condition, levels = f"load > {number(upper)} {unit}", (None, upper)
+            elif kind == "abs":
+                level = abs(upper)
+                condition, levels = f"abs(load) > {number(level)} {unit}", (-level, level)
+            else:
+                if not lower < upper:
+                    continue
+                condition, levels = f"load outside {number(lower)} {unit} to {number(upper)} {unit}", (lower, upper)
+            time_unit, seconds = rng.choice(TIMES)
+            time = float(f"{math.exp(rng.uniform(0, 7)):.4g}")
+            method = rng.choice(["poisson", "poisson_safe_start"])
+            lines.append(
+                f"limit state s{case} {{ failure when {condition} reference period {number(time)} {time_unit}"
+                f" first passage {method} tabulate at 1 {time_unit} }}"
+            )
+            cases.append((f"s{case}", levels, mp.mpf(time) * seconds, mp.mpf(seconds), method, condition))
+        model = "\n".join(lines)
+        found = {one["name"]: one for one in program.results(model)["limit_states"]}
+        for name, (lower, upper), period, first_time, method, condition in cases:
+            one = found[name]
+            r = [(mp.mpf(mean) - lower) / deviation if lower is not None else None,
+                 (mp.mpf(upper) - mean) / deviation if upper is not None else None]
+            r = [x for x in r if x is not None]
+            initial = mp.fsum(tail(x) for x in r)
+            safe = tail(-r[0]) if len(r) == 1 else 1 - initial if initial < 0.9 else between(*r)
+            rate = frequency / (2 * mp.pi) * mp.fsum(mp.exp(-x * x / 2) for x in r)
+            hazard = rate if method == "poisson" else rate / safe
+            place = f"{name}: {condition}, {method}, {mp.nstr(period, 8)} s in\n{model}"
+            if initial > mp.mpf("1e-300"):
+                start.relative(one["initial_failure_probability"], initial, place)
+            if rate > mp.mpf("1e-300"):
+                rates.relative(one["upcrossing_rate"], rate, place)
+            if safe / hazard < mp.mpf("1e300"):
+                lives.relative(one["mean_time_to_failure"], safe / hazard, place)
+            table = one["table"][0]
+            for entry, time in ((one, period), (table, first_time)):
+                lasting = safe * mp.exp(-hazard * time)
+                failing = initial - safe * mp.expm1(-hazard * time)
+                if failing > 0.5 and lasting > mp.mpf("1e-300"):
+                    survival.relative(entry["survival"], lasting, place)
+                if mp.mpf("1e-300") < failing <= 0.5:
+                    failure.relative(entry["failure_probability"], failing, place)
+                    miss = abs(entry["failure_probability"] / failing - 1)
+                    honest.note(miss / one["relative_error"], place)
+                if lasting > mp.mpf("1e-10000") and failing > mp.mpf("1e-10000"):
+                    beta = index_of(failing, lasting)
+                    index.absolute(entry["reliability_index"] / max(1, abs(beta)), beta / max(1, abs(beta)), place)
+    mp.mp.dps = 30
+
+
+def between(lower, upper):
+    """The probability of lying between -lower and upper standard deviations of the mean."""
+    return mp.quad(mp.npdf, [-lower, upper]) if upper + lower < 1 else tail(-upper) - tail(lower)
+
+
+# -------------------------------------------------------------------------------------------- user and tabulated kernels
+
+
+def user_kernels():
+    """Body in tau, p (a time) and w (per second); the same in mpmath; spectral moments that are infinite; crossings."""
+    rad = "(w * tau * 1 rad)"
+    return [
+        ("exp(-(tau / p)^2)", lambda t, p, w: mp.exp(-((t / p) ** 2)), (), True),
+        ("(1 + tau / p) * exp(-tau / p)", lambda t, p, w: (1 + t / p) * mp.exp(-t / p), (4,), True),
+        ("1 / (1 + (tau / p)^2)", lambda t, p, w: 1 / (1 + (t / p) ** 2), (), True),
+        ("exp(-(tau / p)^1.9)", lambda t, p, w: mp.exp(-((t / p) ** mp.mpf(1.9))), (2, 4), False),
+        ("exp(-(tau / p)^0.8)", lambda t, p, w: mp.exp(-((t / p) ** mp.mpf(0.8))), (1, 2, 4), False),
+        (f"exp(-tau / p) * (cos{rad} + sin{rad} / (w * p))",
+         lambda t, p, w: mp.exp(-t / p) * (mp.cos(w * t) + mp.sin(w * t) / (w * p)), (4,), True),
+        (f"exp(-tau / p) * cos{rad}", lambda t, p, w: mp.exp(-t / p) * mp.cos(w * t), (1, 2, 4), False),
+        ("1 / cosh(tau / p)", lambda t, p, w: mp.sech(t / p), (), True),
+        (f"exp(-(tau / p)^2 / 2) * cos{rad}", lambda t, p, w: mp.exp(-((t / p) ** 2) / 2) * mp.cos(w * t), (), True),
+        ("exp(1 - sqrt(1 + (tau / p)^2))", lambda t, p, w: mp.exp(1 - mp.sqrt(1 + (t / p) ** 2)), (), True),
+        ("(1 + tau / p + (tau / p)^2 / 3) * exp(-tau / p)",
+         lambda t, p, w: (1 + t / p + (t / p) ** 2 / 3) * mp.exp(-t / p), (), True),
+        ("exp(1 / (1 + (tau / p)^2) - 1)", lambda t, p, w: mp.exp(1 / (1 + (t / p) ** 2) - 1), (), True),
+        ("1.5 * exp(-tau / p) - 0.5 * exp(-3 * tau / p)",
+         lambda t, p, w: 1.5 * mp.exp(-t / p) - 0.5 * mp.exp(-3 * t / p), (4,), True),
+        ("exp(-tau / p)", lambda t, p, w: mp.exp(-t / p), (1, 2, 4), False),
+        (f"exp(0.5 * (cos{rad} - 1)) * exp(-(tau / p)^2)",
+         lambda t, p, w: mp.exp((mp.cos(w * t) - 1) / 2) * mp.exp(-((t / p) ** 2)), (), True),
+    ]
+
+
+def written_kernels(program, rng):
+    even = Family("user kernels: lambda_0, lambda_2, lambda_4", 1e-10)
+    first = Family("user kernels: lambda_1", 1e-7)
+    smooth = Family("user kernels: crossings counted or refused", 0)
+    values = Family("user kernels: correlation at a lag", 1e-12)
+    for body, function, infinite, crossable in user_kernels():
+        for _ in range(3):
+            p, w = math.exp(rng.uniform(-5, 5)), 0.0
+            w = rng.uniform(0.3, 2) / p
+            lag = p * rng.uniform(0.1, 3)
+            declared = f"kernel k(tau, p: s, w: /s) = {body}\n"
+            model = (
+                declared + f"process x = gaussian(standard_deviation: 1, correlation: k(p: {number(p)} s, w: {number(w)} /s))\n"
+                f"margin plus = x + delay(x, by: {number(lag)} s)\nmargin minus = x - delay(x, by: {number(lag)} s)"
+            )
+            found = program.named(model)
+            p, w = mp.mpf(p), mp.mpf(w)
+            rho = lambda t: function(mp.mpf(t), p, w)
+            plus, minus = (found[side]["standard_deviation"] for side in ("plus", "minus"))
+            values.absolute((plus * plus - minus * minus) / 4, rho(lag), model)
+            reported = moments_of(found["x"])
+            for place, order in ((0, 0), (2, 2), (3, 4)):
+                if order == 0:
+                    exact = mp.mpf(1)
+                elif order in infinite:
+                    exact = INFINITE
+                else:
+                    exact = derivative_at_zero(rho, order, p)
+                even.relative(reported[place], exact, f"lambda_{order} {reported[place]} not {mp.nstr(exact, 15)}\n{model}")
+            exact = INFINITE if 1 in infinite else first_moment(rho, p, float(w))
+            first.relative(reported[1], exact, f"lambda_1 {reported[1]} not {mp.nstr(exact, 15)}\n{model}")
+            refused = program.codes(model + "\nlimit state l { failure when x > 3 reference period 1 s }")
+            smooth.note(refused != ([] if crossable else ["process/not-differentiable"]), f"{refused}\n{model}")
+
+
+def derivative_at_zero(rho, order, scale):
+    """(-1)^(order/2) times the derivative from the right, by Richardson extrapolation at 120 digits."""
+    with mp.workdps(160):
+        step = mp.mpf(scale) * mp.mpf("1e-16")
+        points = 12
+        # The coefficient of tau^order of the polynomial through points near 0.
+        matrix = mp.matrix(points, points)
+        right = mp.matrix(points, 1)
+        for i in range(points):
+            for j in range(points):
+                matrix[i, j] = mp.mpf(i) ** j
+            right[i] = rho(step * i)
+        coefficient = mp.lu_solve(matrix, right)[order]
+        return (-1) ** (order // 2) * coefficient / step**order * mp.factorial(order)
+
+
+def first_moment(rho, scale, w):
+    """(2/pi) times the integral of (1 - rho)/tau^2."""
+    scale = mp.mpf(scale)
+    with mp.workdps(40):
+        step = min(scale, 3 / mp.mpf(w))
+        points = [0, step / 100, step / 10] + [step * k for k in range(1, 60)]
+        head = mp.quad(lambda t: (1 - rho(t)) / t**2 if t > scale * mp.mpf("1e-18") else mp.mpf(0), points)
+        rest = mp.quad(lambda t: rho(t) / t**2, [points[-1] * mp.mpf(2) ** k for k in range(60)])
+        return 2 / mp.pi * (head + 1 / points[-1] - rest)
+
+
+def tables(program, rng):
+    even = Family("tabulated kernels: lambda_0, lambda_2", 1e-10)
+    first = Family("tabulated kernels: lambda_1", 1e-7)
+    values = Family("tabulated kernels: correlation at a lag", 1e-12)
+    for _ in range(30):
+        scale = math.exp(rng.uniform(-3, 5))
+        rows = rng.randint(4, 40)
+        lags = np.concatenate([[0.0], np.cumsum([scale * rng.uniform(0.05, 0.4) for _ in range(rows)])])
+        correlations = np.exp(-0.5 * (lags / scale) ** 2) * np.cos(0.7 * lags / scale)
+        (program.folder / "table.csv").write_text(
+            "lag [s],correlation\n" + "\n".join(f"{float(a)!r},{float(b)!r}" for a, b in zip(lags, correlations)) + "\n"
+        )
+        beyond = rng.choice(["zero", "hold"])
+        lag = rng.uniform(0, float(lags[-1]))
+        model = (
+            f'process x = gaussian(standard_deviation: 1, correlation: tabulated("table.csv", beyond: {beyond}))\n'
+            f"margin plus = x + delay(x, by: {number(lag)} s)\nmargin minus = x - delay(x, by: {number(lag)} s)"
+        )
+        found = program.named(model)
+        spline = CubicSpline(lags, correlations, bc_type=((1, 0.0), (2, 0.0)))
+        plus, minus = (found[side]["standard_deviation"] for side in ("plus", "minus"))
+        place = f"{model}\n{lags} {correlations}"
+        values.absolute((plus * plus - minus * minus) / 4, float(spline(lag)), place)
+        reported = moments_of(found["x"])
+        even.relative(reported[0], mp.mpf(1), place)
+        even.relative(reported[2], mp.mpf(-float(spline(0.0, 2))), place)
+        # (2/pi) integral of (1 - rho)/tau^2, each cubic piece in closed form by mpmath.
+        total = mp.mpf(0)
+        for k in range(rows):
+            d, c, b, a = (mp.mpf(float(v)) for v in spline.c[:, k])
+            start, end = mp.mpf(lags[k]), mp.mpf(lags[k + 1])
+            if k == 0:
+                total += -c * end - d * end**2 / 2
+            else:
+                total += mp.quad(lambda t: (1 - (a + (t - start) * (b + (t - start) * (c + (t - start) * d)))) / t**2,
+                                 [start, end])
+        plateau = mp.mpf(float(correlations[-1])) if beyond == "hold" else mp.mpf(0)
+        exact = 2 / mp.pi * (total + (1 - plateau) / mp.mpf(lags[-1]))
+        first.relative(reported[1], exact, place)
+
+
+def main():
+    binary = sys.argv[1]
+    seed = int(sys.argv[2]) if len(sys.argv) > 2 else 20
+    with tempfile.TemporaryDirectory() as folder:
+        program = Program(binary, folder)
+        for checks in (kernels, forms, passages, written_kernels, tables):
+            checks(program, random.Random(f"{seed} {checks.__name__}"))
+    if not all([family.report() for family in Family.all]):
+        sys.exit(1)
+
+
+if __name__ == "__main__":
+    main()
