@@ -123,6 +123,17 @@ pub enum LimitQuantity {
     InitialFailureProbability,
 }
 
+impl LimitQuantity {
+    /// The least and the most it can be, in SI units.
+    pub fn range(self) -> (f64, f64) {
+        match self {
+            Self::Survival | Self::FailureProbability | Self::InitialFailureProbability => (0.0, 1.0),
+            Self::UpcrossingRate | Self::MeanTimeToFailure => (0.0, f64::INFINITY),
+            Self::ReliabilityIndex => (f64::NEG_INFINITY, f64::INFINITY),
+        }
+    }
+}
+
 /// What a process or a margin has that can be expected.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 #[allow(missing_docs)]

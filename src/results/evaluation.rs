@@ -225,7 +225,11 @@ impl<'m> Judged<'m> {
             };
             let low = one.min(other) - self.error(quantity, one.min(other));
             let high = one.max(other) + self.error(quantity, one.max(other));
-            requirement.demand.judge(low, high)
+            // The error does not lead beyond what the quantity can be.
+            let (least, most) = quantity.range();
+            requirement
+                .demand
+                .judge(low.clamp(least, most), high.clamp(least, most))
         };
         RequirementResult {
             text: requirement.text.clone(),

@@ -239,16 +239,11 @@ impl Lowering<'_, '_, '_> {
 
     /// Refuses a demand that no probability, rate or time can meet or miss.
     fn possible(&mut self, quantity: LimitQuantity, limit: f64, word: &Word, place: Span) -> Option<()> {
-        let (possible, range) = match quantity {
-            LimitQuantity::Survival | LimitQuantity::FailureProbability | LimitQuantity::InitialFailureProbability => {
-                ((0.0..=1.0).contains(&limit), "between 0 and 1")
-            }
-            LimitQuantity::UpcrossingRate | LimitQuantity::MeanTimeToFailure => (limit >= 0.0, "0 or more"),
-            LimitQuantity::ReliabilityIndex => (true, ""),
-        };
-        if possible {
+        let (least, most) = quantity.range();
+        if (least..=most).contains(&limit) {
             return Some(());
         }
+        let range = if most == 1.0 { "between 0 and 1" } else { "0 or more" };
         let message = format!("a demand on `{}` must be {range}", word.text);
         let mut finding = Diagnostic::new(Code::ValueRange, place, message);
         if limit > 1.0 && limit <= 100.0 {
