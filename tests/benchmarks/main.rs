@@ -13,7 +13,9 @@
 mod generated;
 
 use divan::{Bencher, black_box};
-use outcross::check::{Settings, check};
+use outcross::check::{Model, Settings, check};
+use outcross::covariance::moments::MomentTable;
+use outcross::diagnostics::Diagnostic;
 use outcross::report::text;
 use outcross::results::evaluate;
 use outcross::source::{Files, Reader, Unreadable};
@@ -43,17 +45,23 @@ impl Reader for Held {
     }
 }
 
-/// All of `evaluate` but the process around it, the report written to memory. Returns its size.
-fn whole(held: &Held) -> usize {
-    let mut files = Files::new();
+/// The checked model, with what was found besides.
+fn checked(files: &mut Files, held: &Held) -> (Model, Vec<Diagnostic>) {
     let settings = Settings {
         require_parameters: true,
         ..Settings::default()
     };
-    let (model, diagnostics) = check(&mut files, held, Path::new("generated.limit"), &settings);
-    let Some(model) = model else {
-        panic!("the generated model has no faults, but {diagnostics:?}")
-    };
+    let (model, diagnostics) = check(files, held, Path::new("generated.limit"), &settings);
+    match model {
+        Some(model) => (model, diagnostics),
+        None => panic!("the generated model has no faults, but {diagnostics:?}"),
+    }
+}
+
+/// All of `evaluate` but the process around it, the report written to memory. Returns its size.
+fn whole(held: &Held) -> usize {
+    let mut files = Files::new();
+    let (model, diagnostics) = checked(&mut files, held);
     let results = evaluate(&files, &model, &diagnostics, &[]);
     let mut out = Vec::new();
     text::write(&mut out, &model, &results).expect("memory takes all");
@@ -76,8 +84,22 @@ fn evaluate_whole(bencher: Bencher<'_, '_>, tens: usize) {
     bencher.bench(|| whole(black_box(&held)));
 }
 
-#[divan::bench(sample_count = 20, sample_size = 1)]
+/// The margin alone, from its linear form to its moments, nothing known of its sources beforehand.
+#[divan::bench(sample_count = 50, sample_size = 1)]
 fn margin_of_2000_terms_over_500_sources(bencher: Bencher<'_, '_>) {
+    let held = Held(generated::wide_margin());
+    let model = checked(&mut Files::new(), &held).0;
+    let margin = model
+        .varying
+        .iter()
+        .find(|named| named.name == "wide")
+        .expect("the model has the margin");
+    bencher.bench(|| MomentTable::new(black_box(&model.sources)).moments(&margin.form));
+}
+
+/// The file of that margin, with its 500 processes, from text to report.
+#[divan::bench(sample_count = 20, sample_size = 1)]
+fn file_of_that_margin(bencher: Bencher<'_, '_>) {
     let held = Held(generated::wide_margin());
     bencher.bench(|| whole(black_box(&held)));
 }
@@ -91,20 +113,21 @@ fn run(program: &Path, arguments: &[&Path]) {
     );
 }
 
-/// The folder of the built programs, seen from that of the benchmark.
-fn built(name: &str) -> PathBuf {
-    let here = std::env::current_exe().unwrap_or_default();
-    let folder = here
-        .parent()
-        .and_then(Path::parent)
-        .map(Path::to_path_buf)
-        .unwrap_or_default();
-    folder.join(name)
+/// The program that does nothing, built on demand: cargo builds no examples for a benchmark.
+fn nothing() -> PathBuf {
+    let built = Command::new(env!("CARGO"))
+        .args(["build", "--quiet", "--release", "--example", "nothing"])
+        .current_dir(env!("CARGO_MANIFEST_DIR"))
+        .status();
+    assert!(built.is_ok_and(|status| status.success()), "the baseline is built");
+    Path::new(env!("CARGO_BIN_EXE_outcross"))
+        .with_file_name("examples")
+        .join("nothing")
 }
 
 #[divan::bench(sample_count = 200, sample_size = 1)]
 fn start_of_nothing(bencher: Bencher<'_, '_>) {
-    let nothing = built("examples/nothing");
+    let nothing = nothing();
     bencher.bench(|| run(&nothing, &[]));
 }
 
