@@ -19,15 +19,22 @@ const EVALUATIONS: usize = 200_000;
 /// It must be known to be finite. `first` is lambda_1 of the source, `variance` and `curvature` lambda_0 and lambda_2 of
 /// the terms.
 pub(super) fn of_terms(kernel: &Kernel, terms: &[Term], first: Moment, variance: Moment, curvature: Moment) -> Moment {
-    let found = if kernel.density_is_closed() {
-        over_frequencies(kernel, terms, first)
-    } else {
-        over_lags(kernel, terms, variance, curvature)
+    let by_frequency = kernel
+        .density_is_closed()
+        .then(|| over_frequencies(kernel, terms, first).map(reached));
+    let found = match by_frequency {
+        Some(found) if found != Ok(Moment::Unreached) => found,
+        // Terms that nearly cancel lose their digits over frequencies, not over lags.
+        _ => over_lags(kernel, terms, first, variance, curvature).map(reached),
     };
-    match found {
-        Ok(Moment::Finite { value, error }) if error > REACHED * value.abs() => Moment::Unreached,
-        Ok(moment) => moment,
-        Err(_) => Moment::Unknown,
+    found.unwrap_or(Moment::Unknown)
+}
+
+/// The moment, unless its error is too large.
+fn reached(moment: Moment) -> Moment {
+    match moment {
+        Moment::Finite { value, error } if error > REACHED * value.abs() => Moment::Unreached,
+        moment => moment,
     }
 }
 
@@ -136,18 +143,36 @@ fn of_density(kernel: &Kernel, group: &Group, grid: &[f64], scale: f64) -> Momen
     head.plus(moment(tail))
 }
 
-/// Where no density is at hand: `2/pi` times the integral of `(C(0) - C(tau))/tau²` over lags above 0, C being the
-/// autocovariance of the terms. Its integrand has one sign; it follows from that of `(1 - cos x)/x²`, which is `pi/2`.
-fn over_lags(kernel: &Kernel, terms: &[Term], variance: Moment, curvature: Moment) -> Result<Moment, Unavailable> {
-    let (Some(variance), Some(curvature)) = (variance.value(), curvature.value()) else {
-        return Ok(Moment::Unreached);
-    };
+/// Over lags: `2/pi` times the integral of `(C(0) - C(tau))/tau²` over lags above 0, C being the autocovariance of the
+/// terms. Its integrand has one sign; it follows from that of `(1 - cos x)/x²`, which is `pi/2`.
+///
+/// Where `lambda_2` is infinite the part of each term with itself, `first` times the squares of the coefficients, is put
+/// aside: what terms have with each other is smooth at lag 0.
+fn over_lags(
+    kernel: &Kernel,
+    terms: &[Term],
+    first: Moment,
+    variance: Moment,
+    curvature: Moment,
+) -> Result<Moment, Unavailable> {
     let Some((shortest, longest)) = kernel.times() else {
         return Ok(Moment::Finite { value: 0.0, error: 0.0 });
     };
+    let apart = curvature == Moment::Infinite && terms.iter().all(|term| term.operator.derivatives == 0);
+    let pairs = Pairs::new(terms, apart);
+    let (alone, variance, curvature) = if apart {
+        let squares: f64 = terms.iter().map(|term| term.coefficient() * term.coefficient()).sum();
+        let (variance, curvature) = (pairs.covariance(kernel, 0.0)?, pairs.curvature(kernel)?);
+        (first.times(squares), variance, curvature)
+    } else {
+        let (Some(variance), Some(curvature)) = (variance.value(), curvature.value()) else {
+            return Ok(Moment::Unreached);
+        };
+        (Moment::Finite { value: 0.0, error: 0.0 }, variance, curvature)
+    };
     let mut failure = None;
-    let mut lost = |lag: f64| match autocovariance(kernel, terms, lag) {
-        Ok(covariance) => (variance - covariance) / (lag * lag),
+    let mut lost = |lag: f64| match pairs.loss(kernel, lag, variance) {
+        Ok(loss) => loss / (lag * lag),
         Err(why) => {
             failure.get_or_insert(why);
             f64::NAN
@@ -157,19 +182,15 @@ fn over_lags(kernel: &Kernel, terms: &[Term], variance: Moment, curvature: Momen
     let near = NEAR * shortest;
     let start = 0.5 * curvature * near;
     let mismatch = (lost(near) - 0.5 * curvature).abs() * near;
-    let reach = terms.iter().map(|term| term.operator.delay.abs()).fold(0.0, f64::max);
-    let mut lags: Vec<f64> = std::iter::successors(Some(near), |lag| Some(lag * 4.0))
-        .take_while(|lag| *lag < FADED * (longest + reach))
-        .take(200)
-        .collect();
-    let delays = terms
-        .iter()
-        .flat_map(|one| terms.iter().map(|other| one.operator.delay - other.operator.delay));
-    lags.extend(delays.map(f64::abs).filter(|lag| *lag > near));
-    lags.sort_by(f64::total_cmp);
-    lags.dedup();
-    let tolerance = Tolerance::relative(RELATIVE);
-    let rest = moment(quadrature::to_infinity(&mut lost, &lags, tolerance, EVALUATIONS));
+    let lags = pairs.lags(near, longest);
+    let last = lags.last().copied().unwrap_or(near);
+    let head = quadrature::between(&mut lost, &lags, Tolerance::relative(RELATIVE), EVALUATIONS);
+    // What the head has found is the scale of the rest; the head may have used up its evaluations on rounding.
+    let tolerance = Tolerance {
+        absolute: RELATIVE * head.as_ref().map_or(0.0, |head| head.value.abs()),
+        relative: RELATIVE,
+    };
+    let tail = quadrature::to_infinity(&mut lost, &[last, 2.0 * last], tolerance, EVALUATIONS);
     if let Some(why) = failure {
         return Err(why);
     }
@@ -177,33 +198,97 @@ fn over_lags(kernel: &Kernel, terms: &[Term], variance: Moment, curvature: Momen
         value: start,
         error: mismatch,
     };
-    Ok(start.plus(rest).times(FRAC_2_PI))
+    Ok(start.plus(moment(head)).plus(moment(tail)).times(FRAC_2_PI).plus(alone))
 }
 
 /// The stretch of lags, in shortest times, over which the curvature at lag 0 stands for the covariance.
-const NEAR: f64 = 1e-3;
+const NEAR: f64 = 1e-5;
 
 /// After so many of its longest times a kernel is taken to have faded.
 const FADED: f64 = 40.0;
 
-/// The covariance of the terms with themselves a lag later.
-fn autocovariance(kernel: &Kernel, terms: &[Term], lag: f64) -> Result<f64, Unavailable> {
-    let mut sum = 0.0;
-    for one in terms {
-        for other in terms {
-            let order = (one.operator.derivatives + other.operator.derivatives) as usize;
-            let at = lag + one.operator.delay - other.operator.delay;
-            let derivative = if order == 0 {
-                kernel.value(at)?
-            } else {
-                let factorial: f64 = (1..=order).map(|n| n as f64).product();
-                kernel.taylor(at, order)?.last().copied().unwrap_or(f64::NAN) * factorial
-            };
-            let parity = if one.operator.derivatives % 2 == 1 { -1.0 } else { 1.0 };
-            sum += parity * one.coefficient() * other.coefficient() * derivative;
+/// The pairs of terms that a covariance is summed over.
+struct Pairs {
+    pairs: Vec<Pair>,
+}
+
+/// `weight` times the derivative of an order of the kernel, at the lag `apart`.
+struct Pair {
+    weight: f64,
+    order: usize,
+    apart: f64,
+}
+
+impl Pairs {
+    /// All pairs, or those of different terms.
+    fn new(terms: &[Term], different: bool) -> Self {
+        let mut pairs = Vec::new();
+        for (index, one) in terms.iter().enumerate() {
+            for (other_index, other) in terms.iter().enumerate() {
+                if different && index == other_index {
+                    continue;
+                }
+                let parity = if one.operator.derivatives % 2 == 1 { -1.0 } else { 1.0 };
+                pairs.push(Pair {
+                    weight: parity * one.coefficient() * other.coefficient(),
+                    order: (one.operator.derivatives + other.operator.derivatives) as usize,
+                    apart: one.operator.delay - other.operator.delay,
+                });
+            }
         }
+        Self { pairs }
     }
-    Ok(sum)
+
+    /// Rising lags from `near` on, among them those at which the kernel of a pair passes lag 0.
+    fn lags(&self, near: f64, longest: f64) -> Vec<f64> {
+        let reach = self.pairs.iter().map(|pair| pair.apart.abs()).fold(0.0, f64::max);
+        let mut lags: Vec<f64> = std::iter::successors(Some(near), |lag| Some(lag * 4.0))
+            .take_while(|lag| *lag < FADED * (longest + reach))
+            .take(200)
+            .collect();
+        lags.extend(self.pairs.iter().map(|pair| pair.apart.abs()).filter(|lag| *lag > near));
+        lags.sort_by(f64::total_cmp);
+        lags.dedup();
+        lags
+    }
+
+    /// The covariance of the terms with themselves a lag later.
+    fn covariance(&self, kernel: &Kernel, lag: f64) -> Result<f64, Unavailable> {
+        self.pairs
+            .iter()
+            .map(|pair| Ok(pair.weight * derivative(kernel, pair.order, lag + pair.apart)?))
+            .sum()
+    }
+
+    /// Minus its second derivative at lag 0.
+    fn curvature(&self, kernel: &Kernel) -> Result<f64, Unavailable> {
+        let parts = self.pairs.iter();
+        parts
+            .map(|pair| Ok(-pair.weight * derivative(kernel, pair.order + 2, pair.apart)?))
+            .sum()
+    }
+
+    /// What the covariance has lost a lag later. Of an undifferentiated pair it is the difference of what the kernel loses
+    /// over two lags, each known to all digits however small, so that terms that nearly cancel keep theirs.
+    fn loss(&self, kernel: &Kernel, lag: f64, variance: f64) -> Result<f64, Unavailable> {
+        if self.pairs.iter().any(|pair| pair.order > 0) {
+            return Ok(variance - self.covariance(kernel, lag)?);
+        }
+        self.pairs
+            .iter()
+            .map(|pair| Ok(pair.weight * (kernel.loss(lag + pair.apart)? - kernel.loss(pair.apart)?)))
+            .sum()
+    }
+}
+
+/// A derivative of the kernel at a lag of either sign.
+fn derivative(kernel: &Kernel, order: usize, lag: f64) -> Result<f64, Unavailable> {
+    if order == 0 {
+        return kernel.value(lag);
+    }
+    let factorial: f64 = (1..=order).map(|n| n as f64).product();
+    let coefficient = kernel.taylor(lag, order)?.last().copied().unwrap_or(f64::NAN);
+    Ok(coefficient * factorial)
 }
 
 fn moment(integral: Option<Integral>) -> Moment {
