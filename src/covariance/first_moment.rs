@@ -182,7 +182,7 @@ fn over_lags(
     let near = NEAR * shortest;
     let start = 0.5 * curvature * near;
     let mismatch = (lost(near) - 0.5 * curvature).abs() * near;
-    let lags = pairs.lags(near, longest);
+    let lags = pairs.lags(kernel, near, longest);
     let last = lags.last().copied().unwrap_or(near);
     let head = quadrature::between(&mut lost, &lags, Tolerance::relative(RELATIVE), EVALUATIONS);
     // What the head has found is the scale of the rest; the head may have used up its evaluations on rounding.
@@ -203,6 +203,9 @@ fn over_lags(
 
 /// The stretch of lags, in shortest times, over which the curvature at lag 0 stands for the covariance.
 const NEAR: f64 = 1e-5;
+
+/// More lags than that are not looked at one by one.
+const MOST_LAGS: usize = 2_000;
 
 /// After so many of its longest times a kernel is taken to have faded.
 const FADED: f64 = 40.0;
@@ -239,14 +242,19 @@ impl Pairs {
         Self { pairs }
     }
 
-    /// Rising lags from `near` on, among them those at which the kernel of a pair passes lag 0.
-    fn lags(&self, near: f64, longest: f64) -> Vec<f64> {
+    /// Rising lags from `near` on, among them those at which the kernel of a pair passes lag 0 or a kink.
+    fn lags(&self, kernel: &Kernel, near: f64, longest: f64) -> Vec<f64> {
         let reach = self.pairs.iter().map(|pair| pair.apart.abs()).fold(0.0, f64::max);
-        let mut lags: Vec<f64> = std::iter::successors(Some(near), |lag| Some(lag * 4.0))
+        let graded = std::iter::successors(Some(near), |lag| Some(lag * 4.0))
             .take_while(|lag| *lag < FADED * (longest + reach))
-            .take(200)
-            .collect();
-        lags.extend(self.pairs.iter().map(|pair| pair.apart.abs()).filter(|lag| *lag > near));
+            .take(MOST_LAGS);
+        let mut lags: Vec<f64> = graded.collect();
+        let kinks: Vec<f64> = kernel.kinks().iter().map(|kink| kink.lag).chain([0.0]).collect();
+        let passed = self
+            .pairs
+            .iter()
+            .flat_map(|pair| kinks.iter().flat_map(|kink| [kink + pair.apart, kink - pair.apart]));
+        lags.extend(passed.filter(|lag| *lag > near && lag.is_finite()).take(MOST_LAGS));
         lags.sort_by(f64::total_cmp);
         lags.dedup();
         lags

@@ -326,7 +326,7 @@ def forms(program, rng):
 
 def differences(program, rng):
     """X(t) - X(t - d) for a short d: what a kernel loses over d is a small difference."""
-    first = Family("lambda_1 of X(t) - X(t - d), d down to 1e-3 of the length", 1e-6)
+    first = Family("lambda_1 of X(t) - X(t - d), d down to 1e-3 of the length", 1e-9)
     even = Family("lambda_0 and lambda_2 of the same", 1e-8)
     for _ in range(12):
         scale = math.exp(rng.uniform(-3, 3))
@@ -560,8 +560,9 @@ def tables(program, rng):
     values = Family("tabulated kernels: correlation at a lag", 1e-12)
     for _ in range(30):
         scale = math.exp(rng.uniform(-3, 5))
-        rows = rng.randint(4, 40)
-        lags = np.concatenate([[0.0], np.cumsum([scale * rng.uniform(0.05, 0.4) for _ in range(rows)])])
+        rows = rng.randint(12, 40)
+        lags = np.concatenate([[0.0], np.cumsum([scale * rng.uniform(0.1, 0.4) for _ in range(rows)])])
+        lags *= max(1.0, 6 * scale / lags[-1])
         correlations = np.exp(-0.5 * (lags / scale) ** 2) * np.cos(0.7 * lags / scale)
         (program.folder / "table.csv").write_text(
             "lag [s],correlation\n" + "\n".join(f"{float(a)!r},{float(b)!r}" for a, b in zip(lags, correlations)) + "\n"

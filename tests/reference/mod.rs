@@ -1,6 +1,7 @@
 //! Special functions against tables computed with mpmath (`tables.py` beside this file) and the errors their
 //! documentation states.
 
+mod first_moment;
 mod kernels;
 
 use outcross::numerics::{bessel, gamma, matern, normal};
