@@ -4,6 +4,7 @@ use super::parts::{InstanceId, Parts};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Declaration, DeclarationKind, Path, Word};
 use crate::source::Span;
+use std::cell::Cell;
 use std::collections::hash_map::Entry;
 use std::collections::{HashMap, HashSet};
 
@@ -42,7 +43,12 @@ pub struct Names<'p> {
     first: Vec<u32>,
     tables: Vec<HashMap<&'p str, ItemId>>,
     lost: Vec<HashSet<&'p str>>,
+    /// How many more names may be compared with names that nothing declares.
+    comparisons: Cell<usize>,
 }
+
+/// So many names are compared in search of what was meant: a file of faults must not cost the square of its size.
+const MOST_COMPARISONS: usize = 1_000_000;
 
 /// The names that mean something without being declared.
 const BUILT_IN: &[(&str, &str)] = &[
@@ -60,6 +66,7 @@ impl<'p> Names<'p> {
             first: Vec::new(),
             tables: Vec::new(),
             lost: Vec::new(),
+            comparisons: Cell::new(MOST_COMPARISONS),
         };
         for (id, instance) in (0u32..).map(InstanceId).zip(&parts.instances) {
             names.first.push(count(names.items.len()));
@@ -181,9 +188,15 @@ impl<'p> Names<'p> {
             .is_some_and(|lost| lost.contains(name))
     }
 
-    /// The names of an instance that look like `name`, nearest first, at most three.
+    /// The names of an instance that look like `name`, nearest first, at most three; none once too many have been
+    /// compared.
     pub fn near(&self, name: &str, instance: InstanceId) -> Vec<&'p str> {
         let table = self.tables.get(instance.0 as usize);
+        let left = self.comparisons.get().checked_sub(table.map_or(0, HashMap::len));
+        self.comparisons.set(left.unwrap_or(0));
+        if left.is_none() {
+            return Vec::new();
+        }
         near(name, table.into_iter().flat_map(|table| table.keys().copied()))
     }
 }

@@ -186,7 +186,7 @@ fn conditions(condition: &Condition, visit: &mut impl FnMut(&Expression)) {
 }
 
 /// Visits every path of an expression. The depth of an expression is bounded by the parser.
-fn walk(expression: &Expression, visit: &mut dyn FnMut(&Path)) {
+pub(super) fn walk(expression: &Expression, visit: &mut dyn FnMut(&Path)) {
     match &expression.kind {
         ExpressionKind::Number(_) | ExpressionKind::String(_) => {}
         ExpressionKind::Name(path) => visit(path),

@@ -27,7 +27,12 @@ pub(super) fn of_terms(kernel: &Kernel, terms: &[Term], first: Moment, variance:
         // Terms that nearly cancel lose their digits over frequencies, not over lags.
         _ => over_lags(kernel, terms, first, variance, curvature).map(reached),
     };
-    found.unwrap_or(Moment::Unknown)
+    match found {
+        Ok(moment) => moment,
+        // The model itself says nothing there.
+        Err(Unavailable::BeyondTable { .. }) => Moment::Unknown,
+        Err(_) => Moment::Unreached,
+    }
 }
 
 /// The moment, unless its error is too large.
@@ -183,14 +188,19 @@ fn over_lags(
     let start = 0.5 * curvature * near;
     let mismatch = (lost(near) - 0.5 * curvature).abs() * near;
     let lags = pairs.lags(kernel, near, longest);
+    // Every pair of terms costs two kernel values at every lag.
+    let evaluations = EVALUATIONS.min(MOST_KERNEL_VALUES / pairs.pairs.len().max(1));
+    if lags.len() * POINTS > evaluations {
+        return Ok(Moment::Unreached);
+    }
     let last = lags.last().copied().unwrap_or(near);
-    let head = quadrature::between(&mut lost, &lags, Tolerance::relative(RELATIVE), EVALUATIONS);
+    let head = quadrature::between(&mut lost, &lags, Tolerance::relative(RELATIVE), evaluations);
     // What the head has found is the scale of the rest; the head may have used up its evaluations on rounding.
     let tolerance = Tolerance {
         absolute: RELATIVE * head.as_ref().map_or(0.0, |head| head.value.abs()),
         relative: RELATIVE,
     };
-    let tail = quadrature::to_infinity(&mut lost, &[last, 2.0 * last], tolerance, EVALUATIONS);
+    let tail = quadrature::to_infinity(&mut lost, &[last, 2.0 * last], tolerance, evaluations);
     if let Some(why) = failure {
         return Err(why);
     }
@@ -203,6 +213,12 @@ fn over_lags(
 
 /// The stretch of lags, in shortest times, over which the curvature at lag 0 stands for the covariance.
 const NEAR: f64 = 1e-5;
+
+/// Kernel values spent on one form over one source.
+const MOST_KERNEL_VALUES: usize = 20_000_000;
+
+/// Points of the quadrature rule between two lags.
+const POINTS: usize = 21;
 
 /// More lags than that are not looked at one by one.
 const MOST_LAGS: usize = 2_000;
@@ -295,8 +311,17 @@ fn derivative(kernel: &Kernel, order: usize, lag: f64) -> Result<f64, Unavailabl
         return kernel.value(lag);
     }
     let factorial: f64 = (1..=order).map(|n| n as f64).product();
-    let coefficient = kernel.taylor(lag, order)?.last().copied().unwrap_or(f64::NAN);
+    let coefficients = match kernel.taylor(lag, order) {
+        // A written kernel may leave the range of numbers long after it has faded.
+        Err(Unavailable::NoValue { .. }) if has_faded(kernel, lag) => return Ok(0.0),
+        found => found?,
+    };
+    let coefficient = coefficients.last().copied().unwrap_or(f64::NAN);
     Ok(coefficient * factorial)
+}
+
+fn has_faded(kernel: &Kernel, lag: f64) -> bool {
+    kernel.times().is_some_and(|(_, longest)| lag.abs() > FADED * longest)
 }
 
 fn moment(integral: Option<Integral>) -> Moment {

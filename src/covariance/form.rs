@@ -175,9 +175,8 @@ impl LinearForm {
     /// The form `by` seconds earlier.
     #[must_use]
     pub fn delayed(&self, by: f64) -> Self {
-        // `+ 0.0` turns a negative zero into zero, so that both sort as one.
         self.mapped(self.deterministic, |operator| Operator {
-            delay: operator.delay + by + 0.0,
+            delay: decimal(operator.delay + by),
             ..operator
         })
     }
@@ -219,6 +218,11 @@ impl LinearForm {
     pub fn show<'a>(&'a self, name: &'a dyn Fn(SourceId) -> String) -> impl fmt::Display + 'a {
         Shown { form: self, name }
     }
+}
+
+/// The double nearest to the value's fifteen-digit decimal, so that 0.1 + 0.2 is the delay 0.3; a negative zero is zero.
+fn decimal(value: f64) -> f64 {
+    format!("{value:.14e}").parse().unwrap_or(value) + 0.0
 }
 
 /// Sorts, adds up what is alike, and drops what has cancelled: a sum within a few roundings of its parts is zero.
@@ -313,6 +317,7 @@ mod tests {
 
     #[test]
     fn a_delay_there_and_back_is_none() {
+        assert_eq!(x().delayed(0.1).delayed(0.2), x().delayed(0.3));
         assert_eq!(x().delayed(0.4).delayed(-0.4), x());
     }
 

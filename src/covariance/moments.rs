@@ -224,10 +224,19 @@ impl<'s> MomentTable<'s> {
         {
             let moments = moments();
             let square = term.coefficient() * term.coefficient();
-            return moments
-                .lambda
-                .each_ref()
-                .map(|moment| Moment::from(moment).times(square));
+            let source = &self.sources[source.0 as usize];
+            // Infinite although the derivative exists: beyond the range of doubles.
+            let in_range = |moment: &kernel::Moment, derivatives: u32| match Moment::from(moment).times(square) {
+                Moment::Infinite if source.has_derivative(derivatives) => Moment::Unreached,
+                moment => moment,
+            };
+            let [zeroth, first, second, fourth] = &moments.lambda;
+            return [
+                in_range(zeroth, 0),
+                in_range(first, 1),
+                in_range(second, 1),
+                in_range(fourth, 2),
+            ];
         }
         let [variance, curvature, fourth] = [0, 2, 4].map(|n| self.even(source, terms, n));
         let source = &self.sources[source.0 as usize];

@@ -303,14 +303,26 @@ impl<'m> Judged<'m> {
                 show_number(least.failure(), DIGITS),
                 show_number(most.failure(), DIGITS),
             );
-            let distance = show_number(reduced, 3);
+            let distance = show_number(reduced.abs(), 3);
+            let where_it_is = if reduced > 0.0 {
+                format!("The barrier is only {distance} standard deviations from the mean")
+            } else {
+                format!("The mean itself is failed, {distance} standard deviations beyond the barrier")
+            };
             assumptions.push(Assumption {
                 code: "low-barrier",
                 text: format!(
-                    "The barrier is only {distance} standard deviations from the mean, so entries are not rare and the \
-                     formula is outside its range (2 or more). Requirements are judged on what holds in any case: the \
-                     failure probability over the reference period lies between {least} and {most}."
+                    "{where_it_is}, so entries are not rare and the formula is outside its range (2 or more). \
+                     Requirements are judged on what holds in any case: the failure probability over the reference \
+                     period is at least {least} and at most {most}."
                 ),
+            });
+        }
+        if self.bandwidth.is_none() {
+            assumptions.push(Assumption {
+                code: "bandwidth-unknown",
+                text: "The bandwidth of the margin is not known, so it was not checked whether entries come in clumps."
+                    .into(),
             });
         }
         if let Some(bandwidth) = self.bandwidth.filter(|bandwidth| *bandwidth < NARROW_BAND) {

@@ -15,6 +15,12 @@ use std::sync::Arc;
 impl Lowering<'_, '_, '_> {
     /// A number with its unit.
     pub(super) fn literal(&mut self, number: &tree::Number) -> Value {
+        if number.value == 0.0 && self.has_digits(number.digits) {
+            let message = "this is smaller than any number the program can hold";
+            let finding = Diagnostic::new(Code::ValueRange, number.digits, message);
+            self.report(finding.help("check the exponent; a double holds down to 1e-307, in SI units"));
+            return Value::Fault;
+        }
         let Some(unit) = &number.unit else {
             let mut scalar = Scalar::new(Number::Known(number.value), Dimension::PLAIN);
             scalar.bare_zero = number.value == 0.0;
@@ -25,6 +31,13 @@ impl Lowering<'_, '_, '_> {
             Some(unit) => self.in_unit(number.value, unit, span),
             None => Value::Fault,
         }
+    }
+
+    /// Whether a number is written with a digit other than 0 before its exponent.
+    fn has_digits(&self, digits: Span) -> bool {
+        let text = self.library.files().text(digits);
+        let mantissa = text.split(['e', 'E']).next().unwrap_or("");
+        mantissa.contains(|character: char| matches!(character, '1'..='9'))
     }
 
     fn in_unit(&mut self, value: f64, unit: Rc<Unit>, span: Span) -> Value {

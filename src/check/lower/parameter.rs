@@ -1,12 +1,14 @@
 //! Parameters: their defaults, and the values that a `use` or the command line gives them.
 
-use super::{Lowering, Scope, unit_or_si};
+use super::{Lowering, Scope, unit_or_si, word_text};
 use crate::check::model::Parameter;
 use crate::check::names::{ItemId, Names, choice, near, place};
+use crate::check::order::walk;
 use crate::check::parts::InstanceId;
 use crate::check::value::{Number, Scalar, Value};
 use crate::check::{Overrides, Settings};
 use crate::diagnostics::{Code, Diagnostic};
+use crate::expression::Function;
 use crate::language::tree::{Argument, Declaration, DeclarationKind, Expression, UnitExpression, Word};
 use crate::source::Span;
 use crate::units::{Dimension, Unit};
@@ -235,8 +237,19 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
 /// Reports `--set` names that are no parameters of the file.
 pub fn unknown_overrides(names: &Names<'_>, overrides: &[Overrides], diagnostics: &mut Vec<Diagnostic>) {
     let root = InstanceId(0);
-    for set in overrides {
+    for (index, set) in overrides.iter().enumerate() {
         let name = &set.name.text;
+        if overrides.iter().take(index).any(|earlier| earlier.name.text == *name) {
+            let message = format!("`{name}` is set twice");
+            diagnostics.push(Diagnostic::new(Code::NameRepeated, set.name.span, message).help("remove one of them"));
+        }
+        walk(&set.value, &mut |path| {
+            if Function::find(&word_text(path)).is_none() && word_text(path) != "pi" {
+                let message = "a value on the command line is a number with its unit, without names of the model";
+                let finding = Diagnostic::new(Code::TypeMismatch, path.span, message);
+                diagnostics.push(finding.help("write the number, or set the parameter in the file"));
+            }
+        });
         let is_parameter = |item: ItemId| matches!(names.declaration(item).kind, DeclarationKind::Parameter { .. });
         if names.find(root, name).is_some_and(is_parameter) || names.is_lost(root, name) {
             continue;

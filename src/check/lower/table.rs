@@ -201,6 +201,10 @@ impl Lowering<'_, '_, '_> {
             )
         };
         let names: Vec<(String, String)> = headers.iter().map(split).collect();
+        if names.iter().filter(|(name, _)| name == wanted.name).count() > 1 {
+            self.table_fault(head, named, &format!("the file has the column `{}` twice", wanted.name));
+            return None;
+        }
         let Some(index) = names.iter().position(|(name, _)| name == wanted.name) else {
             let message = format!("the file has no column `{}`", wanted.name);
             let mut finding = Diagnostic::new(Code::TableContent, head, message).label(named, "the file is named here");
