@@ -1,6 +1,7 @@
 //! A probability and its complement, each with full relative precision.
 
 use crate::numerics::normal;
+use std::cmp::Ordering;
 use std::f64::consts::LN_2;
 
 /// A probability of failure, kept as the logarithms of itself and of survival.
@@ -14,11 +15,29 @@ pub struct Probability {
 }
 
 impl Probability {
-    /// From both logarithms.
+    /// From both logarithms, each right where it is the smaller; the larger follows from it, so that the two add up to 1.
+    /// Where either is no number, both are none.
     pub fn from_logarithms(ln_failure: f64, ln_survival: f64) -> Self {
-        Self {
-            ln_failure: ln_failure.min(0.0),
-            ln_survival: ln_survival.min(0.0),
+        // Rounding may have led a little above certainty.
+        match ln_failure.partial_cmp(&ln_survival) {
+            Some(Ordering::Less) => {
+                let ln_failure = ln_failure.min(0.0);
+                Self {
+                    ln_failure,
+                    ln_survival: ln_complement(ln_failure),
+                }
+            }
+            Some(Ordering::Equal | Ordering::Greater) => {
+                let ln_survival = ln_survival.min(0.0);
+                Self {
+                    ln_failure: ln_complement(ln_survival),
+                    ln_survival,
+                }
+            }
+            None => Self {
+                ln_failure: f64::NAN,
+                ln_survival: f64::NAN,
+            },
         }
     }
 
@@ -46,7 +65,9 @@ impl Probability {
     /// of the two probabilities. Finite far beyond the range in which the probability itself is a double; infinite where one
     /// of the two is exactly 0.
     pub fn reliability_index(self) -> f64 {
-        if self.ln_failure <= -LN_2 {
+        if self.ln_failure.is_nan() {
+            f64::NAN
+        } else if self.ln_failure <= -LN_2 {
             normal::quantile_of_ln(self.ln_failure).map_or(f64::INFINITY, |quantile| -quantile)
         } else {
             normal::quantile_of_ln(self.ln_survival).unwrap_or(f64::NEG_INFINITY)
@@ -84,6 +105,25 @@ pub fn ln_chance_of_event(ln_x: f64) -> f64 {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn the_two_add_up_to_one() {
+        let near_certainty = Probability::from_logarithms(-2e-16, -80.0);
+        assert_eq!((near_certainty.failure(), near_certainty.ln_survival()), (1.0, -80.0));
+        let rare = Probability::from_logarithms(-80.0, 1e-16);
+        assert_eq!((rare.survival(), rare.ln_failure()), (1.0, -80.0));
+        let certain = Probability::from_logarithms(0.0, f64::NEG_INFINITY);
+        assert_eq!((certain.failure(), certain.survival()), (1.0, 0.0));
+        assert_eq!(certain.reliability_index(), f64::NEG_INFINITY);
+    }
+
+    #[test]
+    fn of_no_number_comes_no_number() {
+        for (one, two) in [(f64::NAN, -1.0), (-1.0, f64::NAN), (f64::NAN, f64::NAN)] {
+            let unknown = Probability::from_logarithms(one, two);
+            assert!(unknown.failure().is_nan() && unknown.survival().is_nan() && unknown.reliability_index().is_nan());
+        }
+    }
 
     #[test]
     fn sums_and_complements_keep_their_digits() {

@@ -3,6 +3,7 @@
 use proptest::collection::vec;
 use proptest::prelude::*;
 use std::fmt::Write;
+use std::ops::Range;
 
 /// A process `x0`, `x1`, ... made by `gaussian(...)`, in kN.
 #[derive(Clone, Debug)]
@@ -58,7 +59,7 @@ pub fn source() -> impl Strategy<Value = Source> {
     })
 }
 
-pub fn term(sources: usize) -> impl Strategy<Value = Term> {
+fn term(sources: usize) -> impl Strategy<Value = Term> {
     let coefficient = prop_oneof![-64..-1, 1..64].prop_map(|eighths| f64::from(eighths) / 8.0);
     let delay = prop_oneof![Just(0.0), (-40..40).prop_map(|eighths| f64::from(eighths) / 8.0)];
     let derivatives = prop_oneof![3 => Just(0usize), 1 => Just(1)];
@@ -70,19 +71,23 @@ pub fn term(sources: usize) -> impl Strategy<Value = Term> {
     })
 }
 
-/// At most one term a source, derivative and delay: terms of a text that cancel are a matter of their own.
+/// Terms, at most one for a source, derivative and delay: terms of a text that cancel are a matter of their own.
+pub fn terms(sources: usize, count: Range<usize>) -> impl Strategy<Value = Vec<Term>> {
+    vec(term(sources), count).prop_map(|mut terms| {
+        let key = |term: &Term| (term.source, term.derivatives, term.delay.to_bits());
+        terms.sort_by_key(key);
+        terms.dedup_by_key(|term| key(term));
+        terms
+    })
+}
+
 pub fn combination() -> impl Strategy<Value = Combination> {
     (1..4usize)
-        .prop_flat_map(|count| (vec(source(), count), -100.0..100.0, vec(term(count), 1..5)))
-        .prop_map(|(sources, constant, mut terms)| {
-            let key = |term: &Term| (term.source, term.derivatives, term.delay.to_bits());
-            terms.sort_by_key(key);
-            terms.dedup_by_key(|term| key(term));
-            Combination {
-                sources,
-                constant,
-                terms,
-            }
+        .prop_flat_map(|count| (vec(source(), count), -100.0..100.0, terms(count, 1..5)))
+        .prop_map(|(sources, constant, terms)| Combination {
+            sources,
+            constant,
+            terms,
         })
 }
 

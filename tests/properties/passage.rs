@@ -85,17 +85,19 @@ proptest! {
     }
 
     #[test]
-    fn no_more_than_the_bound(model in combination(), below in -1.0..38.0, period in -3.0..12.0) {
+    fn no_more_than_the_bound(model in combination(), below in -1.0..37.0, period in -3.0..12.0) {
         let (mean, deviation) = scatter(&model);
         let level = mean - below * deviation;
         let time = 10f64.powf(period);
         let state = |method: &str| format!("failure when m < {level} kN reference period {time} s first passage {method}");
         let results = with_states(&model, &[("poisson", state("poisson")), ("safe", state("poisson_safe_start"))]);
         let (poisson, safe) = (results.limit_state("poisson"), results.limit_state("safe"));
+        // Logarithms down to -720 are rounded in their last place.
+        let rounding = 5e-13;
         let bound = poisson.number("initial_failure_probability") + poisson.number("upcrossing_rate") * time;
-        prop_assert!(poisson.number("failure_probability") <= bound * (1.0 + 1e-13));
+        prop_assert!(poisson.number("failure_probability") <= bound * (1.0 + rounding));
         // Counted among the safe there are more crossings, from the same start.
-        prop_assert!(safe.number("failure_probability") >= poisson.number("failure_probability") * (1.0 - 1e-13));
+        prop_assert!(safe.number("failure_probability") >= poisson.number("failure_probability") * (1.0 - rounding));
         prop_assert!(safe.number("failure_probability") >= poisson.number("initial_failure_probability"));
     }
 
