@@ -16,6 +16,9 @@ const DEEPEST_KERNEL: usize = 32;
 /// So many calls of kernels made of kernels are looked into in one model.
 const MOST_KERNEL_CALLS: usize = 100_000;
 
+/// So many bytes of a kernel's declaration count as a further call.
+const LONG_BODY: usize = 1024;
+
 /// A kernel that a model declares.
 #[derive(Clone)]
 pub(super) struct KernelDefinition {
@@ -204,7 +207,9 @@ impl Lowering<'_, '_, '_> {
             return Value::Fault;
         }
         self.expansion_depth += 1;
-        self.expansions += 1;
+        // A body longer than a screen counts as several calls, so that the work is bounded and not its count alone.
+        let body = self.names.declaration(item).span.range().len();
+        self.expansions += 1 + body / LONG_BODY;
         let value = self.body_with(item, call, scalars);
         self.expansion_depth -= 1;
         value
