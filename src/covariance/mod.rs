@@ -5,3 +5,4 @@ pub mod form;
 pub mod kernel;
 pub mod moments;
 pub mod source;
+pub mod spectral;

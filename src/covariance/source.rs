@@ -1,6 +1,7 @@
 //! Sources: what is random in a model.
 
 use super::kernel::{Kernel, Smoothness};
+use super::spectral::SpectralDensity;
 use crate::source::Span;
 
 /// One independent, zero-mean, stationary Gaussian process.
@@ -28,6 +29,16 @@ impl Source {
             notes,
             smoothness,
         }
+    }
+
+    /// Its covariance function, where it is described by one.
+    pub fn kernel(&self) -> Option<&Kernel> {
+        Some(&self.kernel)
+    }
+
+    /// Its spectrum, for integrals over frequency.
+    pub fn spectral(&self) -> &dyn SpectralDensity {
+        &self.kernel
     }
 
     /// Whether it has a mean-square derivative of an order.
