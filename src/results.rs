@@ -4,6 +4,7 @@
 //! one is the string `"infinite"`.
 
 mod evaluation;
+mod extremes;
 mod number;
 
 pub use evaluation::evaluate;
@@ -136,6 +137,9 @@ pub struct LimitStateResult {
     pub relative_error: Option<Real>,
     /// Survival at the times asked for.
     pub table: Vec<TableRow>,
+    /// The extreme of the margin over the reference period, where it is asked for.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub extremes: Option<Extremes>,
     /// What is demanded.
     pub requirements: Vec<RequirementResult>,
     /// What the results rest on.
@@ -159,6 +163,27 @@ pub struct TableRow {
     /// The mean rate of entries into failure at that time, in 1/s.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub upcrossing_rate: Option<Real>,
+}
+
+/// The distribution of the extreme of a margin on the side on which it fails, over the reference period: the largest value,
+/// the least, or the largest modulus.
+#[derive(Clone, Debug, PartialEq, Serialize)]
+pub struct Extremes {
+    /// Its mean, in the margin's unit.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub mean: Option<Real>,
+    /// Levels that it does not go beyond, with the probability of that.
+    pub levels: Vec<ExtremeLevel>,
+}
+
+/// A fractile of an extreme.
+#[derive(Clone, Debug, PartialEq, Serialize)]
+pub struct ExtremeLevel {
+    /// The probability that the extreme does not go beyond the level.
+    pub fractile: f64,
+    /// The level, in the margin's unit.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub level: Option<Real>,
 }
 
 /// A demand and its verdict.

@@ -9,8 +9,8 @@ mod parts;
 mod value;
 
 pub use model::{
-    Expectation, Kind, LimitQuantity, LimitState, Model, Named, Parameter, ProcessQuantity, Requirement, Subject, Time,
-    Tolerance,
+    Expectation, ExtremeQuantity, Kind, LimitQuantity, LimitState, Model, Named, Parameter, ProcessQuantity,
+    Requirement, Subject, Time, Tolerance,
 };
 
 use crate::diagnostics::{Diagnostic, any_error, sort};

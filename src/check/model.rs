@@ -7,6 +7,7 @@ use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::reliability::crossings::FailureRegion;
 use crate::reliability::first_passage::Method;
+use crate::reliability::probability::Probability;
 use crate::reliability::verdict::Demand;
 use crate::source::{FileId, Span};
 use crate::units::{Dimension, Unit};
@@ -96,6 +97,8 @@ pub struct LimitState {
     pub requirements: Vec<Requirement>,
     /// The times at which survival is reported.
     pub tabulate: Vec<Time>,
+    /// The fractiles of the extreme that are reported beside its mean, where extremes are asked for.
+    pub extremes: Option<Vec<f64>>,
     /// The comment above it.
     pub documentation: Option<String>,
     /// Where its name stands.
@@ -187,6 +190,17 @@ pub enum Subject {
     Varying(usize, ProcessQuantity),
     /// A quantity of a limit state, as an index into [`Model::limit_states`], over a time in seconds.
     LimitState(usize, LimitQuantity, f64),
+    /// The extreme of a limit state's margin, as an index into [`Model::limit_states`], over a time in seconds.
+    Extreme(usize, ExtremeQuantity, f64),
+}
+
+/// What can be expected of the extreme of a margin over a time.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum ExtremeQuantity {
+    /// Its mean.
+    Mean,
+    /// The level it lies beyond with a probability.
+    Beyond(Probability),
 }
 
 impl Subject {
@@ -194,7 +208,7 @@ impl Subject {
     pub(super) fn renumber(&mut self, varying: &[usize], limit_states: &[usize]) {
         let (index, order) = match self {
             Self::Varying(index, _) => (index, varying),
-            Self::LimitState(index, _, _) => (index, limit_states),
+            Self::LimitState(index, _, _) | Self::Extreme(index, _, _) => (index, limit_states),
         };
         if let Some(new) = order.get(*index) {
             *index = *new;

@@ -149,7 +149,9 @@ fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
                             expression(over, here);
                         }
                     }
-                    LimitLineKind::TabulateAt(times) => times.iter().for_each(|time| expression(time, here)),
+                    LimitLineKind::TabulateAt(times) | LimitLineKind::ExtremesAt(times) => {
+                        times.iter().for_each(|time| expression(time, here))
+                    }
                     LimitLineKind::FirstPassage(_) => {}
                 }
             }

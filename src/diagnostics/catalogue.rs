@@ -89,6 +89,8 @@ catalogue! {
     MarginNoProcess Error "margin/no-process" "a margin in which nothing varies"
     LimitLine Error "limit/line" "a line that a limit state lacks or has twice"
     LimitCondition Error "limit/condition" "a condition of failure that cannot be judged"
+    LimitMethod Error "limit/method" "a method of first passage that does not hold for a limit state"
+    LimitExtreme Error "limit/extreme" "an extreme that a limit state does not have"
     QuantityUnknown Error "quantity/unknown" "a quantity that does not exist or does not belong to the thing it is asked of"
     ModelTooLarge Error "model/too-large" "a model larger than the program computes"
     ModelUnexplained Error "model/unexplained" "a declaration from which nothing came, for no reason the program knows"

@@ -208,6 +208,8 @@ pub enum LimitLineKind {
     },
     /// `tabulate at T1, T2, ...`
     TabulateAt(Vec<Expression>),
+    /// `extremes at F1, F2, ...`
+    ExtremesAt(Vec<Expression>),
 }
 
 /// The comparison of a requirement.

@@ -24,12 +24,13 @@ pub const DECLARATION_KEYWORDS: [&str; 17] = [
 ];
 
 /// The words that begin a line of a limit state; the second is empty where one word names the line.
-pub const LIMIT_LINE_KEYWORDS: [(&str, &str); 5] = [
+pub const LIMIT_LINE_KEYWORDS: [(&str, &str); 6] = [
     ("failure", "when"),
     ("reference", "period"),
     ("first", "passage"),
     ("require", ""),
     ("tabulate", "at"),
+    ("extremes", "at"),
 ];
 
 /// Every word that cannot be a name. Before a colon each may still name an argument (`spectrum: ...`).
@@ -162,7 +163,9 @@ pub(super) fn expected(rule: Rule) -> Expected {
         | Rule::require_line
         | Rule::require_keyword
         | Rule::tabulate_line
-        | Rule::tabulate_keyword => Plain("a line of the limit state"),
+        | Rule::tabulate_keyword
+        | Rule::extremes_line
+        | Rule::extremes_keyword => Plain("a line of the limit state"),
 
         Rule::unit | Rule::reciprocal | Rule::system_word | Rule::system_body | Rule::EOI => Unspoken,
 

@@ -9,3 +9,4 @@ pub mod gamma;
 pub mod matern;
 pub mod normal;
 pub mod quadrature;
+pub mod root;

@@ -13,6 +13,8 @@ pub struct GaussianMargin {
     pub standard_deviation: f64,
     /// The standard deviation of its derivative, in the margin's unit per second; may be 0.
     pub derivative_standard_deviation: f64,
+    /// Its bandwidth, between 0 and 1, where it is known.
+    pub bandwidth: Option<f64>,
 }
 
 /// Where the margin is failed.
@@ -38,6 +40,14 @@ impl GaussianMargin {
             FailureRegion::Below(level) => -self.standardised(level),
             FailureRegion::Above(level) => self.standardised(level),
             FailureRegion::Outside(lower, upper) => (-self.standardised(lower)).min(self.standardised(upper)),
+        }
+    }
+
+    /// Whether two barriers lie evenly about the mean; one barrier does not.
+    pub fn is_centred(&self, region: FailureRegion) -> bool {
+        match region {
+            FailureRegion::Below(_) | FailureRegion::Above(_) => false,
+            FailureRegion::Outside(lower, upper) => lies_midway(self.mean, lower, upper),
         }
     }
 
@@ -78,6 +88,15 @@ impl GaussianMargin {
         }
     }
 }
+
+/// Whether a mean lies midway between two levels, up to what rounding leaves of levels that were computed.
+pub fn lies_midway(mean: f64, lower: f64, upper: f64) -> bool {
+    let apart = upper - lower;
+    ((mean - lower) - (upper - mean)).abs() <= MIDWAY * apart
+}
+
+/// A mean that is off the middle by that share of the distance between two barriers lies midway.
+const MIDWAY: f64 = 1e-9;
 
 /// `ln(Phi(upper) - Phi(lower))` for `lower <= upper`, from whichever side does not cancel.
 fn ln_between(lower: f64, upper: f64) -> f64 {

@@ -1,7 +1,8 @@
-//! Survival over a time, from crossings counted as a Poisson process.
+//! Survival over a time, from crossings counted as a Poisson process, as they are or corrected for their clumping.
 
 use super::crossings::{FailureRegion, GaussianMargin};
 use super::probability::{Probability, ln_chance_of_event, ln_sum};
+use std::f64::consts::{FRAC_PI_2, PI};
 
 /// How crossings become survival.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -10,6 +11,9 @@ pub enum Method {
     Poisson,
     /// `S = P0 exp(-nu T / P0)`: crossings are counted among the paths that are safe.
     PoissonSafeStart,
+    /// `S = P0 exp(-h T)`, `h` the rate of entries corrected for clumping by the bandwidth and for the time that is spent
+    /// in failure: one barrier beyond the mean, or two evenly about it.
+    Vanmarcke,
 }
 
 impl Method {
@@ -18,8 +22,31 @@ impl Method {
         match self {
             Self::Poisson => "poisson",
             Self::PoissonSafeStart => "poisson_safe_start",
+            Self::Vanmarcke => "vanmarcke",
         }
     }
+}
+
+/// The logarithm of the factor by which clumping and the time spent in failure change the rate of entries,
+///
+/// ```text
+/// (1 - exp(-c q^1.2 r)) / (1 - exp(-r²/2)),   c = sqrt(2 pi) for one barrier, sqrt(pi/2) for two,
+/// ```
+///
+/// `r` the barrier in standard deviations from the mean and `q` the bandwidth (Vanmarcke 1975, "On the distribution of the
+/// first-passage time for normal stationary random processes", J. Appl. Mech. 42, eq. 30 and 32, from memory; with the
+/// exponent 1.2 in place of 1 that he found to fit simulations).
+///
+/// `None` unless there is one barrier beyond the mean or two evenly about it.
+pub fn ln_clumping(margin: &GaussianMargin, region: FailureRegion, bandwidth: f64) -> Option<f64> {
+    let reduced = margin.reduced_barrier(region);
+    let sides = match region {
+        FailureRegion::Below(_) | FailureRegion::Above(_) => (2.0 * PI).sqrt(),
+        FailureRegion::Outside(..) if margin.is_centred(region) => FRAC_PI_2.sqrt(),
+        FailureRegion::Outside(..) => return None,
+    };
+    let entries = sides * bandwidth.powf(1.2) * reduced;
+    (reduced > 0.0).then(|| (-(-entries).exp_m1()).ln() - (-(-0.5 * reduced * reduced).exp_m1()).ln())
 }
 
 /// A limit state of a stationary margin.
@@ -29,25 +56,28 @@ pub struct FirstPassage {
     pub initial: Probability,
     /// The logarithm of the mean rate of entries into failure, per second.
     pub ln_rate: f64,
-    /// The method.
-    pub method: Method,
+    /// The logarithm of the rate at which survivors fail, per second.
+    ln_hazard: f64,
 }
 
 impl FirstPassage {
-    /// For a margin and its region of failure.
+    /// For a margin and its region of failure. The bandwidth is asked of `vanmarcke` alone: without one, and where the method
+    /// does not apply, no probability is a number.
     pub fn new(margin: &GaussianMargin, region: FailureRegion, method: Method) -> Self {
+        let initial = margin.point_in_time(region);
+        let ln_rate = margin.ln_entry_rate(region);
+        let ln_hazard = match method {
+            Method::Poisson => ln_rate,
+            Method::PoissonSafeStart => ln_rate - initial.ln_survival(),
+            Method::Vanmarcke => margin
+                .bandwidth
+                .and_then(|bandwidth| ln_clumping(margin, region, bandwidth))
+                .map_or(f64::NAN, |factor| ln_rate + factor),
+        };
         Self {
-            initial: margin.point_in_time(region),
-            ln_rate: margin.ln_entry_rate(region),
-            method,
-        }
-    }
-
-    /// The logarithm of the rate at which survivors fail, per second.
-    fn ln_hazard(&self) -> f64 {
-        match self.method {
-            Method::Poisson => self.ln_rate,
-            Method::PoissonSafeStart => self.ln_rate - self.initial.ln_survival(),
+            initial,
+            ln_rate,
+            ln_hazard,
         }
     }
 
@@ -57,7 +87,7 @@ impl FirstPassage {
     /// "Reliability of aircraft structures in resisting chance failure"; the start among the safe: Ditlevsen 1986,
     /// "Duration of visit to critical set by Gaussian process", both from memory).
     pub fn within(&self, time: f64) -> Probability {
-        let ln_expected = self.ln_hazard() + time.ln();
+        let ln_expected = self.ln_hazard + time.ln();
         let passed = self.initial.ln_survival() + ln_chance_of_event(ln_expected);
         Probability::from_logarithms(
             ln_sum(self.initial.ln_failure(), passed),
@@ -76,6 +106,6 @@ impl FirstPassage {
 
     /// The logarithm of the mean time to failure in seconds: the integral of the survival function, `P0 / h`.
     pub fn ln_mean_time_to_failure(&self) -> f64 {
-        self.initial.ln_survival() - self.ln_hazard()
+        self.initial.ln_survival() - self.ln_hazard
     }
 }

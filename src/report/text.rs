@@ -2,6 +2,7 @@
 
 use super::columns::{Side, paragraph, write as columns};
 use crate::check::{Kind, LimitState, Model, Named};
+use crate::reliability::crossings::FailureRegion;
 use crate::results::{LimitStateResult, Moments, Real, Results};
 use crate::units::{Unit, show, show_number, time_in_words};
 use std::io::{self, Write};
@@ -175,6 +176,7 @@ fn limit_state_section(out: &mut dyn Write, limit_state: &LimitState, result: &L
     ];
     columns(out, 2, &[Side::Left, Side::Left], &rows)?;
     table(out, limit_state, result)?;
+    extremes(out, limit_state, result)?;
     if !result.requirements.is_empty() {
         writeln!(out, "  Required")?;
         let rows: Vec<Vec<String>> = result
@@ -221,6 +223,26 @@ fn table(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResul
         ]
     }));
     columns(out, 4, &[Side::Right, Side::Right, Side::Right, Side::Left], &rows)
+}
+
+fn extremes(out: &mut dyn Write, limit_state: &LimitState, result: &LimitStateResult) -> io::Result<()> {
+    let Some(extremes) = &result.extremes else {
+        return Ok(());
+    };
+    let which = match limit_state.region {
+        FailureRegion::Below(_) => "Least value",
+        FailureRegion::Above(_) => "Largest value",
+        FailureRegion::Outside(..) => "Largest modulus",
+    };
+    let period = show(result.reference_period, &limit_state.reference_period.unit, DIGITS);
+    writeln!(out, "  {which} of the margin over {period}")?;
+    let level = |level: Option<Real>| known(level, |level| show(level, &limit_state.unit, DIGITS));
+    let mut rows = vec![vec!["mean".to_string(), level(extremes.mean)]];
+    rows.extend(extremes.levels.iter().map(|one| {
+        let share = show_number(100.0 * one.fractile, 15);
+        vec![format!("fractile {share} %"), level(one.level)]
+    }));
+    columns(out, 4, &[Side::Left, Side::Left], &rows)
 }
 
 /// A number that may not exist.

@@ -1,5 +1,6 @@
 //! From the checked model to its results.
 
+use super::extremes;
 use super::number::Real;
 use super::{
     Assumption, ExpectationResult, LimitStateResult, ModelIdentity, Moments, ParameterValue, RequirementResult,
@@ -12,7 +13,7 @@ use crate::covariance::moments::{FormMoments, Moment, MomentTable};
 use crate::covariance::source::Source;
 use crate::diagnostics::Diagnostic;
 use crate::reliability::crossings::{FailureRegion, GaussianMargin};
-use crate::reliability::first_passage::{FirstPassage, Method};
+use crate::reliability::first_passage::{FirstPassage, Method, ln_clumping};
 use crate::reliability::probability::Probability;
 use crate::reliability::verdict::Verdict;
 use crate::source::Files;
@@ -129,7 +130,6 @@ struct Judged<'m> {
     limit_state: &'m LimitState,
     margin: GaussianMargin,
     passage: FirstPassage,
-    bandwidth: Option<f64>,
     relative_error: f64,
     sources: &'m [Source],
 }
@@ -141,13 +141,13 @@ impl<'m> Judged<'m> {
             mean: limit_state.margin.mean(),
             standard_deviation: moments.standard_deviation(),
             derivative_standard_deviation: moments.derivative_standard_deviation().unwrap_or(f64::NAN),
+            bandwidth: moments.bandwidth(),
         };
         Self {
             limit_state,
             margin,
             passage: FirstPassage::new(&margin, limit_state.region, limit_state.method),
-            bandwidth: moments.bandwidth(),
-            relative_error: relative_error(&margin, limit_state.region, &moments),
+            relative_error: relative_error(&margin, limit_state, &moments),
             sources: table.sources(),
         }
     }
@@ -173,6 +173,7 @@ impl<'m> Judged<'m> {
             mean_time_to_failure: Real::new(self.passage.ln_mean_time_to_failure().exp()),
             relative_error: Real::new(self.relative_error),
             table: limit_state.tabulate.iter().map(|time| self.row(time.seconds)).collect(),
+            extremes: extremes::over_the_reference_period(&self.margin, limit_state),
             requirements: limit_state
                 .requirements
                 .iter()
@@ -263,27 +264,69 @@ impl<'m> Judged<'m> {
         }
     }
 
+    /// That entries come in clumps, with what that makes of the result where it can be told.
+    fn narrow_band(&self, bandwidth: f64) -> Assumption {
+        let limit_state = self.limit_state;
+        let corrected = FirstPassage::new(&self.margin, limit_state.region, Method::Vanmarcke)
+            .within(limit_state.reference_period.seconds)
+            .failure();
+        let by_vanmarcke = if corrected.is_finite() {
+            let corrected = show_number(corrected, 3);
+            format!("; by `first passage vanmarcke` it is {corrected} over the reference period")
+        } else {
+            String::new()
+        };
+        let bandwidth = show_number(bandwidth, 3);
+        Assumption {
+            code: "narrow-band",
+            text: format!(
+                "The margin is narrow-banded (bandwidth {bandwidth}, below 0.3): entries come in clumps, so the failure \
+                 probability is likely overstated{by_vanmarcke}."
+            ),
+        }
+    }
+
+    fn of_method(&self) -> Assumption {
+        let (code, text) = match self.limit_state.method {
+            Method::Poisson => (
+                "poisson-crossings",
+                "Entries into failure are counted as a Poisson process, whatever the start: right for barriers far from \
+                 the mean."
+                    .to_string(),
+            ),
+            Method::PoissonSafeStart => (
+                "poisson-crossings",
+                "Entries into failure are counted as a Poisson process among those that are safe: right for barriers far \
+                 from the mean."
+                    .to_string(),
+            ),
+            Method::Vanmarcke => {
+                let factor = self.clumping().map_or("not known".to_string(), |factor| show_number(factor, 3));
+                let bandwidth = self.margin.bandwidth.map_or("not known".to_string(), |q| show_number(q, 3));
+                (
+                    "clumped-crossings",
+                    format!(
+                        "Entries into failure come in clumps, and some time is spent in failure: their rate is multiplied by \
+                         {factor}, which follows from the bandwidth {bandwidth} of the margin (Vanmarcke 1975)."
+                    ),
+                )
+            }
+        };
+        Assumption { code, text }
+    }
+
+    /// What clumping and the time spent in failure make of the rate of entries.
+    fn clumping(&self) -> Option<f64> {
+        Some(ln_clumping(&self.margin, self.limit_state.region, self.margin.bandwidth?)?.exp())
+    }
+
     fn assumptions(&self) -> Vec<Assumption> {
         let mut assumptions = vec![
             Assumption {
                 code: "stationary-gaussian",
                 text: "The processes are Gaussian, and their statistics stay the same during the whole time.".into(),
             },
-            Assumption {
-                code: "poisson-crossings",
-                text: match self.limit_state.method {
-                    Method::Poisson => {
-                        "Entries into failure are counted as a Poisson process, whatever the start: right \
-                                        for barriers far from the mean."
-                            .into()
-                    }
-                    Method::PoissonSafeStart => {
-                        "Entries into failure are counted as a Poisson process among those that \
-                                                 are safe: right for barriers far from the mean."
-                            .into()
-                    }
-                },
-            },
+            self.of_method(),
         ];
         for (source, _) in self.limit_state.margin.by_source() {
             let notes = self
@@ -318,22 +361,16 @@ impl<'m> Judged<'m> {
                 ),
             });
         }
-        if self.bandwidth.is_none() {
+        if self.margin.bandwidth.is_none() {
             assumptions.push(Assumption {
                 code: "bandwidth-unknown",
                 text: "The bandwidth of the margin is not known, so it was not checked whether entries come in clumps."
                     .into(),
             });
         }
-        if let Some(bandwidth) = self.bandwidth.filter(|bandwidth| *bandwidth < NARROW_BAND) {
-            let bandwidth = show_number(bandwidth, 3);
-            assumptions.push(Assumption {
-                code: "narrow-band",
-                text: format!(
-                    "The margin is narrow-banded (bandwidth {bandwidth}, below 0.3): entries come in clumps, so the \
-                     failure probability is likely overstated."
-                ),
-            });
+        let narrow = self.margin.bandwidth.filter(|bandwidth| *bandwidth < NARROW_BAND);
+        if let Some(bandwidth) = narrow.filter(|_| self.limit_state.method != Method::Vanmarcke) {
+            assumptions.push(self.narrow_band(bandwidth));
         }
         assumptions
     }
@@ -341,7 +378,8 @@ impl<'m> Judged<'m> {
 
 /// What rounding in the moments does to a failure probability. In the tail `d ln Pf = -(r + 1/r) dr`, and `r` feels the
 /// rounding of the difference between barrier and mean as well as half the relative error of the variance.
-fn relative_error(margin: &GaussianMargin, region: FailureRegion, moments: &FormMoments) -> f64 {
+fn relative_error(margin: &GaussianMargin, limit_state: &LimitState, moments: &FormMoments) -> f64 {
+    let region = limit_state.region;
     let reduced = margin.reduced_barrier(region).abs();
     let level = match region {
         FailureRegion::Below(level) | FailureRegion::Above(level) => level.abs(),
@@ -350,7 +388,13 @@ fn relative_error(margin: &GaussianMargin, region: FailureRegion, moments: &Form
     let [variance, _, derivative, _] = &moments.lambda;
     let of_difference = f64::EPSILON * (level + margin.mean.abs()) / margin.standard_deviation;
     let of_variance = 0.5 * reduced * variance.relative_error();
+    // The rate by `vanmarcke` rises at most with the power 1.2 of the bandwidth.
+    let of_bandwidth = match limit_state.method {
+        Method::Vanmarcke => 1.2 * moments.bandwidth_error(),
+        Method::Poisson | Method::PoissonSafeStart => 0.0,
+    };
     (reduced + 1.0) * (of_difference + of_variance)
+        + of_bandwidth
         + 0.5 * derivative.relative_error()
         + ROUNDING * (1.0 + reduced * reduced)
 }
@@ -382,6 +426,10 @@ fn expected(
             .limit_states
             .get(index)
             .map(|limit_state| Judged::new(table, limit_state).quantity(quantity, time)),
+        Subject::Extreme(index, quantity, time) => model.limit_states.get(index).and_then(|limit_state| {
+            let judged = Judged::new(table, limit_state);
+            extremes::quantity(&judged.margin, limit_state, quantity, time)
+        }),
     };
     let (tolerance, tolerance_kind, allowed) = match expectation.tolerance {
         Tolerance::Relative(share) => (share, "relative", share * expectation.expected.abs()),
@@ -436,6 +484,18 @@ impl Results {
             None => format!("the limit state `{}`: its moments leave the range of numbers", one.name),
         });
         of_moments.chain(of_limit_states).collect()
+    }
+}
+
+impl FormMoments {
+    /// The relative error of the bandwidth `q`: `q² = 1 - k`, and what `k` is off by, half of it over `q²`, is the more the
+    /// narrower the band.
+    fn bandwidth_error(&self) -> f64 {
+        let [zeroth, first, second, _] = self.lambda.map(|moment| moment.relative_error());
+        match self.bandwidth() {
+            Some(q) => 0.5 * (1.0 - q * q) * (zeroth + 2.0 * first + second + f64::EPSILON) / (q * q),
+            None => f64::INFINITY,
+        }
     }
 }
 

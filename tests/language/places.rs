@@ -31,7 +31,7 @@ fn expressions(declaration: &Declaration) -> Vec<&Expression> {
                         outer.push(value);
                         outer.extend(over);
                     }
-                    LimitLineKind::TabulateAt(times) => outer.extend(times),
+                    LimitLineKind::TabulateAt(times) | LimitLineKind::ExtremesAt(times) => outer.extend(times),
                     LimitLineKind::FirstPassage(_) => {}
                 }
             }

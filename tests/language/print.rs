@@ -132,7 +132,7 @@ impl Printer<'_> {
                     .map_or(String::new(), |time| format!(" over {}", self.expression(time)));
                 format!("{} {comparison} {}{over}", quantity.text, self.expression(value))
             }
-            LimitLineKind::TabulateAt(times) => {
+            LimitLineKind::TabulateAt(times) | LimitLineKind::ExtremesAt(times) => {
                 let times: Vec<String> = times.iter().map(|time| self.expression(time)).collect();
                 times.join(" and ")
             }

@@ -3,6 +3,7 @@
 mod abramowitz_stegun_1964;
 mod cartwright_longuet_higgins_1956;
 mod davenport_1964;
+mod der_kiureghian_1980;
 mod en_1990_2002;
 mod hand_calculations;
 mod iso_2394_1998;
@@ -19,6 +20,7 @@ mod rice_1944;
 mod slepian_1961;
 mod units_nist_sp811;
 mod vanmarcke_1972;
+mod vanmarcke_1975;
 mod vanmarcke_1983;
 mod veneziano_grigoriu_cornell_1977;
 mod wong_1966;

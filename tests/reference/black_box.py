@@ -17,7 +17,10 @@ from pathlib import Path
 
 import mpmath as mp
 import numpy as np
+from scipy.integrate import quad
 from scipy.interpolate import CubicSpline
+from scipy.optimize import brentq
+from scipy.special import log_ndtr
 from sklearn.gaussian_process import kernels as sk
 
 mp.mp.dps = 30
@@ -463,6 +466,91 @@ def between(lower, upper):
     return mp.quad(mp.npdf, [-lower, upper]) if upper + lower < 1 else tail(-upper) - tail(lower)
 
 
+# ---------------------------------------------------------------------------------------------------------- extremes
+
+
+def extremes(program, rng):
+    """Fractiles, design values and means of extremes by root finding and quadrature of SciPy, by all three methods."""
+    fractiles = Family("extremes: fractiles and design values, in standard deviations", 1e-9)
+    means = Family("extremes: mean, in standard deviations", 1e-8)
+    clumped = Family("extremes: failure probability by vanmarcke", 1e-9)
+    for _ in range(60):
+        mean, deviation = rng.uniform(-5, 5), math.exp(rng.uniform(-2, 2))
+        frequency, damping = math.exp(rng.uniform(-3, 3)), math.exp(rng.uniform(-5, -0.5))
+        damped = math.sqrt(1 - damping**2)
+        first = 2 / math.pi * math.atan2(damped, damping) / damped
+        bandwidth = math.sqrt(1 - first**2)
+        kind = rng.choice(["above", "below", "abs"])
+        method = rng.choice(["poisson", "poisson_safe_start", "vanmarcke"])
+        if kind == "abs":
+            mean = 0.0
+        period = float(f"{math.exp(rng.uniform(0, 14)) / frequency:.4g}")
+        cycles = frequency / (2 * math.pi) * period
+        fractile = rng.choice([0.5, 0.9, 0.98, round(rng.uniform(0.05, 0.999), 4)])
+        rarity = float(f"{math.exp(rng.uniform(-200, -3)):.6g}")
+        sign = -1 if kind == "below" else 1
+        barrier = mean + sign * deviation * rng.uniform(0.5, 9)
+        condition = f"abs(x) > {number(barrier)}" if kind == "abs" else f"x {'<' if sign < 0 else '>'} {number(barrier)}"
+        model = (
+            f"process x = gaussian(mean: {number(mean)}, standard_deviation: {number(deviation)},"
+            f" correlation: oscillator(frequency: {number(frequency)} rad/s, damping: {number(damping)}))\n"
+            f"limit state s {{ failure when {condition} reference period {number(period)} s first passage {method}"
+            f" extremes at {number(fractile)} }}\n"
+            f"expect extreme(s, failure_probability: {rarity}) = 0 within 0 %"
+        )
+        sides = 2 if kind == "abs" else 1
+
+        def logarithms(r):
+            """ln of failing and of lasting with the barrier at r standard deviations."""
+            ln_start = math.log(sides) + log_ndtr(-r)
+            if sides == 1:
+                ln_safe = log_ndtr(r)
+            else:
+                ln_safe = math.log(math.erf(r / math.sqrt(2))) if r < 1 else math.log1p(-math.exp(ln_start))
+            ln_hazard = math.log(sides * cycles) - r * r / 2
+            if method == "poisson_safe_start":
+                ln_hazard -= ln_safe
+            if method == "vanmarcke":
+                k = math.sqrt(2 * math.pi) if sides == 1 else math.sqrt(math.pi / 2)
+                ln_hazard += math.log(-math.expm1(-k * bandwidth**1.2 * r)) - math.log(-math.expm1(-r * r / 2))
+            ln_lasting = ln_safe - math.exp(min(ln_hazard, 700))
+            ln_chance = ln_hazard if ln_hazard < -37 else math.log(-math.expm1(-math.exp(min(ln_hazard, 700))))
+            return float(np.logaddexp(ln_start, ln_safe + ln_chance)), ln_lasting
+
+        least = 1e-9 if method == "vanmarcke" or sides == 2 else -9.0
+
+        def level(target):
+            """The outermost root, from far out."""
+            outer = 40.0
+            while target(outer - 0.05) < 0 and outer - 0.05 > least:
+                outer -= 0.05
+            return brentq(target, max(outer - 0.05, least), outer, xtol=1e-14, rtol=1e-14)
+
+        one = program.results(model)
+        state, expectation = one["limit_states"][0], one["expectations"][0]
+        place = f"{model}\nbandwidth {bandwidth}"
+        r = abs(barrier - mean) / deviation
+        if logarithms(r)[0] < math.log(0.5):
+            clumped.relative(state["failure_probability"], mp.exp(mp.mpf(float(logarithms(r)[0]))), place)
+        found = (state["extremes"]["levels"][0]["level"] - mean) * sign / deviation
+        fractiles.absolute(found, level(lambda x: math.log(fractile) - logarithms(x)[1]), place)
+        found = (expectation["value"] - mean) * sign / deviation
+        fractiles.absolute(found, level(lambda x: logarithms(x)[0] - math.log(rarity)), place)
+        # Where survival by `poisson` is no distribution, below the mean, the program says what it does; not compared.
+        if method == "poisson" and sides == 1 and 0.9 < cycles < 30:
+            continue
+        floor = max(least, 0.0) if method == "poisson" and cycles > 0.9 else least
+        middle = level(lambda x: math.log(0.5) - logarithms(x)[1])
+        steps = [middle + (40 - middle) * t for t in (0, 0.02, 0.05, 0.1, 0.2, 0.4, 1)]
+        outer = sum(quad(lambda x: math.exp(logarithms(x)[0]), a, b, epsabs=1e-13, epsrel=1e-12)[0]
+                    for a, b in zip(steps, steps[1:]))
+        steps = [floor + (middle - floor) * t for t in (0, 0.25, 0.5, 0.75, 0.9, 1)]
+        inner = sum(quad(lambda x: math.exp(logarithms(x)[1]), a, b, epsabs=1e-13, epsrel=1e-12)[0]
+                    for a, b in zip(steps, steps[1:]))
+        found = (state["extremes"]["mean"] - mean) * sign / deviation
+        means.absolute(found, middle + outer - inner, place)
+
+
 # -------------------------------------------------------------------------------------------- user and tabulated kernels
 
 
@@ -601,7 +689,7 @@ def main():
     seed = int(sys.argv[2]) if len(sys.argv) > 2 else 20
     with tempfile.TemporaryDirectory() as folder:
         program = Program(binary, folder)
-        for checks in (kernels, forms, differences, passages, written_kernels, tables):
+        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables):
             checks(program, random.Random(f"{seed} {checks.__name__}"))
     if not all([family.report() for family in Family.all]):
         sys.exit(1)

@@ -1,5 +1,6 @@
 //! Checks of the model by its author.
 
+use super::extremes::{EXTREME, MEAN_EXTREME, RARITIES};
 use super::{Lowering, Scope, unit_or_si, word_text};
 use crate::check::model::{Expectation, Kind, LimitQuantity, ProcessQuantity, Subject, Tolerance};
 use crate::check::names::{self, ItemId, Resolved, choice};
@@ -117,7 +118,12 @@ impl Lowering<'_, '_, '_> {
                 return None;
             }
         };
-        let arguments = self.arguments(call, &["the name of a process, margin or limit state"], &["over"])?;
+        let of_extreme = [EXTREME, MEAN_EXTREME].contains(&word_text(&call.function).as_str());
+        let names: Vec<&str> = ["over"]
+            .into_iter()
+            .chain(RARITIES.iter().copied().filter(|_| of_extreme))
+            .collect();
+        let arguments = self.arguments(call, &["the name of a process, margin or limit state"], &names)?;
         let subject = arguments.subjects.first().copied()?;
         let ExpressionKind::Name(path) = &subject.kind else {
             self.wrong_kind(
@@ -153,6 +159,13 @@ impl Lowering<'_, '_, '_> {
                 Some((_, time)) => time.seconds,
                 None => self.model.limit_states[index].reference_period.seconds,
             };
+            if of_extreme {
+                let quantity = self.extreme_quantity(call, &arguments, scope)?;
+                let limit_state = &self.model.limit_states[index];
+                let (region, dimension) = (limit_state.region, limit_state.dimension);
+                self.has_extreme(region, subject.span)?;
+                return Some((Subject::Extreme(index, quantity, seconds), dimension));
+            }
             let word = call.function.words.first()?.clone();
             let (quantity, dimension) = self.limit_quantity(&word)?;
             return Some((Subject::LimitState(index, quantity, seconds), dimension));
@@ -174,7 +187,8 @@ impl Lowering<'_, '_, '_> {
             let known: Vec<&str> = QUANTITIES.iter().map(|(known, _)| *known).collect();
             let message = format!("a {what} has no quantity called `{name}`");
             let mut finding = Diagnostic::new(Code::QuantityUnknown, call.function.span, message);
-            let of_limit_state = LimitQuantity::names().any(|known| known == name);
+            let mut of_limit_states = LimitQuantity::names().chain([EXTREME, MEAN_EXTREME]);
+            let of_limit_state = of_limit_states.any(|known| known == name);
             finding.help = match choice(&names::near(&name, known.iter().copied())) {
                 _ if of_limit_state => Some(format!("`{name}` belongs to a limit state: name one")),
                 Some(near) => Some(format!("did you mean {near}?")),

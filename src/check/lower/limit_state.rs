@@ -60,6 +60,7 @@ struct Lines<'t> {
     period: Option<(&'t LimitLine, &'t Expression)>,
     method: Option<(&'t LimitLine, &'t Word)>,
     tabulate: Option<(&'t LimitLine, &'t [Expression])>,
+    extremes: Option<(&'t LimitLine, &'t [Expression])>,
     requirements: Vec<&'t LimitLine>,
 }
 
@@ -84,8 +85,8 @@ impl Lowering<'_, '_, '_> {
             .period
             .and_then(|(_, time)| self.time(time, scope, "the reference period"));
         let method = match lines.method {
-            Some((_, word)) => self.method(word),
-            None => Some(Method::Poisson),
+            Some((_, word)) => self.method(word).map(|method| (method, word.span)),
+            None => Some((Method::Poisson, name.span)),
         };
         let times = lines.tabulate.map_or(Some(Vec::new()), |(_, times)| {
             let found: Vec<Option<Time>> = times
@@ -102,14 +103,20 @@ impl Lowering<'_, '_, '_> {
         let condition = lines
             .failure
             .and_then(|(_, condition)| Some((self.condition(condition, scope)?, condition.span)));
+        let region = condition.as_ref().map(|((_, region), _)| *region);
+        let extremes = lines.extremes.map_or(Some(Vec::new()), |(line, fractiles)| {
+            self.fractiles(fractiles, region, line.keyword, scope)
+        });
         let Some(((varying, region), place)) = condition else {
             return;
         };
-        if !self.crossable(&varying, place, name) {
+        let applies = method.is_none_or(|method| self.applies(method, &varying, region, place));
+        if !self.crossable(&varying, place, name) || !applies {
             return;
         }
         let requirements: Option<Vec<Requirement>> = requirements.into_iter().collect();
-        let (Some(period), Some(method), Some(tabulate), Some(requirements)) = (period, method, times, requirements)
+        let (Some(period), Some((method, _)), Some(tabulate), Some(requirements), Some(fractiles)) =
+            (period, method, times, requirements, extremes)
         else {
             return;
         };
@@ -125,6 +132,7 @@ impl Lowering<'_, '_, '_> {
             method,
             requirements,
             tabulate,
+            extremes: lines.extremes.map(|_| fractiles),
             documentation: self.documentation(item),
             place: name.span,
         });
@@ -156,6 +164,7 @@ impl Lowering<'_, '_, '_> {
                 LimitLineKind::ReferencePeriod(time) => once(&mut found.period, line, time),
                 LimitLineKind::FirstPassage(word) => once(&mut found.method, line, word),
                 LimitLineKind::TabulateAt(times) => once(&mut found.tabulate, line, times.as_slice()),
+                LimitLineKind::ExtremesAt(fractiles) => once(&mut found.extremes, line, fractiles.as_slice()),
                 LimitLineKind::Require { .. } => {
                     found.requirements.push(line);
                     None
@@ -172,28 +181,6 @@ impl Lowering<'_, '_, '_> {
             }
         }
         found
-    }
-
-    fn method(&mut self, word: &Word) -> Option<Method> {
-        match &*word.text {
-            "poisson" => Some(Method::Poisson),
-            "poisson_safe_start" => Some(Method::PoissonSafeStart),
-            "vanmarcke" => {
-                self.not_yet(word.span, Later::Vanmarcke);
-                None
-            }
-            other => {
-                let message = format!("there is no method of first passage called `{other}`");
-                let mut finding = Diagnostic::new(Code::QuantityUnknown, word.span, message);
-                let known = ["poisson", "poisson_safe_start", "vanmarcke"];
-                finding.help = Some(match choice(&names::near(other, known.into_iter())) {
-                    Some(near) => format!("did you mean {near}?"),
-                    None => "the methods are `poisson` and `poisson_safe_start`".to_string(),
-                });
-                self.report(finding);
-                None
-            }
-        }
     }
 
     fn requirement(&mut self, line: &LimitLine, scope: Scope<'_>, period: Option<&Time>) -> Option<Requirement> {

@@ -17,7 +17,6 @@ pub(super) enum Later {
     Averages,
     Responses,
     Systems,
-    Vanmarcke,
     Hazards,
     Acceptances,
 }
@@ -35,7 +34,6 @@ impl Later {
             Self::Averages => "averages of processes",
             Self::Responses => "responses of systems",
             Self::Systems => "systems of several conditions",
-            Self::Vanmarcke => "first passage by `vanmarcke`",
             Self::Hazards => "annual and point-in-time quantities",
             Self::Acceptances => "accepted warnings",
         }
@@ -56,7 +54,6 @@ impl Later {
             Self::Systems => {
                 "make a limit state of each condition: their failure probabilities add up to an upper bound of `any`"
             }
-            Self::Vanmarcke => "use `poisson`, which overstates the failure probability where crossings come in clumps",
             Self::Hazards => "use `failure_probability` with its period",
         }
     }

@@ -3,7 +3,9 @@
 use super::{Builder, Stream, take};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::parser::Rule;
-use crate::language::tree::{Condition, ConditionKind, ExpressionKind, LimitLine, LimitLineKind, RequireComparison};
+use crate::language::tree::{
+    Condition, ConditionKind, Expression, ExpressionKind, LimitLine, LimitLineKind, RequireComparison,
+};
 use crate::source::Span;
 use pest::iterators::Pair;
 
@@ -42,10 +44,8 @@ impl Builder<'_> {
                     None => None,
                 },
             },
-            Rule::tabulate_line => {
-                let times = stream.filter(|pair| pair.as_rule() == Rule::sum);
-                LimitLineKind::TabulateAt(times.map(|time| self.sum(time)).collect::<Option<_>>()?)
-            }
+            Rule::tabulate_line => LimitLineKind::TabulateAt(self.sums(stream)?),
+            Rule::extremes_line => LimitLineKind::ExtremesAt(self.sums(stream)?),
             _ => return None,
         };
         Some(LimitLine {
@@ -54,6 +54,14 @@ impl Builder<'_> {
             kind,
             basis: self.basis(&mut parts)?,
         })
+    }
+
+    /// What stands between commas.
+    fn sums<'p>(&mut self, stream: impl Iterator<Item = Pair<'p, Rule>>) -> Option<Vec<Expression>> {
+        stream
+            .filter(|pair| pair.as_rule() == Rule::sum)
+            .map(|sum| self.sum(sum))
+            .collect()
     }
 
     fn condition(&mut self, pair: Pair<'_, Rule>) -> Option<Condition> {
