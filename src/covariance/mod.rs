@@ -6,3 +6,4 @@ pub mod kernel;
 pub mod moments;
 pub mod source;
 pub mod spectral;
+pub mod spectrum;

@@ -14,7 +14,7 @@
 use super::first_moment;
 use super::form::{Exact, LinearForm, Operator, SourceId, Term};
 use super::kernel::{self, Kernel, Smoothness, SpectralMoments};
-use super::source::Source;
+use super::source::{Law, Source};
 use nalgebra::{DMatrix, DVector};
 use std::cell::{OnceCell, RefCell};
 use std::collections::HashMap;
@@ -212,17 +212,33 @@ impl<'s> MomentTable<'s> {
         sum.moment()
     }
 
-    fn kernel(&self, source: SourceId) -> &'s Kernel {
-        &self.sources[source.0 as usize].kernel
+    fn kernel(&self, source: SourceId) -> Option<&'s Kernel> {
+        self.sources[source.0 as usize].kernel()
+    }
+
+    /// The moments of a source itself.
+    fn moments_of_source(&self, source: SourceId) -> &SpectralMoments {
+        self.of_sources[source.0 as usize].get_or_init(|| match &self.sources[source.0 as usize].law {
+            Law::Kernel(kernel) => kernel.moments(),
+            Law::Spectrum(spectrum) => spectrum.moments(),
+        })
     }
 
     /// The moments of the terms over one source.
     fn part(&self, source: SourceId, terms: &[Term]) -> [Moment; 4] {
-        let moments = || self.of_sources[source.0 as usize].get_or_init(|| self.kernel(source).moments());
+        if let [term] = terms
+            && let Law::Spectrum(spectrum) = &self.sources[source.0 as usize].law
+            && term.operator.derivatives > 0
+        {
+            // Each derivative weighs the density with omega².
+            let square = term.coefficient() * term.coefficient();
+            let orders = [0, 1, 2, 4].map(|order| order + 2 * term.operator.derivatives);
+            return orders.map(|order| Moment::from(&spectrum.moment(order)).times(square));
+        }
         if let [term] = terms
             && term.operator.derivatives == 0
         {
-            let moments = moments();
+            let moments = self.moments_of_source(source);
             let square = term.coefficient() * term.coefficient();
             let source = &self.sources[source.0 as usize];
             // Infinite although the derivative exists: beyond the range of doubles.
@@ -238,11 +254,14 @@ impl<'s> MomentTable<'s> {
                 in_range(fourth, 2),
             ];
         }
+        let Some(kernel) = self.kernel(source) else {
+            return [Moment::Unknown; 4];
+        };
+        let own_first = || Moment::from(&self.moments_of_source(source).lambda[1]);
         let [variance, curvature, fourth] = [0, 2, 4].map(|n| self.even(source, terms, n));
         let source = &self.sources[source.0 as usize];
         let first = if terms.iter().all(|term| first_moment_exists(source, term.operator)) {
-            let first = Moment::from(&moments().lambda[1]);
-            first_moment::of_terms(&source.kernel, terms, first, variance, curvature)
+            first_moment::of_terms(kernel, terms, own_first(), variance, curvature)
         } else {
             Moment::Infinite
         };
@@ -292,7 +311,7 @@ impl<'s> MomentTable<'s> {
     /// over each lag: sum a_i a_j K(d_ij) = (sum a)² K(0) - 2 sum over i < j of a_i a_j (K(0) - K(d_ij)). `None` where a
     /// term is differentiated.
     fn variance_by_differences(&self, source: SourceId, terms: &[Term]) -> Option<Moment> {
-        let kernel = self.kernel(source);
+        let kernel = self.kernel(source)?;
         if terms.iter().any(|term| term.operator.derivatives > 0) {
             return None;
         }
@@ -321,16 +340,19 @@ impl<'s> MomentTable<'s> {
 
     /// The derivative of an order of the kernel at a lag of either sign; infinite where it does not exist.
     fn derivative(&self, source: SourceId, order: usize, lag: f64) -> Moment {
+        let Some(kernel) = self.kernel(source) else {
+            return Moment::Unknown;
+        };
         let size = lag.abs();
         let found = if size == 0.0 {
-            let known =
-                self.at_zero[source.0 as usize].get_or_init(|| derivatives_at_zero(&self.sources[source.0 as usize]));
+            let known = self.at_zero[source.0 as usize]
+                .get_or_init(|| derivatives_at_zero(kernel, &self.sources[source.0 as usize]));
             known.get(order).copied()
         } else {
             let key = (source, size.to_bits());
             let known = self.at_lags.borrow().get(&key).cloned();
             let known = known.unwrap_or_else(|| {
-                let computed = Rc::new(derivatives_at(self.kernel(source), size));
+                let computed = Rc::new(derivatives_at(kernel, size));
                 self.at_lags.borrow_mut().insert(key, Rc::clone(&computed));
                 computed
             });
@@ -356,14 +378,14 @@ fn first_moment_exists(source: &Source, operator: Operator) -> bool {
 pub(super) const CLOSED_FORM: f64 = 1e-13;
 
 /// The derivatives of a kernel at lag 0 by order, as far as they exist: odd ones are 0.
-fn derivatives_at_zero(source: &Source) -> Vec<Moment> {
+fn derivatives_at_zero(kernel: &Kernel, source: &Source) -> Vec<Moment> {
     let exists = |order: usize| match source.smoothness() {
         Smoothness::Unlimited => true,
         Smoothness::Exactly { limiting, .. } => (order as f64) < limiting.exponent,
         Smoothness::AtLeast { derivatives } => order <= 2 * *derivatives as usize,
         Smoothness::Unclear { .. } => order == 0,
     };
-    let expansion = source.kernel.expansion(MOST_DERIVATIVES as f64 + 1.0);
+    let expansion = kernel.expansion(MOST_DERIVATIVES as f64 + 1.0);
     let mut factorial = 1.0;
     let mut derivatives = Vec::new();
     for order in (0..=MOST_DERIVATIVES).take_while(|order| exists(*order)) {
@@ -461,7 +483,7 @@ mod tests {
 
     fn sources() -> Vec<Source> {
         let source = |name: &str, length: f64| {
-            let kernel = SquaredExponential::new(length).expect("a positive length").into();
+            let kernel = Kernel::from(SquaredExponential::new(length).expect("a positive length"));
             Source::new(name.into(), kernel, Span::new(FileId(0), 0, 0), Vec::new())
         };
         vec![source("x", 1.0), source("y", 2.0)]

@@ -1,30 +1,56 @@
 //! Sources: what is random in a model.
 
 use super::kernel::{Kernel, Smoothness};
-use super::spectral::SpectralDensity;
+use super::spectral::{SpectralDensity, Tail};
+use super::spectrum::Spectrum;
 use crate::source::Span;
+
+/// What a source is described by: all that there is to know of it.
+#[derive(Clone, Debug)]
+pub enum Law {
+    /// Its covariance function, in the square of the process's SI unit.
+    Kernel(Kernel),
+    /// Its one-sided spectral density, in the square of the process's SI unit per rad/s.
+    Spectrum(Spectrum),
+}
+
+impl From<Kernel> for Law {
+    fn from(kernel: Kernel) -> Self {
+        Self::Kernel(kernel)
+    }
+}
+
+impl From<Spectrum> for Law {
+    fn from(spectrum: Spectrum) -> Self {
+        Self::Spectrum(spectrum)
+    }
+}
 
 /// One independent, zero-mean, stationary Gaussian process.
 #[derive(Clone, Debug)]
 pub struct Source {
     /// The full name of the process that made it.
     pub name: String,
-    /// Its covariance function, in the square of the process's SI unit.
-    pub kernel: Kernel,
+    /// What it is described by.
+    pub law: Law,
     /// Where its name stands.
     pub place: Span,
-    /// What was taken for granted to get the kernel, for the reader of results.
+    /// What was taken for granted to get the description, for the reader of results.
     pub notes: Vec<String>,
     smoothness: Smoothness,
 }
 
 impl Source {
-    /// A source with its kernel.
-    pub fn new(name: String, kernel: Kernel, place: Span, notes: Vec<String>) -> Self {
-        let smoothness = kernel.smoothness();
+    /// A source with its kernel or its spectrum.
+    pub fn new(name: String, law: impl Into<Law>, place: Span, notes: Vec<String>) -> Self {
+        let law = law.into();
+        let smoothness = match &law {
+            Law::Kernel(kernel) => kernel.smoothness(),
+            Law::Spectrum(spectrum) => Smoothness::of_tail(spectrum.tail()),
+        };
         Self {
             name,
-            kernel,
+            law,
             place,
             notes,
             smoothness,
@@ -33,16 +59,25 @@ impl Source {
 
     /// Its covariance function, where it is described by one.
     pub fn kernel(&self) -> Option<&Kernel> {
-        Some(&self.kernel)
+        match &self.law {
+            Law::Kernel(kernel) => Some(kernel),
+            Law::Spectrum(_) => None,
+        }
     }
 
     /// Its spectrum, for integrals over frequency.
     pub fn spectral(&self) -> &dyn SpectralDensity {
-        &self.kernel
+        match &self.law {
+            Law::Kernel(kernel) => kernel,
+            Law::Spectrum(spectrum) => spectrum,
+        }
     }
 
-    /// Whether it has a mean-square derivative of an order.
+    /// Whether it has a mean-square derivative of an order; of order 0, whether its variance is finite.
     pub fn has_derivative(&self, order: u32) -> bool {
+        if let Law::Spectrum(spectrum) = &self.law {
+            return 2.0 * f64::from(order) + 1.0 < spectrum.tail().exponent();
+        }
         match self.smoothness {
             Smoothness::Unlimited => true,
             Smoothness::Exactly { derivatives, .. } | Smoothness::AtLeast { derivatives } => order <= derivatives,
@@ -52,6 +87,9 @@ impl Source {
 
     /// Why it has no more derivatives than it has.
     pub fn roughness_in_words(&self) -> String {
+        if let Law::Spectrum(spectrum) = &self.law {
+            return tail_in_words(spectrum.tail());
+        }
         match &self.smoothness {
             Smoothness::Unlimited => "smooth without limit".to_string(),
             Smoothness::Exactly { derivatives, limiting } => {
@@ -85,5 +123,43 @@ impl Source {
     /// How smooth it is.
     pub fn smoothness(&self) -> &Smoothness {
         &self.smoothness
+    }
+}
+
+/// How a spectrum falls, and what that leaves: the n-th derivative needs a tail that falls faster than omega^-(2n + 1).
+fn tail_in_words(tail: Tail) -> String {
+    let exponent = match tail {
+        Tail::Faster => return "smooth without limit".to_string(),
+        Tail::Power(exponent) | Tail::AtLeast(exponent) => exponent,
+    };
+    let falls = match power_in_words(exponent) {
+        _ if exponent == 0.0 => "does not fall at high frequency".to_string(),
+        power => format!("falls like omega^-{power}"),
+    };
+    let derivatives = (1..)
+        .take_while(|order| 2.0 * f64::from(*order) + 1.0 < exponent)
+        .count();
+    let needed = 2 * derivatives + if exponent > 1.0 { 3 } else { 1 };
+    let has = match derivatives {
+        _ if exponent <= 1.0 => "its variance is infinite".to_string(),
+        0 => "it has no derivative".to_string(),
+        1 => "it has one derivative and no more".to_string(),
+        several => format!("it has {several} derivatives and no more"),
+    };
+    if exponent == 0.0 {
+        format!("its spectrum {falls}, so {has}")
+    } else {
+        format!("its spectrum {falls}, no faster than omega^-{needed}, so {has}")
+    }
+}
+
+/// A positive exponent, as a fraction where it is one of thirds.
+fn power_in_words(exponent: f64) -> String {
+    let thirds = 3.0 * exponent;
+    let is_fraction = (thirds - thirds.round()).abs() < 1e-9 && (exponent - exponent.round()).abs() > 1e-9;
+    if is_fraction {
+        format!("({}/3)", thirds.round())
+    } else {
+        crate::units::show_number(exponent, 6)
     }
 }

@@ -69,6 +69,14 @@ impl Tape {
         values.last().cloned().unwrap_or_else(N::undefined)
     }
 
+    /// The numbers it contains, in order of evaluation.
+    pub fn numbers(&self) -> impl Iterator<Item = f64> {
+        self.nodes.nodes().filter_map(|node| match node {
+            Node::Number(value) => Some(value),
+            _ => None,
+        })
+    }
+
     /// The symbols it contains, each once, sorted.
     pub fn symbols(&self) -> Vec<Symbol> {
         let symbols: BTreeSet<Symbol> = self

@@ -112,7 +112,9 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
             let delays = terms.iter().map(|term| term.operator.delay);
             let (first, last) = delays.fold((f64::INFINITY, f64::NEG_INFINITY), |(a, b), d| (a.min(d), b.max(d)));
             let source = &self.model.sources[source.0 as usize];
-            let Err(why @ Unavailable::BeyondTable { .. }) = source.kernel.value(last - first) else {
+            let Some(Err(why @ Unavailable::BeyondTable { .. })) =
+                source.kernel().map(|kernel| kernel.value(last - first))
+            else {
                 continue;
             };
             let message = format!(

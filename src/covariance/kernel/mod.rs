@@ -33,6 +33,7 @@ pub use family::{
     BandLimited, Correlation, DampedCosine, Exponential, Family, Harmonic, InvalidParameter, Kink, Matern, Oscillator,
     RationalQuadratic, Rough, SquaredExponential, Triangular,
 };
+pub(super) use family::{demand, positive};
 pub use length::{Length, LengthOf, NoLength};
 pub use moments::{Moment, SpectralMoments};
 pub use smoothness::Smoothness;
@@ -90,7 +91,7 @@ const CLOSED_FORM: f64 = 1e-13;
 
 impl Estimate {
     /// From a closed form.
-    fn closed(value: f64) -> Self {
+    pub(super) fn closed(value: f64) -> Self {
         let error = if value.is_finite() {
             value.abs() * CLOSED_FORM
         } else {
@@ -99,7 +100,7 @@ impl Estimate {
         Self { value, error }
     }
 
-    fn plus(self, other: Self) -> Self {
+    pub(super) fn plus(self, other: Self) -> Self {
         Self {
             value: self.value + other.value,
             error: self.error + other.error,
@@ -107,7 +108,7 @@ impl Estimate {
     }
 
     /// The product with a number; zero times infinity is zero.
-    fn times(self, factor: f64) -> Self {
+    pub(super) fn times(self, factor: f64) -> Self {
         if factor == 0.0 {
             return Self { value: 0.0, error: 0.0 };
         }
@@ -134,6 +135,13 @@ pub enum Unavailable {
         kernel: String,
         /// The lag, in s.
         lag: f64,
+    },
+    /// A spectrum written out has no value.
+    NoDensity {
+        /// The name of the spectrum.
+        spectrum: String,
+        /// The angular frequency, in rad/s.
+        frequency: f64,
     },
     /// A derivative does not exist.
     NotSmooth {
@@ -163,6 +171,9 @@ impl fmt::Display for Unavailable {
                 )
             }
             Self::NoValue { kernel, lag } => write!(out, "{kernel} has no finite value at the lag {lag} s"),
+            Self::NoDensity { spectrum, frequency } => {
+                write!(out, "{spectrum} has no value at the frequency {frequency} rad/s")
+            }
             Self::NotSmooth { lag, derivative: 0 } => write!(out, "the kernel jumps at the lag {lag} s"),
             Self::NotSmooth { lag, derivative } => {
                 write!(

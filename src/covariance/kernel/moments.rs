@@ -44,7 +44,7 @@ const ORDER: f64 = 8.0;
 const EXPANDED: f64 = 1e-12;
 
 impl Moment {
-    fn of(Estimate { value, error }: Estimate) -> Self {
+    pub(in crate::covariance) fn of(Estimate { value, error }: Estimate) -> Self {
         if value == f64::INFINITY {
             Self::Infinite
         } else if error <= REACHED * value.abs() {

@@ -2,6 +2,7 @@
 
 use super::family::Rough;
 use super::{Correlation, Kernel};
+use crate::covariance::spectral::Tail;
 use crate::expression::{Series, SeriesTerm};
 
 /// How many mean-square derivatives a process has.
@@ -67,6 +68,21 @@ impl Smoothness {
             None => Self::Unclear {
                 reason: "its expansion at lag zero is not known".to_owned(),
             },
+        }
+    }
+
+    /// What the tail of a spectrum leaves: one that falls as omega^-p is a rough term tau^(p - 1) (M. L. Stein 1999,
+    /// Interpolation of Spatial Data, sec. 2.8), with a logarithm where that is an even power.
+    pub(in crate::covariance) fn of_tail(tail: Tail) -> Self {
+        match tail {
+            Tail::Power(p) => Self::limited(Rough {
+                exponent: p - 1.0,
+                log: u32::from((p - 1.0).rem_euclid(2.0) == 0.0),
+            }),
+            Tail::AtLeast(p) => Self::AtLeast {
+                derivatives: below(p - 1.0),
+            },
+            Tail::Faster => Self::Unlimited,
         }
     }
 

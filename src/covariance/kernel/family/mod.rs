@@ -33,6 +33,7 @@ pub use harmonic::Harmonic;
 pub use matern::Matern;
 pub use oscillator::Oscillator;
 pub use parameter::InvalidParameter;
+pub(in crate::covariance) use parameter::{demand, positive};
 pub use rational_quadratic::RationalQuadratic;
 pub use squared_exponential::SquaredExponential;
 pub use triangular::Triangular;

@@ -34,7 +34,7 @@ impl fmt::Display for InvalidParameter {
 impl std::error::Error for InvalidParameter {}
 
 /// Accepts `value` if `allowed`; what it says otherwise names the parameter.
-pub(super) fn demand(
+pub(in crate::covariance) fn demand(
     allowed: bool,
     family: &'static str,
     parameter: &'static str,
@@ -54,7 +54,11 @@ pub(super) fn demand(
 }
 
 /// Accepts a length or a frequency: positive, and within the range whose higher powers are numbers.
-pub(super) fn positive(family: &'static str, parameter: &'static str, value: f64) -> Result<f64, InvalidParameter> {
+pub(in crate::covariance) fn positive(
+    family: &'static str,
+    parameter: &'static str,
+    value: f64,
+) -> Result<f64, InvalidParameter> {
     let allowed = (1.0 / EXTREME..=EXTREME).contains(&value);
     demand(
         allowed,
