@@ -5,11 +5,13 @@
 
 mod evaluation;
 mod extremes;
+mod findings;
 mod number;
 
 pub use evaluation::evaluate;
 pub use number::Real;
 
+use crate::diagnostics::Diagnostic;
 use serde::Serialize;
 
 /// Everything `evaluate` finds out about a model.
@@ -35,6 +37,9 @@ pub struct Results {
     pub expectations: Vec<ExpectationResult>,
     /// Findings that did not stop the computation.
     pub warnings: Vec<Warning>,
+    /// Those of them that only the results show, for people.
+    #[serde(skip)]
+    pub findings: Vec<Diagnostic>,
 }
 
 /// The program that computed.
@@ -263,6 +268,9 @@ pub struct Warning {
     pub line: usize,
     /// The column, from 1, in Unicode scalar values.
     pub column: usize,
+    /// The reason for which the file accepts it.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub accepted: Option<String>,
 }
 
 impl Results {

@@ -1,6 +1,8 @@
 //! Tree to model: names, parts, units, dimensions, kinds and smoothness. Every fault of the text is found here, and a
 //! thing at fault absorbs what follows from it, so that one mistake gives one message.
 
+mod acceptance;
+mod advice;
 mod lower;
 mod model;
 mod names;
@@ -8,6 +10,7 @@ mod order;
 mod parts;
 mod value;
 
+pub use acceptance::Acceptances;
 pub use model::{
     Expectation, ExtremeQuantity, Kind, LimitQuantity, LimitState, Model, Named, Parameter, ProcessQuantity,
     Requirement, Subject, Time, Tolerance,
@@ -52,9 +55,21 @@ pub fn check(
         lower::unknown_overrides(&names, &settings.overrides, &mut diagnostics);
         let order = order::order(&names, &mut diagnostics);
         let lowering = lower::Lowering::new(&names, &mut library, settings);
-        let (lowered, found) = lowering.run(&order.items, &order.circular);
-        diagnostics.extend(found);
-        model = Some(lowered);
+        let mut lowered = lowering.run(&order.items, &order.circular);
+        diagnostics.append(&mut lowered.diagnostics);
+        let mut acceptances = Acceptances::read(&names, &mut diagnostics);
+        let finished = advice::Finished::new(&names, library.files(), &lowered);
+        diagnostics.extend(finished.advice(!any_error(&diagnostics)));
+        let without_basis = finished.without_basis();
+        let complete = finished.is_complete() && !any_error(&diagnostics);
+        acceptances.apply(&mut diagnostics);
+        if complete {
+            diagnostics.extend(acceptances.idle(|code| !code.needs_results()));
+        }
+        let mut found = lowered.model;
+        found.acceptances = acceptances;
+        found.without_basis = without_basis;
+        model = Some(found);
     }
     if let Some(model) = &model
         && settings.require_parameters

@@ -1,6 +1,7 @@
 //! The checked model: what is left of the text once every name, unit and kind is known. All numbers are in coherent SI
 //! units; spans are kept beside them for findings.
 
+use super::acceptance::Acceptances;
 use super::names::ItemId;
 use crate::covariance::form::LinearForm;
 use crate::covariance::source::Source;
@@ -29,6 +30,10 @@ pub struct Model {
     pub limit_states: Vec<LimitState>,
     /// What the author expects.
     pub expectations: Vec<Expectation>,
+    /// The warnings that the author accepts.
+    pub acceptances: Acceptances,
+    /// What holds numbers and does not say where they come from.
+    pub without_basis: Vec<String>,
     /// Places of declarations that came to nothing, whatever the reason.
     pub(super) lost: Vec<Span>,
 }
@@ -179,6 +184,8 @@ pub struct Expectation {
     pub unit: Rc<Unit>,
     /// Where the expected value comes from.
     pub basis: Option<String>,
+    /// Where it stands, from the quantity to the tolerance.
+    pub place: Span,
     /// Its place in the text.
     pub(super) order: ItemId,
 }
@@ -227,6 +234,8 @@ impl Model {
             varying: Vec::new(),
             limit_states: Vec::new(),
             expectations: Vec::new(),
+            acceptances: Acceptances::default(),
+            without_basis: Vec::new(),
             lost: Vec::new(),
         }
     }

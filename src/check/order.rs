@@ -108,7 +108,7 @@ fn circular(names: &Names<'_>, circle: &[ItemId]) -> Diagnostic {
 }
 
 /// The items that an item's value is made from. Names that lead nowhere are left to those who look at the value.
-fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
+pub(super) fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
     let at = names.item(item);
     let mut found = Vec::new();
     let look = |path: &Path, from: InstanceId, found: &mut Vec<ItemId>| {
@@ -174,7 +174,7 @@ fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
     found
 }
 
-fn conditions(condition: &Condition, visit: &mut impl FnMut(&Expression)) {
+pub(super) fn conditions(condition: &Condition, visit: &mut impl FnMut(&Expression)) {
     match &condition.kind {
         ConditionKind::Below(a, b) | ConditionKind::Above(a, b) => [a, b].into_iter().for_each(visit),
         ConditionKind::Outside(a, b, c) => [a, b, c].into_iter().for_each(visit),

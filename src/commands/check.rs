@@ -3,8 +3,8 @@
 use super::session::{Session, print};
 use super::{CheckArguments, ColorChoice, Status};
 use crate::check::{Kind, Model};
-use crate::diagnostics::json;
-use std::io;
+use crate::diagnostics::{Diagnostic, json};
+use std::io::{self, Write};
 
 pub(super) fn run(arguments: &CheckArguments, color: ColorChoice) -> io::Result<Status> {
     let mut status = Status::Holds;
@@ -23,12 +23,10 @@ pub(super) fn run(arguments: &CheckArguments, color: ColorChoice) -> io::Result<
         }
         session.show(color)?;
         print(|out| match &session.model {
-            Some(model) => writeln!(
-                out,
-                "{}: {}",
-                path.display(),
-                contents(model, session.diagnostics.len())
-            ),
+            Some(model) => {
+                writeln!(out, "{}: {}", path.display(), contents(model, &session.diagnostics))?;
+                accepted(out, &session)
+            }
             None => Ok(()),
         })?;
     }
@@ -38,16 +36,32 @@ pub(super) fn run(arguments: &CheckArguments, color: ColorChoice) -> io::Result<
     Ok(status)
 }
 
-/// `3 processes, 1 margin, 1 limit state; nothing found`
-fn contents(model: &Model, findings: usize) -> String {
+/// A line for each warning that the file accepts.
+fn accepted(out: &mut dyn Write, session: &Session) -> io::Result<()> {
+    for one in &session.diagnostics {
+        if let Some(reason) = &one.accepted {
+            let (place, file) = (session.files.place(one.place), session.files.get(one.place.file).name());
+            let (code, line, column) = (one.code.name(), place.line, place.column);
+            writeln!(out, "  accepted: {code} at {file}:{line}:{column}, because {reason}")?;
+        }
+    }
+    Ok(())
+}
+
+/// `3 processes, 1 margin, 1 limit state; nothing to object to`
+fn contents(model: &Model, diagnostics: &[Diagnostic]) -> String {
     let count = |number: usize, one: &str, many: &str| match number {
         1 => format!("1 {one}"),
         _ => format!("{number} {many}"),
     };
     let of = |kind: Kind| model.varying.iter().filter(|named| named.kind == kind).count();
-    let findings = match findings {
-        0 => "nothing to object to".to_string(),
-        findings => count(findings, "warning", "warnings"),
+    let open = diagnostics.iter().filter(|one| one.is_open()).count();
+    let accepted = diagnostics.len() - open;
+    let findings = match (open, accepted) {
+        (0, 0) => "nothing to object to".to_string(),
+        (open, 0) => count(open, "warning", "warnings"),
+        (0, accepted) => format!("{} accepted", count(accepted, "warning", "warnings")),
+        (open, accepted) => format!("{}, {accepted} more accepted", count(open, "warning", "warnings")),
     };
     format!(
         "{}, {}, {}; {findings}",

@@ -3,6 +3,7 @@
 use super::session::{Session, complain, print};
 use super::{ColorChoice, EvaluateArguments, Status};
 use crate::check::names_near;
+use crate::diagnostics::sort;
 use crate::report::text;
 use crate::results::{self, Results};
 use serde::Serialize;
@@ -10,14 +11,14 @@ use std::io::{self, Write};
 
 pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Result<Status> {
     let files = &arguments.model.files;
-    let sessions: Vec<Session> = files
+    let mut sessions: Vec<Session> = files
         .iter()
         .map(|path| Session::open(path, &arguments.model, true))
         .collect();
-    for session in &sessions {
-        session.show(color)?;
-    }
     if !sessions.iter().all(Session::sound) {
+        for session in &sessions {
+            session.show(color)?;
+        }
         return Ok(Status::Wrong);
     }
     if let Some(words) = unknown_limit_state(&sessions, &arguments.only) {
@@ -25,14 +26,13 @@ pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Resu
         return Ok(Status::Wrong);
     }
     let mut documents: Vec<Results> = Vec::new();
-    for session in &sessions {
+    for session in &mut sessions {
         let Some(model) = &session.model else { continue };
-        documents.push(results::evaluate(
-            &session.files,
-            model,
-            &session.diagnostics,
-            &arguments.only,
-        ));
+        let results = results::evaluate(&session.files, model, &session.diagnostics, &arguments.only);
+        session.diagnostics.extend(results.findings.iter().cloned());
+        sort(&mut session.diagnostics);
+        session.show(color)?;
+        documents.push(results);
     }
     if arguments.model.json {
         print(|out| write_documents(out, &documents))?;

@@ -6,7 +6,7 @@ use super::spectrum::Spectrum;
 use crate::source::Span;
 
 /// What a source is described by: all that there is to know of it.
-#[derive(Clone, Debug)]
+#[derive(Clone, Debug, PartialEq)]
 pub enum Law {
     /// Its covariance function, in the square of the process's SI unit.
     Kernel(Kernel),

@@ -95,9 +95,34 @@ catalogue! {
     ModelTooLarge Error "model/too-large" "a model larger than the program computes"
     ModelUnexplained Error "model/unexplained" "a declaration from which nothing came, for no reason the program knows"
     TableContent Error "table/content" "a data file whose content cannot be used"
+    NameUnused Warning "name/unused" "a declaration on which no result rests"
+    CallConvention Warning "call/convention" "a value whose own name says that it follows another convention than its place"
+    ProcessPercent Warning "process/percent" "a coefficient of variation that looks like a percentage taken for a ratio, or the reverse"
+    ProcessDeviationRatio Warning "process/deviation-ratio" "a standard deviation that looks like a coefficient of variation"
+    ProcessRawMoment Warning "process/raw-moment" "an autocovariance that seems to hold the square of the mean"
+    ProcessSameDescription Warning "process/same-description" "independent processes that are described in the same way"
+    MarginCountedTwice Warning "margin/counted-twice" "a process that enters a sum as itself and inside another process"
+    LimitFailedMean Warning "limit/failed-mean" "a condition under which failure is the normal state"
+    LimitShortPeriod Warning "limit/short-period" "a reference period in which the margin does not forget its start"
+    RequirementIdle Warning "requirement/idle" "a requirement that nothing can miss"
+    RequirementDirection Warning "requirement/direction" "a requirement that asks for failure"
+    RequirementPeriod Warning "requirement/period" "a reliability index demanded over another period than its source means"
+    ExpectationIdle Warning "expectation/idle" "an expectation that compares nothing"
+    ExpectationNever Warning "expectation/never" "an expectation of a quantity that does not exist or is infinite"
+    ResultTooGood Warning "result/too-good" "a reliability index beyond anything that can be shown"
+    ResultKnownRatio Warning "result/known-ratio" "a failed expectation that is off by a factor of the trade"
+    AcceptUnknown Error "accept/unknown" "an acceptance of a code that does not exist"
+    AcceptError Error "accept/error" "an acceptance of an error"
+    AcceptReason Error "accept/reason" "an acceptance without a reason"
+    AcceptUnused Warning "accept/unused" "an acceptance that accepts nothing"
 }
 
 impl Code {
+    /// Whether it is found by `evaluate` alone, since it needs results.
+    pub fn needs_results(self) -> bool {
+        matches!(self, Code::ResultTooGood | Code::ResultKnownRatio)
+    }
+
     /// The code of a written form.
     pub fn find(name: &str) -> Option<Code> {
         Self::ALL.iter().copied().find(|code| code.name() == name)

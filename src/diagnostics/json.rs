@@ -23,6 +23,9 @@ struct Entry {
     labels: Vec<LabelEntry>,
     #[serde(skip_serializing_if = "Option::is_none")]
     help: Option<String>,
+    /// The reason for which a warning is accepted.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    accepted: Option<String>,
 }
 
 #[derive(Serialize)]
@@ -66,6 +69,7 @@ fn entry(files: &Files, diagnostic: &Diagnostic) -> Entry {
         place: place(files, diagnostic.place),
         labels: here.into_iter().chain(others).collect(),
         help: diagnostic.help.clone(),
+        accepted: diagnostic.accepted.clone(),
     }
 }
 

@@ -23,6 +23,8 @@ pub struct Diagnostic {
     pub labels: Vec<Label>,
     /// The mend, starting with a verb.
     pub help: Option<String>,
+    /// Why the file accepts it, where it is a warning that an `accept` speaks of.
+    pub accepted: Option<String>,
 }
 
 /// A second place of a diagnostic.
@@ -44,6 +46,7 @@ impl Diagnostic {
             here: String::new(),
             labels: Vec::new(),
             help: None,
+            accepted: None,
         }
     }
 
@@ -74,6 +77,11 @@ impl Diagnostic {
     /// Error or warning.
     pub fn severity(&self) -> Severity {
         self.code.severity()
+    }
+
+    /// Whether nobody has accepted it.
+    pub fn is_open(&self) -> bool {
+        self.accepted.is_none()
     }
 }
 

@@ -16,7 +16,7 @@ const LONGEST_LINE: usize = 500;
 /// More findings than this are counted, not drawn.
 const MOST_DRAWN: usize = 100;
 
-/// Writes the findings one after another, in the order given.
+/// Writes the findings one after another, in the order given; accepted warnings are left out.
 ///
 /// # Errors
 /// Whatever writing to `out` returns.
@@ -25,7 +25,8 @@ pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], col
         files,
         sources: HashMap::new(),
     };
-    for diagnostic in diagnostics.iter().take(MOST_DRAWN) {
+    let open = || diagnostics.iter().filter(|diagnostic| diagnostic.is_open());
+    for diagnostic in open().take(MOST_DRAWN) {
         if fits(files, diagnostic) {
             report(files, diagnostic, color).write(&mut cache, &mut *out)?;
         } else {
@@ -33,7 +34,7 @@ pub fn write(out: &mut dyn Write, files: &Files, diagnostics: &[Diagnostic], col
         }
         writeln!(out)?;
     }
-    if let Some(more) = diagnostics.len().checked_sub(MOST_DRAWN).filter(|more| *more > 0) {
+    if let Some(more) = open().count().checked_sub(MOST_DRAWN).filter(|more| *more > 0) {
         writeln!(out, "... and {more} more; `check --json` lists them all")?;
     }
     Ok(())

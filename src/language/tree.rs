@@ -135,10 +135,12 @@ pub enum DeclarationKind {
         /// The correlation.
         value: Expression,
     },
-    /// `accept CODE because "..."`
+    /// `accept CODE [at NAME] because "..."`
     Accept {
         /// The code of a warning, slashes included.
         code: Word,
+        /// The declaration whose warning is accepted; all of the file without one.
+        at: Option<Path>,
         /// The reason.
         reason: Text,
     },

@@ -31,6 +31,8 @@ pub fn write(out: &mut dyn Write, model: &Model, results: &Results) -> io::Resul
         }
     }
     expectations(out, results)?;
+    accepted(out, results)?;
+    without_basis(out, model)?;
     outcome(out, results)?;
     if !results.limit_states.is_empty() {
         writeln!(out)?;
@@ -311,6 +313,39 @@ fn expectations(out: &mut dyn Write, results: &Results) -> io::Result<()> {
         })
         .collect();
     columns(out, 2, &[Side::Left, Side::Left, Side::Left, Side::Left], &rows)
+}
+
+/// The warnings that the file accepts, with its reasons.
+fn accepted(out: &mut dyn Write, results: &Results) -> io::Result<()> {
+    let accepted = || {
+        results
+            .warnings
+            .iter()
+            .filter_map(|one| Some((one, one.accepted.as_ref()?)))
+    };
+    if accepted().next().is_none() {
+        return Ok(());
+    }
+    heading(out, "Accepted warnings")?;
+    for (warning, reason) in accepted() {
+        let (code, file, line) = (warning.code, &warning.file, warning.line);
+        paragraph(
+            out,
+            "  - ",
+            &format!("{} ({code}, {file} line {line})", warning.message),
+        )?;
+        paragraph(out, "    ", &format!("because: {reason}"))?;
+    }
+    Ok(())
+}
+
+/// What a checker cannot follow to its source.
+fn without_basis(out: &mut dyn Write, model: &Model) -> io::Result<()> {
+    if model.without_basis.is_empty() {
+        return Ok(());
+    }
+    heading(out, "Numbers without a basis")?;
+    paragraph(out, "  ", &model.without_basis.join(", "))
 }
 
 /// One line that says how it ended.

@@ -1,6 +1,7 @@
 //! From the checked model to its results.
 
 use super::extremes;
+use super::findings;
 use super::number::Real;
 use super::{
     Assumption, ExpectationResult, LimitStateResult, ModelIdentity, Moments, ParameterValue, RequirementResult,
@@ -11,7 +12,7 @@ use crate::check::{
 };
 use crate::covariance::moments::{FormMoments, Moment, MomentTable};
 use crate::covariance::source::Source;
-use crate::diagnostics::Diagnostic;
+use crate::diagnostics::{Code, Diagnostic, sort};
 use crate::reliability::crossings::{FailureRegion, GaussianMargin};
 use crate::reliability::first_passage::{FirstPassage, Method, ln_clumping};
 use crate::reliability::probability::Probability;
@@ -35,7 +36,7 @@ const NARROW_BAND: f64 = 0.3;
 /// What rounding leaves even where no moment cancels.
 const ROUNDING: f64 = 1e-14;
 
-/// Computes everything. `only` names the limit states wanted; empty for all.
+/// Computes everything. `only` names the limit states wanted; empty for all. `warnings` are those of the check.
 pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[String]) -> Results {
     let table = MomentTable::new(&model.sources);
     let varying: Vec<FormMoments> = model
@@ -51,7 +52,28 @@ pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[S
             .collect()
     };
     let wanted = |limit_state: &&LimitState| only.is_empty() || only.contains(&limit_state.name);
-    let limit_states = model.limit_states.iter().filter(wanted);
+    let limit_states: Vec<&LimitState> = model.limit_states.iter().filter(wanted).collect();
+    let judged: Vec<LimitStateResult> = limit_states
+        .iter()
+        .map(|limit_state| Judged::new(&table, limit_state).result())
+        .collect();
+    let expectations: Vec<ExpectationResult> = model
+        .expectations
+        .iter()
+        .map(|expectation| expected(expectation, model, &varying, &table))
+        .collect();
+    let pairs = limit_states.iter().zip(&judged);
+    let mut findings: Vec<Diagnostic> = pairs
+        .filter_map(|(one, result)| findings::too_good(one, result))
+        .collect();
+    let pairs = model.expectations.iter().zip(&expectations);
+    findings.extend(pairs.filter_map(|(one, result)| findings::known_ratio(one, result)));
+    let mut acceptances = model.acceptances.clone();
+    acceptances.apply(&mut findings);
+    if only.is_empty() {
+        findings.extend(acceptances.idle(Code::needs_results));
+    }
+    sort(&mut findings);
     Results {
         format: "outcross-results",
         version: 1,
@@ -71,15 +93,14 @@ pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[S
             .collect(),
         processes: of_kind(Kind::Process),
         margins: of_kind(Kind::Margin),
-        limit_states: limit_states
-            .map(|limit_state| Judged::new(&table, limit_state).result())
-            .collect(),
-        expectations: model
-            .expectations
+        limit_states: judged,
+        expectations,
+        warnings: warnings
             .iter()
-            .map(|expectation| expected(expectation, model, &varying, &table))
+            .chain(&findings)
+            .map(|warning| warning_entry(files, warning))
             .collect(),
-        warnings: warnings.iter().map(|warning| warning_entry(files, warning)).collect(),
+        findings,
     }
 }
 
@@ -101,6 +122,7 @@ fn warning_entry(files: &Files, warning: &Diagnostic) -> Warning {
         file: files.get(warning.place.file).name(),
         line: place.line,
         column: place.column,
+        accepted: warning.accepted.clone(),
     }
 }
 
@@ -154,6 +176,15 @@ impl<'m> Judged<'m> {
 
     fn reduced_barrier(&self) -> f64 {
         self.margin.reduced_barrier(self.limit_state.region)
+    }
+
+    /// The level that a one-sided condition on a margin of mean 0 leaves out on the other side.
+    fn other_side(&self) -> Option<String> {
+        let level = match self.limit_state.region {
+            FailureRegion::Below(level) | FailureRegion::Above(level) => level,
+            FailureRegion::Outside(..) => return None,
+        };
+        (self.margin.mean == 0.0 && level != 0.0).then(|| show(-level, &self.limit_state.unit, DIGITS))
     }
 
     fn result(&self) -> LimitStateResult {
@@ -337,6 +368,15 @@ impl<'m> Judged<'m> {
                 code: "kernel",
                 text: note.clone(),
             }));
+        }
+        if let Some(other) = self.other_side() {
+            assumptions.push(Assumption {
+                code: "one-sided",
+                text: format!(
+                    "Only one side fails. The mean is 0, so the margin is as often beyond {other} on the other side, \
+                     which does not count."
+                ),
+            });
         }
         let reduced = self.reduced_barrier();
         if reduced < LOW_BARRIER {

@@ -1,9 +1,10 @@
 //! Files that stand in memory, and a run over them.
 
 use outcross::check::{self, Model, Settings};
-use outcross::diagnostics::{Diagnostic, any_error, terminal};
+use outcross::diagnostics::{Diagnostic, any_error, sort, terminal};
 use outcross::language;
 use outcross::language::tree::{DeclarationKind, DefinitionKeyword};
+use outcross::results;
 use outcross::source::{Files, Reader, Unreadable};
 use std::collections::HashMap;
 use std::path::{Component, Path, PathBuf};
@@ -108,6 +109,21 @@ fn nothing_is_dropped(files: &Files, model: &Model) {
 }
 
 impl Run {
+    /// With what only the results show, as `evaluate` has it.
+    pub fn with_results(mut self) -> Self {
+        if let Some(model) = &self.model {
+            let results = results::evaluate(&self.files, model, &self.diagnostics, &[]);
+            self.diagnostics.extend(results.findings);
+            sort(&mut self.diagnostics);
+        }
+        self
+    }
+
+    /// The findings that nobody has accepted.
+    pub fn open(&self) -> impl Iterator<Item = &Diagnostic> {
+        self.diagnostics.iter().filter(|one| one.is_open())
+    }
+
     /// What a user reads at the terminal.
     pub fn shown(&self) -> String {
         let mut out = Vec::new();

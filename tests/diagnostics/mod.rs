@@ -48,7 +48,7 @@ fn one_fault_gives_one_message() {
     let mut others = String::new();
     insta::glob!("faulty/*.limit", |path| {
         let (name, text) = content(path);
-        let run = shared.clone().with(&name, &text).run(&name, true);
+        let run = shared.clone().with(&name, &text).run(&name, true).with_results();
         insta::assert_snapshot!(format!("{text}\n======== messages ========\n{}", run.shown()));
         if run.diagnostics.len() != 1 {
             others += &format!("{name}:\n{}\n", run.shown());

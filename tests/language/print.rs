@@ -107,7 +107,10 @@ impl Printer<'_> {
                 let names: Vec<String> = names.iter().map(path).collect();
                 format!("{keyword} {} with {}\n", names.join(" and "), self.expression(value))
             }
-            DeclarationKind::Accept { code, reason } => format!("{keyword} {} because {:?}\n", code.text, reason.value),
+            DeclarationKind::Accept { code, at, reason } => {
+                let at = at.as_ref().map_or(String::new(), |at| format!(" at {}", path(at)));
+                format!("{keyword} {}{at} because {:?}\n", code.text, reason.value)
+            }
         }
     }
 

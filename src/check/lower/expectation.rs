@@ -53,7 +53,8 @@ impl Lowering<'_, '_, '_> {
             "the expected value",
             Some((quantity.span, "expected of this")),
         );
-        let text = self.as_written(quantity.span.to(tolerance.span));
+        let place = quantity.span.to(tolerance.span);
+        let text = self.as_written(place);
         let tolerance = self.tolerance(tolerance, dimension, scope);
         let (Some(expected), Some(tolerance)) = (expected, tolerance) else {
             return;
@@ -68,6 +69,7 @@ impl Lowering<'_, '_, '_> {
             tolerance,
             unit: unit_or_si(expected.unit.as_ref(), dimension),
             basis: declaration.basis.as_ref().map(|text| text.value.to_string()),
+            place,
             order: item,
         });
     }

@@ -23,6 +23,7 @@ mod table;
 mod unit;
 
 pub use parameter::unknown_overrides;
+pub(in crate::check) use process::fresh_source;
 
 use super::Settings;
 use super::model::Model;
@@ -83,6 +84,20 @@ impl Scope<'_> {
     }
 }
 
+/// What the walk through all items came to.
+pub struct Lowered {
+    /// The model, complete where nothing is at fault.
+    pub model: Model,
+    /// What each item is, by its number; `None` where the walk did not come to it.
+    pub values: Vec<Option<Value>>,
+    /// Which of the model's processes and margins an item is.
+    pub varying: HashMap<ItemId, usize>,
+    /// Which of the model's limit states an item is.
+    pub limit_states: HashMap<ItemId, usize>,
+    /// What was found.
+    pub diagnostics: Vec<Diagnostic>,
+}
+
 /// The state of the walk through all items.
 pub struct Lowering<'p, 'l, 'f> {
     names: &'p Names<'p>,
@@ -128,7 +143,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     }
 
     /// Looks at all items, in an order in which each comes after those it is made from.
-    pub fn run(mut self, items: &[ItemId], circular: &[ItemId]) -> (Model, Vec<Diagnostic>) {
+    pub fn run(mut self, items: &[ItemId], circular: &[ItemId]) -> Lowered {
         for item in circular {
             self.values[item.index()] = Some(Value::Fault);
         }
@@ -142,7 +157,13 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             }
         }
         self.in_order_of_the_text();
-        (self.model, self.diagnostics)
+        Lowered {
+            model: self.model,
+            values: self.values,
+            varying: self.varying,
+            limit_states: self.limit_states,
+            diagnostics: self.diagnostics,
+        }
     }
 
     /// Notes a declaration that should have come to something and did not.
@@ -196,6 +217,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         let (limit_states, new_limits) = sorted(std::mem::take(&mut self.model.limit_states), &self.limit_states);
         self.model.varying = varying;
         self.model.limit_states = limit_states;
+        for (indices, new) in [(&mut self.varying, &new_varying), (&mut self.limit_states, &new_limits)] {
+            indices.values_mut().for_each(|index| *index = new[*index]);
+        }
         for expectation in &mut self.model.expectations {
             expectation.subject.renumber(&new_varying, &new_limits);
         }
@@ -255,7 +279,8 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             } => self.not_yet(declaration.keyword, Later::Spectra),
             DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, Later::Climates),
             DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, Later::Correlations),
-            DeclarationKind::Accept { .. } => self.not_yet(declaration.keyword, Later::Acceptances),
+            // Looked at once everything has been found that it could accept.
+            DeclarationKind::Accept { .. } => {}
             DeclarationKind::LimitState { name, lines, close } => {
                 self.limit_state(item, name, lines, *close);
             }

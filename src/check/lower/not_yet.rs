@@ -18,7 +18,6 @@ pub(super) enum Later {
     Responses,
     Systems,
     Hazards,
-    Acceptances,
 }
 
 impl Later {
@@ -35,7 +34,6 @@ impl Later {
             Self::Responses => "responses of systems",
             Self::Systems => "systems of several conditions",
             Self::Hazards => "annual and point-in-time quantities",
-            Self::Acceptances => "accepted warnings",
         }
     }
 
@@ -44,7 +42,7 @@ impl Later {
             Self::Variables => {
                 "use a `parameter` with a cautious value, such as a 5 % fractile; a process would be drawn anew all the time"
             }
-            Self::Correlations | Self::Acceptances => "leave it out",
+            Self::Correlations => "leave it out",
             Self::Quantities => "use a `constant` or a `parameter`",
             Self::Profiles | Self::Time => "use a `constant` with the least favourable value of the service life",
             Self::Climates => "use a `parameter` for the state, and evaluate the states one by one",

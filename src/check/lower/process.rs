@@ -422,7 +422,7 @@ fn known(scalar: &Scalar) -> Option<f64> {
 }
 
 /// The call of `gaussian(...)` that an expression is, brackets aside.
-fn fresh_source(expression: &Expression) -> Option<&Call> {
+pub(in crate::check) fn fresh_source(expression: &Expression) -> Option<&Call> {
     match &expression.kind {
         ExpressionKind::Bracket(inner) => fresh_source(inner),
         ExpressionKind::Call(call) => match call.function.words.as_slice() {

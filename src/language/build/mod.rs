@@ -141,9 +141,14 @@ impl<'a> Builder<'a> {
             }
             Rule::accept => {
                 let code = self.word(stream.next()?);
+                let at = match take(&mut stream, Rule::at) {
+                    Some(_) => Some(self.path(&stream.next()?)),
+                    None => None,
+                };
                 take(&mut stream, Rule::because);
                 DeclarationKind::Accept {
                     code,
+                    at,
                     reason: self.text(&stream.next()?),
                 }
             }
