@@ -1,9 +1,10 @@
 //! Linear forms over sources: what every process and every margin is, in one normal form.
 //!
-//! A form is a deterministic part and a sum of coefficient × operator × source. It is kept sorted and merged, so two
-//! ways of writing one margin are one value. Coefficients are carried to twice the working precision and rounded once
+//! A form is a deterministic part and a sum of coefficient × operator × source, an operator being derivative × delay ×
+//! linear systems. It is kept sorted and merged, so two ways of writing one margin are one value. Coefficients are carried to twice the working precision and rounded once
 //! when they are read, so the order in which they were added up leaves no trace in the last digit.
 
+use super::response::{Chain, System};
 use std::cmp::Ordering;
 use std::fmt;
 
@@ -11,13 +12,16 @@ use std::fmt;
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub struct SourceId(pub u32);
 
-/// A linear, time-invariant operation in normal form: the n-th mean-square derivative, delayed.
-#[derive(Clone, Copy, Debug, PartialEq)]
+/// A linear, time-invariant operation in normal form: the n-th mean-square derivative, delayed, of what comes out of
+/// linear systems. All of these commute.
+#[derive(Clone, Debug, PartialEq)]
 pub struct Operator {
     /// How often the source is differentiated.
     pub derivatives: u32,
     /// The delay in s: the source is taken at `t - delay`.
     pub delay: f64,
+    /// The systems that the source passes through.
+    pub systems: Chain,
 }
 
 impl Operator {
@@ -25,12 +29,27 @@ impl Operator {
     pub const IDENTITY: Self = Self {
         derivatives: 0,
         delay: 0.0,
+        systems: Chain::NONE,
     };
 
     fn order(&self, other: &Self) -> Ordering {
         self.derivatives
             .cmp(&other.derivatives)
             .then(self.delay.total_cmp(&other.delay))
+            .then_with(|| self.systems.order(&other.systems))
+    }
+
+    /// With a delay and a number of derivatives more.
+    fn moved(&self, derivatives: u32, delay: f64) -> Self {
+        Self {
+            derivatives: self.derivatives.saturating_add(derivatives),
+            delay: if delay == 0.0 {
+                self.delay
+            } else {
+                decimal(self.delay + delay)
+            },
+            systems: self.systems.clone(),
+        }
     }
 }
 
@@ -96,7 +115,7 @@ impl Exact {
 }
 
 /// One term of a form.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq)]
 pub struct Term {
     /// What it is made from.
     pub source: SourceId,
@@ -154,7 +173,7 @@ impl LinearForm {
             deterministic = deterministic.plus(form.deterministic.times(factor));
             terms.extend(form.terms.iter().map(|term| Term {
                 coefficient: term.coefficient.times(factor),
-                ..*term
+                ..term.clone()
             }));
         }
         Self {
@@ -166,29 +185,43 @@ impl LinearForm {
     /// The mean-square derivative: the deterministic part, a constant, goes.
     #[must_use]
     pub fn derivative(&self) -> Self {
-        self.mapped(Exact::default(), |operator| Operator {
-            derivatives: operator.derivatives.saturating_add(1),
-            ..operator
+        self.mapped(Exact::default(), |term| Term {
+            operator: term.operator.moved(1, 0.0),
+            ..term.clone()
         })
     }
 
     /// The form `by` seconds earlier.
     #[must_use]
     pub fn delayed(&self, by: f64) -> Self {
-        self.mapped(self.deterministic, |operator| Operator {
-            delay: decimal(operator.delay + by),
-            ..operator
+        self.mapped(self.deterministic, |term| Term {
+            operator: term.operator.moved(0, by),
+            ..term.clone()
         })
     }
 
-    fn mapped(&self, deterministic: Exact, change: impl Fn(Operator) -> Operator) -> Self {
-        let terms = self.terms.iter().map(|term| Term {
-            operator: change(term.operator),
-            ..*term
-        });
+    /// What comes out of a system, times a factor, when the form goes in; the mean passes through at rest. `None` where the
+    /// form has a mean and the system says nothing about rest.
+    pub fn through(&self, system: &System, factor: f64) -> Option<Self> {
+        let gain = match system.static_gain() {
+            Some(gain) => gain,
+            None if self.mean() == 0.0 => 0.0,
+            None => return None,
+        };
+        Some(self.mapped(self.deterministic.times(gain).times(factor), |term| Term {
+            source: term.source,
+            operator: Operator {
+                systems: term.operator.systems.with(system),
+                ..term.operator
+            },
+            coefficient: term.coefficient.times(factor),
+        }))
+    }
+
+    fn mapped(&self, deterministic: Exact, change: impl Fn(&Term) -> Term) -> Self {
         Self {
             deterministic,
-            terms: merged(terms.collect()),
+            terms: merged(self.terms.iter().map(change).collect()),
         }
     }
 
@@ -234,13 +267,16 @@ fn merged(mut terms: Vec<Term>) -> Vec<Term> {
     terms
         .chunk_by(|a, b| a.order(b) == Ordering::Equal)
         .filter_map(|alike| {
-            let first = *alike.first()?;
+            let first = alike.first()?;
             let zero = (Exact::default(), 0.0);
             let (coefficient, size) = alike.iter().fold(zero, |(sum, size), term| {
                 (sum.plus(term.coefficient), size + term.coefficient().abs())
             });
             let cancelled = alike.len() > 1 && coefficient.value().abs() <= 4.0 * f64::EPSILON * size;
-            (!cancelled).then_some(Term { coefficient, ..first })
+            (!cancelled).then(|| Term {
+                coefficient,
+                ..first.clone()
+            })
         })
         .collect()
 }
@@ -256,7 +292,10 @@ impl fmt::Display for Shown<'_> {
         for term in &self.form.terms {
             let coefficient = term.coefficient();
             let sign = if coefficient < 0.0 { '-' } else { '+' };
-            write!(f, " {sign} {} {}", coefficient.abs(), (self.name)(term.source))?;
+            let systems = term.operator.systems.systems();
+            write!(f, " {sign} {} ", coefficient.abs())?;
+            systems.iter().try_for_each(|_| f.write_str("respond("))?;
+            write!(f, "{}", (self.name)(term.source))?;
             write!(f, "{}", "'".repeat(term.operator.derivatives as usize))?;
             let delay = term.operator.delay;
             match delay.total_cmp(&0.0) {
@@ -264,6 +303,9 @@ impl fmt::Display for Shown<'_> {
                 Ordering::Less => write!(f, "(t + {})", -delay)?,
                 Ordering::Equal => {}
             }
+            systems
+                .iter()
+                .try_for_each(|system| write!(f, ", through: {system})"))?;
         }
         Ok(())
     }
@@ -272,6 +314,7 @@ impl fmt::Display for Shown<'_> {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::covariance::response::{Average, Oscillator};
 
     fn x() -> LinearForm {
         LinearForm::source(2.0, SourceId(0))
@@ -325,5 +368,22 @@ mod tests {
     fn products_beyond_the_doubles_stay_infinite() {
         let huge = LinearForm::combination([(1e308, &LinearForm::constant(1e308))]);
         assert_eq!(huge.mean(), f64::INFINITY);
+    }
+    #[test]
+    fn systems_derivatives_and_delays_are_in_no_order() {
+        let deck = System::Oscillator(Oscillator::new(9.0, 0.05).unwrap());
+        let filter = System::Average(Average::new(3.0).unwrap());
+        let through = |form: &LinearForm, system: &System, factor: f64| form.through(system, factor).unwrap();
+        let one = through(&through(&x().derivative(), &filter, 1.0).delayed(0.5), &deck, 2.0).derivative();
+        let other = through(&through(&x(), &deck, 2.0).derivative().derivative(), &filter, 1.0).delayed(0.5);
+        assert_eq!(one, other);
+        assert_eq!(
+            show(&one),
+            "0 + 2 respond(respond(x''(t - 0.5), through: oscillator(frequency: 9 rad/s, damping: 0.05, gain: 1)), \
+             through: average(over: 3 s))"
+        );
+        assert_eq!(through(&x(), &deck, 2.0).mean(), 4.0);
+        let gone = LinearForm::combination([(1.0, &through(&x(), &deck, 2.0)), (-2.0, &through(&x(), &deck, 1.0))]);
+        assert!(gone.is_constant());
     }
 }

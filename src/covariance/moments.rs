@@ -9,10 +9,13 @@
 //! ```
 //!
 //! (Cramér and Leadbetter 1967, Stationary and Related Stochastic Processes, sec. 7.6 and 9.3). Even moments are
-//! derivatives of C at lag 0; lambda_1 has no such form and is integrated where it is not known.
+//! derivatives of C at lag 0; lambda_1 has no such form and is integrated where it is not known. What passes through systems
+//! is looked at over frequency (`covariance::frequency`).
 
+use super::existence;
 use super::first_moment;
-use super::form::{Exact, LinearForm, Operator, SourceId, Term};
+use super::form::{Exact, LinearForm, SourceId, Term};
+use super::frequency;
 use super::kernel::{self, Kernel, Smoothness, SpectralMoments};
 use super::source::{Law, Source};
 use nalgebra::{DMatrix, DVector};
@@ -199,6 +202,15 @@ impl<'s> MomentTable<'s> {
             let Some((_, shared)) = others.next_if(|(same, _)| *same == source) else {
                 continue;
             };
+            if self.by_frequency(source, terms) || self.by_frequency(source, shared) {
+                sum.add(frequency::covariance(
+                    &self.sources[source.0 as usize],
+                    terms,
+                    shared,
+                    lag,
+                ));
+                continue;
+            }
             for a in terms {
                 for b in shared {
                     let order = (a.operator.derivatives + b.operator.derivatives) as usize;
@@ -210,6 +222,12 @@ impl<'s> MomentTable<'s> {
             }
         }
         sum.moment()
+    }
+
+    /// Whether the terms are left to integrals over frequency: what goes through systems, or has no kernel.
+    fn by_frequency(&self, source: SourceId, terms: &[Term]) -> bool {
+        let through_systems = terms.iter().any(|term| !term.operator.systems.is_empty());
+        through_systems || self.kernel(source).is_none()
     }
 
     fn kernel(&self, source: SourceId) -> Option<&'s Kernel> {
@@ -229,6 +247,7 @@ impl<'s> MomentTable<'s> {
         if let [term] = terms
             && let Law::Spectrum(spectrum) = &self.sources[source.0 as usize].law
             && term.operator.derivatives > 0
+            && term.operator.systems.is_empty()
         {
             // Each derivative weighs the density with omega².
             let square = term.coefficient() * term.coefficient();
@@ -237,13 +256,14 @@ impl<'s> MomentTable<'s> {
         }
         if let [term] = terms
             && term.operator.derivatives == 0
+            && term.operator.systems.is_empty()
         {
             let moments = self.moments_of_source(source);
             let square = term.coefficient() * term.coefficient();
             let source = &self.sources[source.0 as usize];
             // Infinite although the derivative exists: beyond the range of doubles.
             let in_range = |moment: &kernel::Moment, derivatives: u32| match Moment::from(moment).times(square) {
-                Moment::Infinite if source.has_derivative(derivatives) => Moment::Unreached,
+                Moment::Infinite if existence::has_derivative(source, terms, derivatives) => Moment::Unreached,
                 moment => moment,
             };
             let [zeroth, first, second, fourth] = &moments.lambda;
@@ -254,13 +274,14 @@ impl<'s> MomentTable<'s> {
                 in_range(fourth, 2),
             ];
         }
-        let Some(kernel) = self.kernel(source) else {
-            return [Moment::Unknown; 4];
+        let kernel = match self.kernel(source) {
+            Some(kernel) if !self.by_frequency(source, terms) => kernel,
+            _ => return frequency::moments(&self.sources[source.0 as usize], terms),
         };
         let own_first = || Moment::from(&self.moments_of_source(source).lambda[1]);
         let [variance, curvature, fourth] = [0, 2, 4].map(|n| self.even(source, terms, n));
         let source = &self.sources[source.0 as usize];
-        let first = if terms.iter().all(|term| first_moment_exists(source, term.operator)) {
+        let first = if existence::tail(source, terms).allows(1) {
             first_moment::of_terms(kernel, terms, own_first(), variance, curvature)
         } else {
             Moment::Infinite
@@ -361,16 +382,6 @@ impl<'s> MomentTable<'s> {
         // The kernel is even: its odd derivatives change sign with the lag.
         let sign = if lag < 0.0 && order % 2 == 1 { -1.0 } else { 1.0 };
         found.unwrap_or(Moment::Infinite).times(sign)
-    }
-}
-
-/// Whether the source, differentiated so often, has a finite lambda_1: its density must fall faster than omega^-2.
-fn first_moment_exists(source: &Source, operator: Operator) -> bool {
-    match source.smoothness() {
-        Smoothness::Unlimited => true,
-        Smoothness::Exactly { limiting, .. } => limiting.exponent > 1.0 + 2.0 * f64::from(operator.derivatives),
-        Smoothness::AtLeast { derivatives } => operator.derivatives < *derivatives,
-        Smoothness::Unclear { .. } => false,
     }
 }
 

@@ -38,15 +38,20 @@ pub struct Source {
     /// What was taken for granted to get the description, for the reader of results.
     pub notes: Vec<String>,
     smoothness: Smoothness,
+    tail: Tail,
 }
 
 impl Source {
     /// A source with its kernel or its spectrum.
     pub fn new(name: String, law: impl Into<Law>, place: Span, notes: Vec<String>) -> Self {
         let law = law.into();
-        let smoothness = match &law {
-            Law::Kernel(kernel) => kernel.smoothness(),
-            Law::Spectrum(spectrum) => Smoothness::of_tail(spectrum.tail()),
+        let (smoothness, tail) = match &law {
+            Law::Kernel(kernel) => {
+                let smoothness = kernel.smoothness();
+                let tail = Tail::from(&smoothness);
+                (smoothness, tail)
+            }
+            Law::Spectrum(spectrum) => (Smoothness::of_tail(spectrum.tail()), spectrum.tail()),
         };
         Self {
             name,
@@ -54,7 +59,13 @@ impl Source {
             place,
             notes,
             smoothness,
+            tail,
         }
+    }
+
+    /// How its density falls at high frequency.
+    pub fn tail(&self) -> Tail {
+        self.tail
     }
 
     /// Its covariance function, where it is described by one.
@@ -70,18 +81,6 @@ impl Source {
         match &self.law {
             Law::Kernel(kernel) => kernel,
             Law::Spectrum(spectrum) => spectrum,
-        }
-    }
-
-    /// Whether it has a mean-square derivative of an order; of order 0, whether its variance is finite.
-    pub fn has_derivative(&self, order: u32) -> bool {
-        if let Law::Spectrum(spectrum) = &self.law {
-            return 2.0 * f64::from(order) + 1.0 < spectrum.tail().exponent();
-        }
-        match self.smoothness {
-            Smoothness::Unlimited => true,
-            Smoothness::Exactly { derivatives, .. } | Smoothness::AtLeast { derivatives } => order <= derivatives,
-            Smoothness::Unclear { .. } => order == 0,
         }
     }
 

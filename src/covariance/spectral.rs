@@ -50,6 +50,22 @@ impl Tail {
         }
     }
 
+    /// Whether the moment of an order is finite.
+    pub fn allows(self, order: u32) -> bool {
+        f64::from(order) + 1.0 < self.exponent()
+    }
+
+    /// With a power of omega more in the denominator.
+    #[must_use]
+    pub fn steeper(self, by: f64) -> Self {
+        match self {
+            _ if by == f64::INFINITY => Self::Faster,
+            Self::Power(exponent) => Self::Power(exponent + by),
+            Self::AtLeast(exponent) => Self::AtLeast(exponent + by),
+            Self::Faster => Self::Faster,
+        }
+    }
+
     /// The slower of two.
     #[must_use]
     pub fn or(self, other: Self) -> Self {
@@ -57,6 +73,22 @@ impl Tail {
             other
         } else {
             self
+        }
+    }
+}
+
+/// With n derivatives a density falls faster than omega^-(2 n + 1), by nobody knows how much.
+const LEAST_MARGIN: f64 = 1e-9;
+
+impl From<&Smoothness> for Tail {
+    /// A first rough term tau^e at lag 0 is a density that falls as omega^-(e + 1) (Stein 1999, Interpolation of Spatial
+    /// Data, sec. 2.8).
+    fn from(smoothness: &Smoothness) -> Self {
+        match smoothness {
+            Smoothness::Unlimited => Self::Faster,
+            Smoothness::Exactly { limiting, .. } => Self::Power(limiting.exponent + 1.0),
+            Smoothness::AtLeast { derivatives } => Self::AtLeast(2.0 * f64::from(*derivatives) + 1.0 + LEAST_MARGIN),
+            Smoothness::Unclear { .. } => Self::AtLeast(1.0 + LEAST_MARGIN),
         }
     }
 }
@@ -94,15 +126,8 @@ impl SpectralDensity for Kernel {
         }
     }
 
-    /// A first rough term tau^e at lag 0 is a density that falls as omega^-(e + 1) (Stein 1999, Interpolation of Spatial
-    /// Data, sec. 2.8).
     fn tail(&self) -> Tail {
-        match self.smoothness() {
-            Smoothness::Unlimited => Tail::Faster,
-            Smoothness::Exactly { limiting, .. } => Tail::Power(limiting.exponent + 1.0),
-            Smoothness::AtLeast { derivatives } => Tail::AtLeast(2.0 * f64::from(derivatives) + 1.0),
-            Smoothness::Unclear { .. } => Tail::AtLeast(1.0),
-        }
+        Tail::from(&self.smoothness())
     }
 
     /// Kernels are finite at frequency 0 but for those that fade too slowly, whose singularity is integrable.
@@ -128,6 +153,7 @@ impl SpectralDensity for Kernel {
                 let parts: Option<Vec<Vec<Rational>>> = terms.iter().map(SpectralDensity::rational).collect();
                 Some(parts?.concat())
             }
+            Self::Family(family) => family.rational(),
             _ => None,
         }
     }

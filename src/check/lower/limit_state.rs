@@ -5,6 +5,7 @@ use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::{LimitQuantity, LimitState, Requirement, Time};
 use crate::check::names::{self, ItemId, choice};
 use crate::check::value::{Number, Value, Varying};
+use crate::covariance::existence;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{
     Condition, ConditionKind, Expression, ExpressionKind, LimitLine, LimitLineKind, RequireComparison, Word,
@@ -390,18 +391,14 @@ impl Lowering<'_, '_, '_> {
     fn crossable(&mut self, varying: &Varying, place: Span, name: &Word) -> bool {
         let rough: Vec<_> = varying
             .form
-            .terms()
-            .iter()
-            .filter(|term| {
-                let source = self.model.sources.get(term.source.0 as usize);
-                source.is_some_and(|source| !source.has_derivative(term.operator.derivatives + 1))
+            .by_source()
+            .filter(|(id, terms)| {
+                let source = self.model.sources.get(id.0 as usize);
+                source.is_some_and(|source| !existence::has_derivative(source, terms, 1))
             })
-            .map(|term| term.source)
+            .map(|(id, _)| id)
             .collect();
-        for (index, source) in rough.iter().enumerate() {
-            if rough[..index].contains(source) {
-                continue;
-            }
+        for source in &rough {
             let consequence = format!("makes crossings in `{}` infinitely frequent", name.text);
             let finding = self.not_differentiable(place, *source, &consequence);
             self.report(finding);

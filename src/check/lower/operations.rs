@@ -3,6 +3,7 @@
 use super::not_yet::Later;
 use super::{Lowering, Scope};
 use crate::check::value::{Number, Value, Varying};
+use crate::covariance::existence;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Expression};
 use crate::units::Dimension;
@@ -66,12 +67,12 @@ impl Lowering<'_, '_, '_> {
             self.report(Diagnostic::new(Code::ValueRange, call.function.span, message));
             return Value::Fault;
         }
-        for term in form.terms() {
-            let Some(source) = self.model.sources.get(term.source.0 as usize) else {
+        for (id, terms) in form.by_source() {
+            let Some(source) = self.model.sources.get(id.0 as usize) else {
                 continue;
             };
-            if !source.has_derivative(term.operator.derivatives) {
-                let finding = self.not_differentiable(subject.span, term.source, "has no derivative to use here");
+            if !existence::has_derivative(source, terms, 0) {
+                let finding = self.not_differentiable(subject.span, id, "has no derivative to use here");
                 self.report(finding);
                 return Value::Fault;
             }

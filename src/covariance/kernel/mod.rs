@@ -16,6 +16,7 @@ mod constant;
 mod family;
 mod length;
 mod moments;
+mod rational;
 mod smoothness;
 mod spectrum;
 mod spline;

@@ -8,9 +8,11 @@
 mod infinite;
 mod oscillating;
 mod rule;
+mod several;
 
 pub use infinite::to_infinity;
 pub use oscillating::oscillating_tail;
+pub use several::several_between;
 
 use rule::{POINTS, Panel};
 use std::cmp::Ordering;
@@ -163,10 +165,7 @@ fn adapt(
             return (Integral::not_finite(evaluations), f64::INFINITY);
         };
         let (value, error) = (left.value + right.value, left.error + right.error);
-        // QUADPACK's sign of noise: the halves agree with the whole, and yet the error has not fallen.
-        let noise = (panel.value - value).abs() <= 1e-5 * value.abs() && error >= 0.99 * panel.error;
-        left.stalled = panel.stalled + u8::from(noise);
-        right.stalled = left.stalled;
+        panel.halved(&mut left, &mut right);
         total.value += value - panel.value;
         total.error += error - panel.error;
         panels.push(Worst(left));

@@ -57,6 +57,17 @@ pub(super) struct Panel {
 }
 
 impl Panel {
+    /// Nothing looked at.
+    pub(super) const EMPTY: Self = Self {
+        from: 0.0,
+        to: 0.0,
+        value: 0.0,
+        error: 0.0,
+        rounding: 0.0,
+        magnitude: 0.0,
+        stalled: 0,
+    };
+
     /// Applies the rule; `None` when the integrand is not finite at one of its points.
     ///
     /// The error is |Kronrod - Gauss| brought to scale by the integral of |f - mean|, at least fifty rounding units
@@ -64,25 +75,27 @@ impl Panel {
     /// this we add what the rounding of the abscissae does to the values, one unit times the integrand's variation:
     /// it rules narrow peaks far from zero.
     pub(super) fn new(f: &mut impl FnMut(f64) -> f64, from: f64, to: f64) -> Option<Self> {
-        let centre = 0.5 * from + 0.5 * to;
+        Self::from_values(&abscissae(from, to).map(f), from, to)
+    }
+
+    /// The same from the values at [`abscissae`].
+    pub(super) fn from_values(values: &[f64; POINTS], from: f64, to: f64) -> Option<Self> {
         let half = 0.5 * to - 0.5 * from;
-        let at_centre = f(centre);
-        let mut values = [(0.0, 0.0); NODES.len()];
+        let [at_centre, pairs @ ..] = values;
+        let (pairs, _) = pairs.as_chunks::<2>();
         let (mut kronrod, mut gauss, mut magnitude) = (MIDDLE * at_centre, 0.0, MIDDLE * at_centre.abs());
-        let (mut variation, mut inner) = (0.0, (at_centre, at_centre));
-        for ((node, weight, gauss_weight), pair) in NODES.iter().zip(&mut values) {
-            let (below, above) = (f(centre - half * node), f(centre + half * node));
+        let (mut variation, mut inner) = (0.0, (*at_centre, *at_centre));
+        for ((_, weight, gauss_weight), &[below, above]) in NODES.iter().zip(pairs) {
             kronrod += weight * (below + above);
             gauss += gauss_weight * (below + above);
             magnitude += weight * (below.abs() + above.abs());
             variation += (below - inner.0).abs() + (above - inner.1).abs();
             inner = (below, above);
-            *pair = inner;
         }
         let mean = 0.5 * kronrod;
-        let spread = NODES.iter().zip(&values).fold(
+        let spread = NODES.iter().zip(pairs).fold(
             MIDDLE * (at_centre - mean).abs(),
-            |sum, ((_, weight, _), (below, above))| sum + weight * ((below - mean).abs() + (above - mean).abs()),
+            |sum, ((_, weight, _), [below, above])| sum + weight * ((below - mean).abs() + (above - mean).abs()),
         );
         let difference = (kronrod - gauss).abs();
         let truncation = if spread > 0.0 {
@@ -104,6 +117,15 @@ impl Panel {
         (panel.value.is_finite() && panel.error.is_finite() && panel.magnitude.is_finite()).then_some(panel)
     }
 
+    /// Notes in the halves of a bisection whether it has served: QUADPACK's sign of noise is that the halves agree with
+    /// the whole, and yet the error has not fallen.
+    pub(super) fn halved(&self, left: &mut Self, right: &mut Self) {
+        let (value, error) = (left.value + right.value, left.error + right.error);
+        let noise = (self.value - value).abs() <= 1e-5 * value.abs() && error >= 0.99 * self.error;
+        left.stalled = self.stalled + u8::from(noise);
+        right.stalled = left.stalled;
+    }
+
     /// The midpoint, if bisection can still help: not once the error is all rounding, or has failed to fall too
     /// often, or when no room is left between the ends.
     pub(super) fn midpoint(&self) -> Option<f64> {
@@ -114,6 +136,18 @@ impl Panel {
         (room && self.error > self.rounding && self.stalled < PATIENCE && middle > self.from && middle < self.to)
             .then_some(middle)
     }
+}
+
+/// The points at which the rule wants the integrand between two ends: the middle, then pairs from the inside out.
+pub(super) fn abscissae(from: f64, to: f64) -> [f64; POINTS] {
+    let centre = 0.5 * from + 0.5 * to;
+    let half = 0.5 * to - 0.5 * from;
+    let mut points = [centre; POINTS];
+    let (pairs, _) = points[1..].as_chunks_mut::<2>();
+    for ((node, _, _), pair) in NODES.iter().zip(pairs) {
+        *pair = [centre - half * node, centre + half * node];
+    }
+    points
 }
 
 #[cfg(test)]
