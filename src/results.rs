@@ -7,6 +7,7 @@ mod evaluation;
 mod extremes;
 mod findings;
 mod number;
+mod responses;
 
 pub use evaluation::evaluate;
 pub use number::Real;

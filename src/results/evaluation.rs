@@ -3,6 +3,7 @@
 use super::extremes;
 use super::findings;
 use super::number::Real;
+use super::responses;
 use super::{
     Assumption, ExpectationResult, LimitStateResult, ModelIdentity, Moments, ParameterValue, RequirementResult,
     Results, Shown, TableRow, Tool, Warning,
@@ -378,6 +379,7 @@ impl<'m> Judged<'m> {
                 ),
             });
         }
+        assumptions.extend(responses::assumptions(&self.limit_state.margin));
         let reduced = self.reduced_barrier();
         if reduced < LOW_BARRIER {
             let time = self.limit_state.reference_period.seconds;

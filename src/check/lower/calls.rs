@@ -172,7 +172,7 @@ impl Lowering<'_, '_, '_> {
                             format!("`{name}` of a process is not Gaussian"),
                         )
                         .here("this varies in time")
-                        .help("processes are only added, scaled, differentiated and delayed; `abs(m) > a` may stand in `failure when`"),
+                        .help("processes are only added, scaled, differentiated, delayed and passed through linear systems; `abs(m) > a` may stand in `failure when`"),
                     );
                 }
                 Value::Kernel(_) => {

@@ -87,7 +87,7 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
             }
             None => {}
         }
-        if !self.within_tables(&varying, name) {
+        if !(self.within_tables(&varying, name) && self.within_responses(&varying, name)) {
             return Value::Fault;
         }
         let index = self.model.varying.len();
@@ -109,6 +109,10 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
     pub(super) fn within_tables(&mut self, varying: &Varying, name: &Word) -> bool {
         let mut sound = true;
         for (source, terms) in varying.form.by_source() {
+            // What passes through systems is looked at over frequency.
+            if terms.iter().any(|term| !term.operator.systems.is_empty()) {
+                continue;
+            }
             let delays = terms.iter().map(|term| term.operator.delay);
             let (first, last) = delays.fold((f64::INFINITY, f64::NEG_INFINITY), |(a, b), d| (a.min(d), b.max(d)));
             let source = &self.model.sources[source.0 as usize];

@@ -90,7 +90,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// The values of named numbers; `Err` where one is at fault, `Ok(None)` where one is not known yet.
-    fn numbers<const N: usize>(
+    pub(super) fn numbers<const N: usize>(
         &mut self,
         arguments: &Arguments<'_>,
         scope: Scope<'_>,
@@ -126,13 +126,13 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    /// The kernel, or a finding at the argument that no such kernel can have.
-    fn valid(
+    /// The kernel or the system, or a finding at the argument that none can have.
+    pub(super) fn valid<T>(
         &mut self,
         span: Span,
         arguments: &Arguments<'_>,
-        kernel: Result<Kernel, InvalidParameter>,
-    ) -> Option<Kernel> {
+        kernel: Result<T, InvalidParameter>,
+    ) -> Option<T> {
         match kernel {
             Ok(kernel) => Some(kernel),
             Err(fault) => {
@@ -141,7 +141,7 @@ impl Lowering<'_, '_, '_> {
                     .map_or(span, |expression| expression.span);
                 let message = format!("`{}` of `{}` must be {}", fault.parameter, fault.family, fault.demand);
                 let unit = match fault.parameter {
-                    "length" => " s",
+                    "length" | "time_constant" | "over" => " s",
                     "frequency" | "lower" | "upper" => " rad/s",
                     _ => "",
                 };
@@ -239,7 +239,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// What holds outside of a table: there is no default.
-    fn beyond(&mut self, call: &Call, arguments: &Arguments<'_>) -> Option<Beyond> {
+    pub(super) fn beyond(&mut self, call: &Call, arguments: &Arguments<'_>) -> Option<Beyond> {
         let given = arguments.get("beyond");
         let word = match given.map(|expression| &expression.kind) {
             Some(ExpressionKind::Name(path)) => super::word_text(path),

@@ -18,7 +18,9 @@ mod parameter;
 mod passage;
 mod power;
 mod process;
+mod response_table;
 mod slash_unit;
+mod system;
 mod table;
 mod unit;
 
@@ -107,6 +109,7 @@ pub struct Lowering<'p, 'l, 'f> {
     values: Vec<Option<Value>>,
     kernels: HashMap<ItemId, KernelDefinition>,
     tables: HashMap<std::path::PathBuf, Option<Rc<table::Table>>>,
+    responses: HashMap<std::path::PathBuf, Option<Rc<response_table::ResponseTable>>>,
     terms: usize,
     /// Pairs of terms over one source, in all forms together.
     pairs: usize,
@@ -131,6 +134,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             values: vec![None; names.items().count()],
             kernels: HashMap::new(),
             tables: HashMap::new(),
+            responses: HashMap::new(),
             terms: 0,
             pairs: 0,
             expansion_depth: 0,
@@ -414,8 +418,12 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
         unit: Option<Rc<Unit>>,
     ) -> Value {
         self.terms = self.terms.saturating_add(form.terms().len());
-        let several = form.by_source().filter(|(_, terms)| terms.len() > 1);
-        self.pairs = several.fold(self.pairs, |pairs, (_, terms)| pairs.saturating_add(terms.len().pow(2)));
+        for (_, terms) in form.by_source() {
+            let instants = system::instants(terms);
+            if instants > 1 {
+                self.pairs = self.pairs.saturating_add(instants.saturating_mul(instants));
+            }
+        }
         Value::Form(Varying {
             form: Rc::new(form),
             dimension,

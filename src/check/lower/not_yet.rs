@@ -14,8 +14,6 @@ pub(super) enum Later {
     Time,
     Climates,
     Spectra,
-    Averages,
-    Responses,
     Systems,
     Hazards,
 }
@@ -30,8 +28,6 @@ impl Later {
             Self::Time => "quantities that change with the time `t`",
             Self::Climates => "climates",
             Self::Spectra => "spectra",
-            Self::Averages => "averages of processes",
-            Self::Responses => "responses of systems",
             Self::Systems => "systems of several conditions",
             Self::Hazards => "annual and point-in-time quantities",
         }
@@ -47,8 +43,6 @@ impl Later {
             Self::Profiles | Self::Time => "use a `constant` with the least favourable value of the service life",
             Self::Climates => "use a `parameter` for the state, and evaluate the states one by one",
             Self::Spectra => "describe the process by its `correlation` or `autocovariance`",
-            Self::Averages => "describe the average by a process of its own, with a smoother kernel",
-            Self::Responses => "describe the response by a process of its own, with the kernel `oscillator(...)`",
             Self::Systems => {
                 "make a limit state of each condition: their failure probabilities add up to an upper bound of `any`"
             }

@@ -1,6 +1,5 @@
 //! Linear operations on processes.
 
-use super::not_yet::Later;
 use super::{Lowering, Scope};
 use crate::check::value::{Number, Value, Varying};
 use crate::covariance::existence;
@@ -20,19 +19,13 @@ impl Lowering<'_, '_, '_> {
         match name {
             "derivative" => self.derivative(call, scope),
             "delay" => self.delay(call, scope),
-            "average" => {
-                self.not_yet(call.function.span, Later::Averages);
-                Value::Fault
-            }
-            _ => {
-                self.not_yet(call.function.span, Later::Responses);
-                Value::Fault
-            }
+            "average" => self.average(call, scope),
+            _ => self.respond(call, scope),
         }
     }
 
     /// The process that an operation works on.
-    fn subject(&mut self, subject: &Expression, name: &str, scope: Scope<'_>) -> Option<Varying> {
+    pub(super) fn subject(&mut self, subject: &Expression, name: &str, scope: Scope<'_>) -> Option<Varying> {
         match self.value(subject, scope) {
             Value::Form(varying) => Some(varying),
             Value::Fault => None,

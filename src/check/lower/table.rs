@@ -5,9 +5,10 @@ use crate::check::names::{choice, near};
 use crate::check::parts::unreadable;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::parse_expression;
-use crate::language::tree::{Expression, ExpressionKind};
+use crate::language::tree::{Expression, ExpressionKind, Text};
 use crate::source::{FileId, Span, beside};
 use crate::units::{self, Dimension, Unit};
+use std::path::{Path, PathBuf};
 use std::rc::Rc;
 
 /// Rows of one file; more are refused.
@@ -24,50 +25,67 @@ pub(super) struct Table {
     pub rows: Vec<(f64, f64)>,
 }
 
-/// A column that a table must have.
-struct Column {
-    name: &'static str,
-    dimension: Dimension,
+/// A column that a table must have; of any dimension where none is asked for.
+pub(super) struct Column {
+    pub name: &'static str,
+    pub dimension: Option<Dimension>,
 }
+
+/// The columns of a file in SI units, each number with its place, and their dimensions.
+type Columns<const N: usize> = ([Vec<(f64, Span)>; N], [Dimension; N]);
 
 const KERNEL_COLUMNS: [Column; 2] = [
     Column {
         name: "lag",
-        dimension: Dimension::TIME,
+        dimension: Some(Dimension::TIME),
     },
     Column {
         name: "correlation",
-        dimension: Dimension::PLAIN,
+        dimension: Some(Dimension::PLAIN),
     },
 ];
 
 impl Lowering<'_, '_, '_> {
     /// The table of a `tabulated("file.csv", ...)` kernel. Read once; its faults are reported once.
     pub(super) fn kernel_table(&mut self, file: &Expression) -> Option<Rc<Table>> {
-        let ExpressionKind::String(text) = &file.kind else {
-            let help = "write the name in quotes: `tabulated(\"file.csv\", beyond: zero)`";
-            self.wrong_kind(file.span, "no text", "the name of a file", help);
-            return None;
-        };
-        let path = beside(&self.library.files().get(file.span.file).path, &text.value);
+        let (text, path) = self.file_named(file)?;
         let identity = self.library.reader().identity(&path);
         if let Some(known) = self.tables.get(&identity) {
             return known.clone();
         }
-        let table = match self.library.data(&path) {
-            Ok(id) => self.read_kernel_table(id, &text.value, text.span),
-            Err(why) => {
-                self.report(unreadable(text.span, &path, &why));
-                None
-            }
-        };
+        let file = self.data(&path, text.span);
+        let table = file.and_then(|file| self.read_kernel_table(file, &text.value, text.span));
         let table = table.map(Rc::new);
         self.tables.insert(identity, table.clone());
         table
     }
 
+    /// The text that names a file, and the path that it means.
+    pub(super) fn file_named<'t>(&mut self, file: &'t Expression) -> Option<(&'t Text, PathBuf)> {
+        let ExpressionKind::String(text) = &file.kind else {
+            let help = "write the name in quotes: `tabulated(\"file.csv\", beyond: zero)`";
+            self.wrong_kind(file.span, "no text", "the name of a file", help);
+            return None;
+        };
+        Some((
+            text,
+            beside(&self.library.files().get(file.span.file).path, &text.value),
+        ))
+    }
+
+    /// A data file; that it cannot be read is reported.
+    pub(super) fn data(&mut self, path: &Path, named: Span) -> Option<FileId> {
+        match self.library.data(path) {
+            Ok(id) => Some(id),
+            Err(why) => {
+                self.report(unreadable(named, path, &why));
+                None
+            }
+        }
+    }
+
     fn read_kernel_table(&mut self, file: FileId, name: &str, named: Span) -> Option<Table> {
-        let [lags, correlations] = self.columns(file, named, &KERNEL_COLUMNS)?;
+        let ([lags, correlations], _) = self.columns(file, named, &KERNEL_COLUMNS)?;
         let rows: Vec<(f64, f64, Span)> = lags
             .into_iter()
             .zip(correlations)
@@ -107,17 +125,17 @@ impl Lowering<'_, '_, '_> {
         })
     }
 
-    fn table_fault(&mut self, place: Span, named: Span, message: &str) {
+    pub(super) fn table_fault(&mut self, place: Span, named: Span, message: &str) {
         self.report(Diagnostic::new(Code::TableContent, place, message).label(named, "the file is named here"));
     }
 
-    /// The columns of a file in SI units, each number with its place.
-    fn columns<const N: usize>(
+    /// The columns of a file. Its faults are reported.
+    pub(super) fn columns<const N: usize>(
         &mut self,
         file: FileId,
         named: Span,
         wanted: &[Column; N],
-    ) -> Option<[Vec<(f64, Span)>; N]> {
+    ) -> Option<Columns<N>> {
         let before = self.diagnostics.len();
         let text = self.library.files().get(file).text.clone();
         let mut reader = csv::ReaderBuilder::new()
@@ -182,7 +200,9 @@ impl Lowering<'_, '_, '_> {
                 break;
             }
         }
-        (self.diagnostics.len() == before).then_some(columns)
+        let dimension = |found: &Option<(usize, Rc<Unit>)>| found.as_ref().map(|(_, unit)| unit.dimension());
+        let dimensions = std::array::from_fn(|index| found.get(index).and_then(dimension).unwrap_or(Dimension::PLAIN));
+        (self.diagnostics.len() == before).then_some((columns, dimensions))
     }
 
     /// Where a column stands, and its unit; its absence and a wrong unit are reported.
@@ -231,20 +251,24 @@ impl Lowering<'_, '_, '_> {
                 }
             }
         };
-        if unit.dimension() != wanted.dimension {
+        if let Some(dimension) = wanted.dimension
+            && dimension != unit.dimension()
+        {
             let message = format!(
                 "the column `{}` must be {}, not {}",
                 wanted.name,
-                wanted.dimension.describe(),
+                dimension.describe(),
                 unit.dimension().describe()
             );
-            let help = format!("write its unit in the header: `{} [s]`", wanted.name);
-            let finding = Diagnostic::new(Code::UnitMismatch, head, message).label(named, "the file is named here");
-            self.report(if wanted.dimension == Dimension::TIME {
-                finding.help(help)
-            } else {
-                finding
-            });
+            let mut finding = Diagnostic::new(Code::UnitMismatch, head, message).label(named, "the file is named here");
+            let examples = [
+                (Dimension::TIME, "s"),
+                (Dimension::ANGULAR_FREQUENCY, "Hz"),
+                (Dimension::ANGLE, "deg"),
+            ];
+            let example = examples.iter().find(|(known, _)| *known == dimension);
+            finding.help = example.map(|(_, unit)| format!("write its unit in the header: `{} [{unit}]`", wanted.name));
+            self.report(finding);
             return None;
         }
         Some((index, Rc::new(unit)))
