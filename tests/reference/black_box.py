@@ -20,7 +20,7 @@ import numpy as np
 from scipy.integrate import quad
 from scipy.interpolate import CubicSpline
 from scipy.optimize import brentq
-from scipy.special import log_ndtr
+from scipy.special import log_ndtr, roots_legendre
 from sklearn.gaussian_process import kernels as sk
 
 mp.mp.dps = 30
@@ -684,12 +684,175 @@ def tables(program, rng):
         first.relative(reported[1], exact, place)
 
 
+# ------------------------------------------------------------------------------------ responses by SciPy's quadrature
+
+
+def random_source(rng):
+    """A kernel as text, its one-sided density over omega, the power with which that falls, and frequencies of its shape."""
+    kind = rng.choice(["se", "exponential", "matern", "matern", "cosine", "oscillator"])
+    length = math.exp(rng.uniform(-1.5, 1.5))
+    if kind == "se":
+        density = lambda w: math.sqrt(2 / math.pi) * length * np.exp(-0.5 * (w * length) ** 2)
+        return f"squared_exponential(length: {number(length)} s)", density, math.inf, [1 / length, 8 / length]
+    if kind in ("exponential", "matern"):
+        nu = 0.5 if kind == "exponential" else rng.choice([1.5, 2.5, round(rng.uniform(0.6, 3), 2)])
+        a = math.sqrt(2 * nu) / length if kind == "matern" else 1 / length
+        factor = 2 / math.sqrt(math.pi) * math.gamma(nu + 0.5) / math.gamma(nu)
+        density = lambda w: factor / a * (1 + (w / a) ** 2) ** -(nu + 0.5)
+        text = f"matern(smoothness: {number(nu)}, length: {number(length)} s)" if kind == "matern" else f"exponential(length: {number(length)} s)"
+        return text, density, 2 * nu + 1, [a, 8 * a]
+    w0 = math.exp(rng.uniform(-1, 2))
+    if kind == "cosine":
+        a = 1 / length
+        density = lambda w: a / math.pi * (1 / (a * a + (w - w0) ** 2) + 1 / (a * a + (w + w0) ** 2))
+        text = f"damped_cosine(length: {number(length)} s, frequency: {number(w0)} rad/s)"
+        return text, density, 2, graded(w0, a)
+    z = math.exp(rng.uniform(-6, -0.3))
+    density = lambda w: 4 * z * w0**3 / math.pi / ((w0**2 - w**2) ** 2 + (2 * z * w0 * w) ** 2)
+    return f"oscillator(frequency: {number(w0)} rad/s, damping: {number(z)})", density, 4, graded(w0, z * w0)
+
+
+def graded(peak, width):
+    return [x for k in range(7) for x in (peak - width * 4**k, peak + width * 4**k) if x > 0] + [peak, 4 * peak]
+
+
+class Response:
+    """A random chain of operations as text, its transfer function, and the same by instants: averages taken apart."""
+
+    def __init__(self, rng, exponent):
+        self.text, self.exponent, self.frequencies = "x", exponent, []
+        self.plain, self.instants = [], {0.0: 1.0}
+        self.power, self.averages = 0, []
+        for _ in range(rng.randint(1, 4)):
+            self.operate(rng, rng.choice(["oscillator", "oscillator", "first", "average", "delay", "derivative"]))
+
+    def operate(self, rng, kind):
+        if kind == "oscillator":
+            w0, z = math.exp(rng.uniform(-1, 2)), math.exp(rng.uniform(-6.9, 0.4))
+            system = f"oscillator(frequency: {number(w0)} rad/s, damping: {number(z)}, gain: 1)"
+            self.plain.append(lambda w: w0**2 / (w0**2 - w**2 + 2j * z * w0 * w))
+            self.frequencies += graded(w0, z * w0)
+            self.text, self.exponent = f"respond({self.text}, through: {system})", self.exponent + 4
+        elif kind == "first":
+            time = math.exp(rng.uniform(-2, 2))
+            self.plain.append(lambda w: 1 / (1 + 1j * w * time))
+            self.frequencies += [1 / time, 8 / time]
+            self.text, self.exponent = f"respond({self.text}, through: first_order(time_constant: {number(time)} s))", self.exponent + 2
+        elif kind == "average" and len(self.averages) < 2:
+            over = math.exp(rng.uniform(-1.5, 1.5))
+            self.averages.append(over)
+            self.frequencies += [1 / over, 8 / over]
+            self.text, self.exponent = f"average({self.text}, over: {number(over)} s)", self.exponent + 2
+        elif kind == "delay":
+            by = rng.uniform(-2, 2)
+            self.instants = {at + by: weight for at, weight in self.instants.items()}
+            self.text = f"delay({self.text}, by: {number(by)} s)"
+        elif kind == "derivative" and self.exponent > 3 and self.power < 3:
+            self.power += 1
+            self.text, self.exponent = f"derivative({self.text})", self.exponent - 2
+
+    def rational(self, w):
+        value = (1j * w) ** self.power
+        for system in self.plain:
+            value = value * system(w)
+        return value
+
+    def whole(self, w):
+        value = self.rational(w)
+        for over in self.averages:
+            value = value * np.exp(-0.5j * w * over) * np.sinc(w * over / (2 * math.pi))
+        return value * sum(weight * np.exp(-1j * w * at) for at, weight in self.instants.items())
+
+    def by_instant(self, w):
+        """What comes at each instant, without the wave exp(-i w t) that its lateness makes."""
+        value, instants = self.rational(w), dict(self.instants)
+        for over in self.averages:
+            value = value / (1j * w * over)
+            split = {}
+            for at, weight in instants.items():
+                split[at] = split.get(at, 0) + weight
+                split[at + over] = split.get(at + over, 0) - weight
+            instants = split
+        return {round(at, 12): weight * value for at, weight in instants.items()}
+
+
+def integral(function, breakpoints):
+    """SciPy's Gauss-Legendre rule of 24 points on every panel."""
+    nodes, weights = roots_legendre(24)
+    breakpoints = np.asarray(breakpoints)
+    half = 0.5 * np.diff(breakpoints)
+    middle = breakpoints[:-1] + half
+    values = function((middle[:, None] + half[:, None] * nodes).ravel())
+    return values.reshape(values.shape[:-1] + (len(half), len(nodes))) @ weights @ half
+
+
+def panels(frequencies, start, end, widest):
+    steps = [w for w in frequencies if start < w < end]
+    steps += list(np.geomspace(max(start, 1e-4 * end), end, 60))
+    steps = [start] + sorted(set(steps))
+    cut = [np.linspace(a, b, max(2, math.ceil((b - a) / widest) + 1))[:-1] for a, b in zip(steps, steps[1:])]
+    return np.concatenate(cut + [[end]])
+
+
+def systems(program, rng):
+    families = [Family(f"responses: lambda_{n}", 1e-7) for n in (0, 1, 2, 4)]
+    for batch in range(25):
+        lines, cases = [], []
+        for case in range(12):
+            text, density, exponent, frequencies = random_source(rng)
+            parts = [(1.0, Response(rng, exponent))]
+            parts += [(rng.uniform(-2, 2), Response(rng, exponent)) for _ in range(rng.randint(0, 2))]
+            unit = lambda part: f" s^{part.power}" if part.power else ""
+            margin = " + ".join(f"({number(c)}{unit(part)}) * {part.text}" for c, part in parts).replace("(x", f"(x{case}")
+            margin = margin.replace("* x", f"* x{case}")
+            lines.append(f"process x{case} = gaussian(standard_deviation: 1, correlation: {text})\nmargin m{case} = {margin}")
+            cases.append((density, min(part.exponent for _, part in parts), frequencies, parts, lines[-1]))
+        found = program.named("\n".join(lines))
+        for case, (density, exponent, frequencies, parts, place) in enumerate(cases):
+            reported = moments_of(found[f"m{case}"])
+            frequencies = frequencies + [w for _, part in parts for w in part.frequencies]
+            for family, value, exact in zip(families, reported, exact_moments(density, exponent, frequencies, parts)):
+                family.relative(value, mp.mpf(exact), f"{value} not {exact} in\n{place}")
+
+
+def exact_moments(density, exponent, frequencies, parts):
+    """lambda_0, lambda_1, lambda_2 and lambda_4; what waves add is left out where it no longer matters."""
+    orders = np.array([0, 1, 2, 4])
+    finite = orders + 1 < exponent
+    top = max(frequencies)
+
+    def head(w):
+        amplitude = sum(c * part.whole(w) for c, part in parts)
+        return np.array([w**n for n in orders[finite]]) * (density(w) * abs(amplitude) ** 2)
+
+    def tail(x):
+        w = np.exp(x)
+        instants = {}
+        for c, part in parts:
+            for at, value in part.by_instant(w).items():
+                instants[at] = instants.get(at, 0) + c * value
+        square = sum(abs(value) ** 2 for value in instants.values())
+        return np.array([w ** (n + 1) for n in orders[finite]]) * (density(w) * square)
+
+    latest = [at for _, part in parts for at in part.by_instant(np.array([1.0]))]
+    span = max(latest) - min(latest)
+    end = top * 400
+    while span * end > 2e5:
+        end /= 2
+    total = integral(head, panels(frequencies, 0.0, end, 2 * math.pi / span if span else end))
+    far = max(60, min(600, 25 / (exponent - orders[finite].max() - 1))) if math.isfinite(exponent) else 20
+    total = total + integral(tail, np.linspace(math.log(end), math.log(end) + far, 600))
+    exact = np.full(4, np.inf)
+    exact[finite] = total
+    return exact
+
+
 def main():
     binary = sys.argv[1]
     seed = int(sys.argv[2]) if len(sys.argv) > 2 else 20
     with tempfile.TemporaryDirectory() as folder:
         program = Program(binary, folder)
-        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables):
+        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables, systems):
             checks(program, random.Random(f"{seed} {checks.__name__}"))
     if not all([family.report() for family in Family.all]):
         sys.exit(1)

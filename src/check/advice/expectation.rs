@@ -2,6 +2,7 @@
 
 use super::Finished;
 use crate::check::model::{Expectation, ProcessQuantity, Subject, Tolerance};
+use crate::covariance::existence;
 use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::units::show_number;
@@ -27,9 +28,9 @@ impl Finished<'_> {
             ProcessQuantity::Irregularity => (2, "lambda_4 is infinite, so it does not exist"),
         };
         let named = self.lowered.model.varying.get(index)?;
-        let rough = named.form.terms().iter().find_map(|term| {
-            let source: &Source = self.lowered.model.sources.get(term.source.0 as usize)?;
-            (!source.has_derivative(term.operator.derivatives + order)).then_some(source)
+        let rough = named.form.by_source().find_map(|(id, terms)| {
+            let source: &Source = self.lowered.model.sources.get(id.0 as usize)?;
+            (!existence::has_derivative(source, terms, order)).then_some(source)
         })?;
         let message = format!("this expectation about `{}` can never hold: {consequence}", named.name);
         Some(
