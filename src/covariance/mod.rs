@@ -1,5 +1,6 @@
 //! The intermediate representation: sources, operators, linear forms, kernels and their moments.
 
+pub mod coherence;
 pub mod existence;
 mod first_moment;
 pub mod form;

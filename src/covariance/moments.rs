@@ -12,15 +12,16 @@
 //! derivatives of C at lag 0; lambda_1 has no such form and is integrated where it is not known. What passes through systems
 //! is looked at over frequency (`covariance::frequency`).
 
+use super::coherence::Coherences;
 use super::existence;
 use super::first_moment;
 use super::form::{Exact, LinearForm, SourceId, Term};
-use super::frequency;
+use super::frequency::{self, coherent, coherent::Member};
 use super::kernel::{self, Kernel, Smoothness, SpectralMoments};
 use super::source::{Law, Source};
 use nalgebra::{DMatrix, DVector};
 use std::cell::{OnceCell, RefCell};
-use std::collections::HashMap;
+use std::collections::{BTreeMap, HashMap};
 use std::rc::Rc;
 
 /// The derivatives of kernels that are ever asked for: two terms, each differentiated four times, and the fourth of
@@ -144,6 +145,7 @@ type ByLag = HashMap<(SourceId, u64), Rc<Vec<Moment>>>;
 /// The sources of a model with what has been found out about each: every kernel is asked once.
 pub struct MomentTable<'s> {
     sources: &'s [Source],
+    coherences: Option<&'s Coherences>,
     of_sources: Vec<OnceCell<SpectralMoments>>,
     at_zero: Vec<OnceCell<Vec<Moment>>>,
     at_lags: RefCell<ByLag>,
@@ -155,11 +157,19 @@ impl<'s> MomentTable<'s> {
     pub fn new(sources: &'s [Source]) -> Self {
         Self {
             sources,
+            coherences: None,
             of_sources: vec![OnceCell::new(); sources.len()],
             at_zero: vec![OnceCell::new(); sources.len()],
             at_lags: RefCell::new(HashMap::new()),
             of_forms: RefCell::new(HashMap::new()),
         }
+    }
+
+    /// Over sources of which some are coherent.
+    #[must_use]
+    pub fn coherent(mut self, coherences: &'s Coherences) -> Self {
+        self.coherences = Some(coherences).filter(|coherences| !coherences.is_empty());
+        self
     }
 
     /// The sources.
@@ -181,9 +191,22 @@ impl<'s> MomentTable<'s> {
     /// The moments of a form over these sources.
     pub fn moments(&self, form: &LinearForm) -> FormMoments {
         let mut sums = [Sum::default(); 4];
-        for (source, terms) in form.by_source() {
-            for (sum, part) in sums.iter_mut().zip(self.part(source, terms)) {
-                sum.add(part);
+        let mut add = |parts: [Moment; 4]| sums.iter_mut().zip(parts).for_each(|(sum, part)| sum.add(part));
+        let mut groups: BTreeMap<SourceId, Vec<Member<'_>>> = BTreeMap::new();
+        for (id, terms) in form.by_source() {
+            match self.coherences.and_then(|coherences| coherences.group(id)) {
+                Some(group) => groups.entry(group).or_default().push(self.member(id, terms)),
+                None => add(self.part(id, terms)),
+            }
+        }
+        for members in groups.values() {
+            match (members.as_slice(), self.coherences) {
+                (several @ [_, _, ..], Some(coherences)) => {
+                    add(coherent::moments(several, coherences, |one| {
+                        self.part(one.id, one.terms)
+                    }));
+                }
+                (alone, _) => alone.iter().for_each(|one| add(self.part(one.id, one.terms))),
             }
         }
         FormMoments {
@@ -191,10 +214,19 @@ impl<'s> MomentTable<'s> {
         }
     }
 
+    fn member<'t>(&self, id: SourceId, terms: &'t [Term]) -> Member<'t>
+    where
+        's: 't,
+    {
+        let source = &self.sources[id.0 as usize];
+        Member { id, source, terms }
+    }
+
     /// The covariance of two forms, `Cov[one(t), other(t + lag)]`, in the product of their units: the sum over the sources
-    /// they share. The lag is in s, of either sign.
+    /// they share, and over those that are coherent. The lag is in s, of either sign.
     pub fn covariance(&self, one: &LinearForm, other: &LinearForm, lag: f64) -> Moment {
         let mut sum = Sum::default();
+        sum.add(self.covariance_of_coherent(one, other, lag));
         let mut others = other.by_source().peekable();
         for (source, terms) in one.by_source() {
             // Both walks rise through the sources.
@@ -218,6 +250,26 @@ impl<'s> MomentTable<'s> {
                     let at = lag + a.operator.delay - b.operator.delay;
                     let weight = parity * a.coefficient() * b.coefficient();
                     sum.add(self.derivative(source, order, at).times(weight));
+                }
+            }
+        }
+        sum.moment()
+    }
+
+    /// What different sources add to a covariance.
+    fn covariance_of_coherent(&self, one: &LinearForm, other: &LinearForm, lag: f64) -> Moment {
+        let mut sum = Sum::default();
+        let Some(coherences) = self.coherences else {
+            return sum.moment();
+        };
+        let in_groups = |(id, _): &(SourceId, &[Term])| coherences.group(*id).is_some();
+        for (a, terms) in one.by_source().filter(in_groups) {
+            for (b, others) in other.by_source().filter(in_groups) {
+                if let Some(coherence) = coherences.between(a, b) {
+                    let variance = |id, terms| self.part(id, terms)[0].finite().unwrap_or(0.0);
+                    let scale = (variance(a, terms) * variance(b, others)).sqrt();
+                    let (one, other) = (self.member(a, terms), self.member(b, others));
+                    sum.add(coherent::covariance(&one, &other, coherence, lag, scale));
                 }
             }
         }

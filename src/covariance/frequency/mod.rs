@@ -5,6 +5,7 @@
 //! Vibrations, ch. 6, from memory). Where G and every H are rational there is a closed form by residues; whatever it does not
 //! reach, or not accurately, is integrated.
 
+pub(super) mod coherent;
 mod quadrature;
 mod rational;
 mod response;
@@ -121,7 +122,7 @@ fn by_parts(
             lag: 0.0,
             exponent: tail.exponent(),
         };
-        let integrals = quadrature::integrals(spectrum, &cross, left, 0.0)?;
+        let integrals = quadrature::integrals(spectrum, &cross, left, [0.0; 4])?;
         for (place, integral) in integrals.into_iter().enumerate().filter(|(place, _)| left[*place]) {
             found[place] = better(found[place], integral);
         }
@@ -197,7 +198,7 @@ fn covariance_by_parts(
         lag,
         exponent,
     };
-    let [integral, ..] = quadrature::integrals(spectrum, &cross, [true, false, false, false], scale)?;
+    let [integral, ..] = quadrature::integrals(spectrum, &cross, [true, false, false, false], [scale, 0.0, 0.0, 0.0])?;
     Ok(better(closed.unwrap_or(Moment::Unreached), integral))
 }
 

@@ -146,12 +146,12 @@ impl Cross<'_> {
 }
 
 /// The integrals of omega^n over the density times the cross term for those n of 0, 1, 2, 4 that are wanted, which must
-/// exist, and 0 for the others. `scale` is a size below which what is found is 0.
+/// exist, and 0 for the others. `scales` are sizes below which what is found is 0.
 pub(super) fn integrals(
     spectrum: &dyn SpectralDensity,
     cross: &Cross<'_>,
     wanted: [bool; 4],
-    scale: f64,
+    scales: [f64; 4],
 ) -> Result<[Moment; 4], Unavailable> {
     let grid = spectrum.grid()?;
     if grid.is_empty() {
@@ -202,10 +202,10 @@ pub(super) fn integrals(
     if domain.breakpoints.len() * POINTS > most {
         return Ok([Moment::Unreached; 4]);
     }
-    let tolerance = Tolerance {
+    let tolerances = scales.map(|scale| Tolerance {
         absolute: RELATIVE * scale,
         relative: RELATIVE,
-    };
+    });
     let unasked = Tolerance {
         absolute: f64::INFINITY,
         relative: 0.0,
@@ -216,13 +216,14 @@ pub(super) fn integrals(
             let [a, b, c, d, ..] = integrand(x);
             [a, b, c, d]
         };
-        let parts = quadrature::several_between(values, &domain.breakpoints, &[tolerance; 4], most);
+        let parts = quadrature::several_between(values, &domain.breakpoints, &tolerances, most);
         for (found, part) in found.iter_mut().zip(parts.into_iter().flatten()) {
             *found = moment(part, CLOSED_FORM * part.value.abs());
         }
     } else {
-        let [t, u] = [tolerance, unasked];
-        let parts = quadrature::several_between(integrand, &domain.breakpoints, &[t, t, t, t, u, u, u, u], most);
+        let [a, b, c, d] = tolerances;
+        let u = unasked;
+        let parts = quadrature::several_between(integrand, &domain.breakpoints, &[a, b, c, d, u, u, u, u], most);
         if let Some([a, b, c, d, e, f, g, h]) = parts {
             for (found, (part, error)) in found.iter_mut().zip([(a, e), (b, f), (c, g), (d, h)]) {
                 *found = moment(part, error.value.abs());
@@ -234,7 +235,7 @@ pub(super) fn integrals(
     let end = domain.end;
     for group in &waves {
         for (place, order) in ORDERS.iter().enumerate().filter(|(place, _)| wanted[*place]) {
-            let size = found[place].value().unwrap_or(0.0).abs().max(scale);
+            let size = found[place].value().unwrap_or(0.0).abs().max(scales[place]);
             let tolerance = Tolerance {
                 absolute: RELATIVE * size / waves.len() as f64,
                 relative: RELATIVE,
