@@ -7,6 +7,7 @@ mod lower;
 mod model;
 mod names;
 mod order;
+mod origins;
 mod parts;
 mod value;
 
@@ -19,6 +20,7 @@ pub use model::{
 use crate::diagnostics::{Diagnostic, any_error, sort};
 use crate::language::tree::{Expression, Word};
 use crate::source::{Files, Reader};
+use origins::Found;
 use std::path::Path;
 
 /// What a run sets from outside.
@@ -47,41 +49,36 @@ pub fn check(
     settings: &Settings,
 ) -> (Option<Model>, Vec<Diagnostic>) {
     let mut library = parts::Library::new(files, reader);
-    let parts = library.parts(path);
-    let mut diagnostics = std::mem::take(&mut library.diagnostics);
-    let mut model = None;
-    if let Some(parts) = parts {
-        let names = names::Names::new(&parts, &mut diagnostics);
-        lower::unknown_overrides(&names, &settings.overrides, &mut diagnostics);
-        let order = order::order(&names, &mut diagnostics);
-        let lowering = lower::Lowering::new(&names, &mut library, settings);
-        let mut lowered = lowering.run(&order.items, &order.circular);
-        diagnostics.append(&mut lowered.diagnostics);
-        let mut acceptances = Acceptances::read(&names, &mut diagnostics);
-        let finished = advice::Finished::new(&names, library.files(), &lowered);
-        diagnostics.extend(finished.advice(!any_error(&diagnostics)));
-        let without_basis = finished.without_basis();
-        let complete = finished.is_complete() && !any_error(&diagnostics);
-        acceptances.apply(&mut diagnostics);
-        if complete {
-            diagnostics.extend(acceptances.idle(|code| !code.needs_results()));
-        }
-        let mut found = lowered.model;
-        found.acceptances = acceptances;
-        found.without_basis = without_basis;
-        model = Some(found);
+    let Some(parts) = library.parts(path) else {
+        return (None, library.diagnostics);
+    };
+    let mut of_texts = std::mem::take(&mut library.diagnostics);
+    let names = names::Names::new(&parts, &mut of_texts);
+    lower::unknown_overrides(&names, &settings.overrides, &mut of_texts);
+    let order = order::order(&names, &mut of_texts);
+    let lowering = lower::Lowering::new(&names, &mut library, settings);
+    let mut lowered = lowering.run(&order.items, &order.circular);
+    let mut acceptances = Acceptances::read(&names, &mut of_texts);
+    let mut found = std::mem::take(&mut lowered.found);
+    found.extend(of_texts.into_iter().map(Found::of_text));
+    let finished = advice::Finished::new(&names, library.files(), &lowered);
+    let sound = !found.iter().any(Found::is_error);
+    found.extend(finished.advice(sound));
+    let (complete, without_basis) = (finished.is_complete(), finished.without_basis());
+    let mut diagnostics = origins::explained(&names, settings, found);
+    acceptances.apply(&mut diagnostics);
+    if complete && !any_error(&diagnostics) {
+        diagnostics.extend(acceptances.idle(|code| !code.needs_results()));
     }
-    if let Some(model) = &model
-        && settings.require_parameters
-        && !any_error(&diagnostics)
-    {
+    let mut model = lowered.model;
+    model.acceptances = acceptances;
+    model.without_basis = without_basis;
+    if settings.require_parameters && !any_error(&diagnostics) {
         diagnostics.extend(model.unexplained());
     }
     sort(&mut diagnostics);
-    if any_error(&diagnostics) {
-        model = None;
-    }
-    (model, diagnostics)
+    let sound = !any_error(&diagnostics);
+    (sound.then_some(model), diagnostics)
 }
 
 /// The names that look like one, in words: `` `a` or `b` ``.

@@ -82,7 +82,14 @@ fn close(open: impl Iterator<Item = ItemId>, need: ItemId, on_circle: &mut [bool
 fn circular(names: &Names<'_>, circle: &[ItemId]) -> Diagnostic {
     let word = |item: &ItemId| declared(names.declaration(*item));
     let first = circle.first().copied().unwrap_or(ItemId(0));
-    let name = names.full_name(first);
+    // A circle within one file is the same fault wherever the file is used.
+    let instance = names.item(first).instance;
+    let within_one = circle.iter().all(|item| names.item(*item).instance == instance);
+    let name_of = |item: &ItemId| match word(item) {
+        Some(word) if within_one => word.text.to_string(),
+        _ => names.full_name(*item),
+    };
+    let name = name_of(&first);
     let place = super::names::place(names.declaration(first));
     let message = match circle.len() {
         1 => format!("`{name}` is defined by itself"),
@@ -90,7 +97,7 @@ fn circular(names: &Names<'_>, circle: &[ItemId]) -> Diagnostic {
             let chain: Vec<String> = circle
                 .iter()
                 .take(8)
-                .map(|item| format!("`{}`", names.full_name(*item)))
+                .map(|item| format!("`{}`", name_of(item)))
                 .collect();
             format!("these are defined by each other: {} -> `{name}`", chain.join(" -> "))
         }
@@ -133,48 +140,42 @@ pub(super) fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
                 expression(value, here);
             }
         }
-        DeclarationKind::Definition { value, .. }
-        | DeclarationKind::Function { value, .. }
-        | DeclarationKind::Climate { value, .. } => expression(value, here),
-        DeclarationKind::LimitState { lines, .. } => {
-            for line in lines {
-                match &line.kind {
-                    LimitLineKind::FailureWhen(condition) => {
-                        conditions(condition, &mut |value| expression(value, here))
-                    }
-                    LimitLineKind::ReferencePeriod(value) => expression(value, here),
-                    LimitLineKind::Require { value, over, .. } => {
-                        expression(value, here);
-                        if let Some(over) = over {
-                            expression(over, here);
-                        }
-                    }
-                    LimitLineKind::TabulateAt(times) | LimitLineKind::ExtremesAt(times) => {
-                        times.iter().for_each(|time| expression(time, here))
-                    }
-                    LimitLineKind::FirstPassage(_) => {}
-                }
-            }
-        }
-        DeclarationKind::Expect {
-            quantity,
-            value,
-            tolerance,
-        } => {
-            for part in [quantity, value, tolerance] {
-                expression(part, here);
-            }
-        }
-        DeclarationKind::Correlate { value, .. } => expression(value, here),
-        DeclarationKind::Language(_)
-        | DeclarationKind::Title(_)
-        | DeclarationKind::Use { .. }
-        | DeclarationKind::Accept { .. } => {}
+        kind => each_expression(kind, &mut |value| expression(value, here)),
     }
     found
 }
 
-pub(super) fn conditions(condition: &Condition, visit: &mut impl FnMut(&Expression)) {
+/// Visits every expression of a declaration, in the order of the text.
+pub(super) fn each_expression(kind: &DeclarationKind, visit: &mut dyn FnMut(&Expression)) {
+    match kind {
+        DeclarationKind::Parameter { value, .. } => value.iter().for_each(visit),
+        DeclarationKind::Definition { value, .. }
+        | DeclarationKind::Function { value, .. }
+        | DeclarationKind::Climate { value, .. }
+        | DeclarationKind::Correlate { value, .. } => visit(value),
+        DeclarationKind::LimitState { lines, .. } => lines.iter().for_each(|line| match &line.kind {
+            LimitLineKind::FailureWhen(condition) => conditions(condition, visit),
+            LimitLineKind::ReferencePeriod(value) => visit(value),
+            LimitLineKind::Require { value, over, .. } => {
+                visit(value);
+                over.iter().for_each(&mut *visit);
+            }
+            LimitLineKind::TabulateAt(times) | LimitLineKind::ExtremesAt(times) => {
+                times.iter().for_each(&mut *visit);
+            }
+            LimitLineKind::FirstPassage(_) => {}
+        }),
+        DeclarationKind::Expect {
+            quantity,
+            value,
+            tolerance,
+        } => [quantity, value, tolerance].into_iter().for_each(visit),
+        DeclarationKind::Use { arguments, .. } => arguments.iter().for_each(|argument| visit(&argument.value)),
+        DeclarationKind::Language(_) | DeclarationKind::Title(_) | DeclarationKind::Accept { .. } => {}
+    }
+}
+
+pub(super) fn conditions(condition: &Condition, visit: &mut dyn FnMut(&Expression)) {
     match &condition.kind {
         ConditionKind::Below(a, b) | ConditionKind::Above(a, b) => [a, b].into_iter().for_each(visit),
         ConditionKind::Outside(a, b, c) => [a, b, c].into_iter().for_each(visit),

@@ -134,7 +134,7 @@ impl<'a> Library<'a> {
             }
         };
         let root = Instance {
-            tree,
+            tree: Rc::clone(&tree),
             prefix: String::new(),
             origin: None,
         };
@@ -142,11 +142,10 @@ impl<'a> Library<'a> {
             instances: vec![root],
             made: HashMap::new(),
         };
-        let mut declarations = 0usize;
+        let mut declarations = tree.declarations.len();
         let mut next = 0u32;
         while let Some(instance) = parts.instances.get(next as usize) {
             let tree = Rc::clone(&instance.tree);
-            declarations += tree.declarations.len();
             for (index, declaration) in tree.declarations.iter().enumerate() {
                 if let DeclarationKind::Use { path, name, .. } = &declaration.kind {
                     if parts.instances.len() >= MOST_PARTS || declarations > MOST_DECLARATIONS {
@@ -157,7 +156,7 @@ impl<'a> Library<'a> {
                         user: InstanceId(next),
                         declaration: index,
                     };
-                    self.part(&mut parts, origin, path, name);
+                    declarations += self.part(&mut parts, origin, path, name);
                 }
             }
             next += 1;
@@ -165,32 +164,36 @@ impl<'a> Library<'a> {
         Some(parts)
     }
 
-    fn part(&mut self, parts: &mut Parts, origin: Origin, path: &Text, name: &Word) {
+    /// Makes the instance of a `use`, where it can be made, and returns how many declarations it brings.
+    fn part(&mut self, parts: &mut Parts, origin: Origin, path: &Text, name: &Word) -> usize {
         let user = parts.get(origin.user);
         let target = beside(&self.files.get(user.tree.file).path, &path.value);
-        let tree = match self.tree(&target) {
+        let named = target.as_deref().unwrap_or(Path::new(&*path.value)).to_path_buf();
+        let tree = match target.and_then(|target| self.tree(&target)) {
             Ok(tree) => tree,
             Err(why) => {
-                self.diagnostics.push(unreadable(path.span, &target, &why));
-                return;
+                self.diagnostics.push(unreadable(path.span, &named, &why));
+                return 0;
             }
         };
         if let Some(cycle) = cycle(parts, origin.user, &tree) {
             self.diagnostics.push(self.cyclic(path, &cycle));
-            return;
+            return 0;
         }
         if user.prefix.matches('.').count() >= DEEPEST_PART {
             self.diagnostics.push(too_deep(path.span));
-            return;
+            return 0;
         }
         let made = InstanceId(u32::try_from(parts.instances.len()).unwrap_or(u32::MAX));
         let prefix = format!("{}{}.", user.prefix, name.text);
+        let declarations = tree.declarations.len();
         parts.instances.push(Instance {
             tree,
             prefix,
             origin: Some(origin),
         });
         parts.made.insert((origin.user, origin.declaration), made);
+        declarations
     }
 
     fn cyclic(&self, path: &Text, cycle: &[FileId]) -> Diagnostic {
@@ -248,16 +251,20 @@ fn too_deep(place: Span) -> Diagnostic {
 
 /// The finding for a file that cannot be read.
 pub fn unreadable(place: Span, path: &Path, why: &Unreadable) -> Diagnostic {
-    let code = if *why == Unreadable::TooLarge {
-        Code::FileTooLarge
-    } else {
-        Code::FileUnreadable
+    let code = match why {
+        Unreadable::TooLarge => Code::FileTooLarge,
+        Unreadable::Absolute | Unreadable::Outside(_) => Code::FileOutside,
+        _ => Code::FileUnreadable,
     };
     let finding = Diagnostic::new(code, place, format!("cannot read `{}`: {why}", path.display()));
     match why {
         Unreadable::Missing => finding.help("check the name; a path is relative to the file that names it"),
         Unreadable::Folder => finding.help("name a file in it"),
         Unreadable::NotAFile => finding.help("name an ordinary file"),
+        Unreadable::Absolute => finding.help("write the path as seen from the folder of this file"),
+        Unreadable::Outside(_) => {
+            finding.help("move the file into that folder, or name a folder around all files: `--root FOLDER`")
+        }
         Unreadable::TooLarge => finding.help(format!(
             "split it: at most {} MiB are read from one file",
             LARGEST_FILE >> 20

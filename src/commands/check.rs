@@ -3,37 +3,44 @@
 use super::session::{Session, print};
 use super::{CheckArguments, ColorChoice, Status};
 use crate::check::{Kind, Model};
-use crate::diagnostics::{Diagnostic, json};
+use crate::diagnostics::{Diagnostic, sarif};
 use std::io::{self, Write};
 
 pub(super) fn run(arguments: &CheckArguments, color: ColorChoice) -> io::Result<Status> {
-    let mut status = Status::Holds;
-    let mut documents = Vec::new();
-    for path in &arguments.model.files {
-        let session = Session::open(path, &arguments.model, false);
-        if !session.sound() {
-            status = Status::Wrong;
-        }
-        if arguments.model.json {
-            documents.push(serde_json::to_value(json::document(
-                &session.files,
-                &session.diagnostics,
-            ))?);
-            continue;
-        }
-        session.show(color)?;
-        print(|out| match &session.model {
-            Some(model) => {
-                writeln!(out, "{}: {}", path.display(), contents(model, &session.diagnostics))?;
-                accepted(out, &session)
-            }
-            None => Ok(()),
-        })?;
+    let files = &arguments.model.files;
+    let sessions = files.iter().map(|path| Session::open(path, &arguments.model, false));
+    if arguments.sarif {
+        let sessions: Vec<Session> = sessions.collect();
+        let status = status(&sessions);
+        let log = sarif::log(sessions.iter().map(Session::findings), status.into());
+        print(|out| super::evaluate::write_documents(out, &[log]))?;
+        return Ok(status);
     }
     if arguments.model.json {
+        let sessions: Vec<Session> = sessions.collect();
+        let documents: Vec<_> = sessions.iter().map(Session::document).collect();
         print(|out| super::evaluate::write_documents(out, &documents))?;
+        return Ok(status(&sessions));
+    }
+    let mut status = Status::Holds;
+    for (path, session) in files.iter().zip(sessions) {
+        session.show(color)?;
+        match &session.model {
+            Some(model) => print(|out| {
+                writeln!(out, "{}: {}", path.display(), contents(model, &session.diagnostics))?;
+                accepted(out, &session)
+            })?,
+            None => status = Status::Wrong,
+        }
     }
     Ok(status)
+}
+
+fn status(sessions: &[Session]) -> Status {
+    match sessions.iter().all(Session::sound) {
+        true => Status::Holds,
+        false => Status::Wrong,
+    }
 }
 
 /// A line for each warning that the file accepts.

@@ -19,6 +19,10 @@ pub(super) fn run(arguments: &EvaluateArguments, color: ColorChoice) -> io::Resu
         for session in &sessions {
             session.show(color)?;
         }
+        if arguments.model.json {
+            let documents: Vec<_> = sessions.iter().map(Session::document).collect();
+            print(|out| write_documents(out, &documents))?;
+        }
         return Ok(Status::Wrong);
     }
     if let Some(words) = unknown_limit_state(&sessions, &arguments.only) {

@@ -5,7 +5,9 @@ mod evaluate;
 mod explain;
 mod session;
 
+use crate::source::Disk;
 use clap::builder::styling::Styles;
+use clap::builder::{PathBufValueParser, TypedValueParser};
 use clap::{Args, Parser, Subcommand, ValueEnum};
 use std::ffi::OsString;
 use std::path::PathBuf;
@@ -24,14 +26,20 @@ pub enum Status {
     NotReached,
 }
 
-impl From<Status> for ExitCode {
+impl From<Status> for u8 {
     fn from(status: Status) -> Self {
-        ExitCode::from(match status {
+        match status {
             Status::Holds => 0,
             Status::DoesNotHold => 1,
             Status::Wrong => 2,
             Status::NotReached => 3,
-        })
+        }
+    }
+}
+
+impl From<Status> for ExitCode {
+    fn from(status: Status) -> Self {
+        u8::from(status).into()
     }
 }
 
@@ -50,7 +58,7 @@ Exit status
 
 const OF_CHECK: &str = "\
 Findings go to standard error; a line that counts what the model has goes to standard output.
-With --json, the findings are a document on standard output.
+With --json or --sarif, the findings are a document on standard output.
 
 Exit status
   0   nothing is wrong (there may be warnings)
@@ -58,7 +66,8 @@ Exit status
 
 const OF_EVALUATE: &str = "\
 Results go to standard output, findings to standard error. With --json, the results are a document
-in coherent SI units, or an array of them for several files.
+in coherent SI units, or an array of them for several files; where a model is wrong, its findings are
+a document in their place.
 
 Exit status
   0   done; every requirement is met and every expectation holds
@@ -107,6 +116,10 @@ struct ModelArguments {
     /// Set a parameter of the file in any unit of its dimension: `--set rod_diameter="36 mm"`; may be repeated
     #[arg(long = "set", value_name = "NAME=VALUE")]
     set: Vec<String>,
+    /// Read nothing outside of this folder; if left out, of the nearest folder around the model that holds `.git`, or
+    /// of the model's own folder
+    #[arg(long, value_name = "FOLDER", value_parser = PathBufValueParser::new().try_map(|path| Disk::within(&path)))]
+    root: Option<Disk>,
     /// Write a JSON document to standard output
     #[arg(long)]
     json: bool,
@@ -116,6 +129,9 @@ struct ModelArguments {
 struct CheckArguments {
     #[command(flatten)]
     model: ModelArguments,
+    /// Write the findings to standard output as a SARIF 2.1.0 log, for tools that gather findings
+    #[arg(long, conflicts_with = "json")]
+    sarif: bool,
 }
 
 #[derive(Args)]

@@ -2,7 +2,7 @@
 
 use super::{ColorChoice, ModelArguments, Status};
 use crate::check::{self, Model, Overrides, Settings};
-use crate::diagnostics::{Diagnostic, any_error, terminal};
+use crate::diagnostics::{Diagnostic, any_error, json, sarif, terminal};
 use crate::language::parse_expression;
 use crate::language::tree::Word;
 use crate::source::{Disk, Files, Span};
@@ -13,6 +13,8 @@ use std::path::Path;
 pub(super) struct Session {
     /// The texts.
     pub files: Files,
+    /// Where they were read.
+    pub disk: Disk,
     /// The model, where nothing is wrong.
     pub model: Option<Model>,
     /// Everything found.
@@ -23,6 +25,7 @@ impl Session {
     /// Reads and checks a file. Values set on the command line are read as texts of their own, so that findings about
     /// them can show them.
     pub fn open(path: &Path, arguments: &ModelArguments, require_parameters: bool) -> Self {
+        let disk = arguments.root.clone().unwrap_or_else(|| Disk::around(path));
         let mut files = Files::new();
         let mut settings = Settings {
             require_parameters,
@@ -38,13 +41,15 @@ impl Session {
         if !faults.is_empty() {
             return Self {
                 files,
+                disk,
                 model: None,
                 diagnostics: faults,
             };
         }
-        let (model, diagnostics) = check::check(&mut files, &Disk, path, &settings);
+        let (model, diagnostics) = check::check(&mut files, &disk, path, &settings);
         Self {
             files,
+            disk,
             model,
             diagnostics,
         }
@@ -53,6 +58,20 @@ impl Session {
     /// Whether nothing is wrong with the model.
     pub fn sound(&self) -> bool {
         !any_error(&self.diagnostics)
+    }
+
+    /// The findings as a document.
+    pub fn document(&self) -> json::Document {
+        json::document(&self.files, &self.diagnostics)
+    }
+
+    /// The findings with all that a log of several models needs.
+    pub fn findings(&self) -> sarif::Findings<'_> {
+        sarif::Findings {
+            files: &self.files,
+            disk: &self.disk,
+            diagnostics: &self.diagnostics,
+        }
     }
 
     /// Shows the findings on standard error.

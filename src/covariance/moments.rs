@@ -131,11 +131,12 @@ impl FormMoments {
     }
 
     /// `lambda_2 / sqrt(lambda_0 lambda_4)`, the rate of upcrossings of the mean over the rate of maxima (Cartwright and
-    /// Longuet-Higgins 1956). `None` where a moment is infinite or not known.
+    /// Longuet-Higgins 1956). It is at most 1, and rounding does not take it beyond. `None` where a moment is infinite or
+    /// not known.
     pub fn irregularity(&self) -> Option<f64> {
         let [zeroth, _, second, fourth] = self.lambda.map(|moment| moment.finite());
         let ratio = second? / (zeroth?.sqrt() * fourth?.sqrt());
-        ratio.is_finite().then_some(ratio)
+        ratio.is_finite().then_some(ratio.min(1.0))
     }
 }
 

@@ -56,6 +56,7 @@ macro_rules! catalogue {
 
 catalogue! {
     FileUnreadable Error "file/unreadable" "a file that cannot be read as text"
+    FileOutside Error "file/outside" "a file that a model may not read, since it lies outside of the project"
     FileTooLarge Error "file/too-large" "a file larger than the program reads"
     SyntaxUnexpected Error "syntax/unexpected" "text that the language has no place for here"
     SyntaxNesting Error "syntax/nesting" "brackets nested deeper than the program follows"

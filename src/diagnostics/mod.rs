@@ -1,7 +1,9 @@
 //! What the program says about a model: plain data first, shown by one module for each kind of reader.
 
 mod catalogue;
+mod excerpt;
 pub mod json;
+pub mod sarif;
 pub mod terminal;
 
 pub use catalogue::{Code, Severity};

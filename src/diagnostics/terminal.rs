@@ -1,7 +1,8 @@
 //! Diagnostics for people at a terminal, drawn by ariadne. No other module knows that crate.
 
+use super::excerpt::excerpt;
 use super::{Diagnostic, Severity};
-use crate::source::{FileId, Files, Span, floor_boundary};
+use crate::source::{FileId, Files, Span, after_mark, floor_boundary};
 use ariadne::{Color, Config, IndexType, Label, Report, ReportKind, Source};
 use std::collections::HashMap;
 use std::fmt::Display;
@@ -10,7 +11,7 @@ use std::ops::Range;
 
 type Place = (FileId, Range<usize>);
 
-/// Longer lines are named, not drawn: a drawing wider than any screen shows nothing.
+/// Of longer lines a piece is shown in place of the whole: a drawing wider than any screen shows nothing.
 const LONGEST_LINE: usize = 500;
 
 /// More findings than this are counted, not drawn.
@@ -63,7 +64,12 @@ fn plain(out: &mut dyn Write, files: &Files, diagnostic: &Diagnostic) -> io::Res
     let mut line = |span: Span, text: &str| {
         let place = files.place(span);
         let name = files.get(span.file).name();
-        writeln!(out, "    {name}:{}:{} {}", place.line, place.column, harmless(text))
+        let heading = format!("{name}:{}:{} {}", place.line, place.column, harmless(text));
+        writeln!(out, "    {}", heading.trim_end())?;
+        for line in excerpt(files, span) {
+            writeln!(out, "        {}", harmless(&line))?;
+        }
+        Ok::<(), io::Error>(())
     };
     line(diagnostic.place, &diagnostic.here)?;
     for label in &diagnostic.labels {
@@ -95,7 +101,11 @@ fn report<'a>(files: &'a Files, diagnostic: &'a Diagnostic, color: bool) -> Repo
         (label.place, drawn.with_message(harmless(&label.text)))
     });
     let mut labels: Vec<(Span, Label<Place>)> = std::iter::once((diagnostic.place, main)).chain(others).collect();
-    labels.sort_by_key(|(span, _)| (span.file != diagnostic.place.file, *span));
+    // Those in other files keep their order: the uses of a part stand behind one another.
+    labels.sort_by_key(|(span, _)| {
+        let here = span.file == diagnostic.place.file;
+        (!here, here.then_some(*span))
+    });
     let mut builder = Report::build(kind, place(files, diagnostic.place))
         .with_config(config)
         .with_code(diagnostic.code.name())
@@ -118,12 +128,13 @@ fn stands_below(files: &Files, diagnostic: &Diagnostic) -> bool {
     labels.any(|label| line(label.place) < line(diagnostic.place))
 }
 
-/// The span with both ends on character boundaries inside the file: ariadne panics inside a character.
+/// The span with both ends on character boundaries inside the file, since ariadne panics inside a character, and
+/// counted from after a byte order mark, since ariadne would count it as a column.
 fn place(files: &Files, span: Span) -> Place {
     let text = &files.get(span.file).text;
-    let start = floor_boundary(text, span.start as usize);
-    let end = floor_boundary(text, span.end as usize).max(start);
-    (span.file, start..end)
+    let from_mark = |offset: u32| floor_boundary(text, offset as usize).saturating_sub(after_mark(text));
+    let (start, end) = (from_mark(span.start), from_mark(span.end));
+    (span.file, start..end.max(start))
 }
 
 /// The text with control characters replaced, byte for byte: a model may come from a stranger, and must not speak to
@@ -155,7 +166,10 @@ impl ariadne::Cache<FileId> for Cache<'_> {
     fn fetch(&mut self, id: &FileId) -> Result<&Source<String>, impl std::fmt::Debug> {
         let files = self.files;
         let source = self.sources.entry(*id);
-        Ok::<_, io::Error>(source.or_insert_with(|| Source::from(harmless(&files.get(*id).text))))
+        Ok::<_, io::Error>(source.or_insert_with(|| {
+            let text = &files.get(*id).text;
+            Source::from(harmless(text.get(after_mark(text)..).unwrap_or_default()))
+        }))
     }
 
     fn display<'b>(&self, id: &'b FileId) -> Option<impl Display + 'b> {

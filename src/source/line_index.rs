@@ -1,5 +1,14 @@
 //! Byte offsets to lines and columns.
 
+/// Where a text starts: behind the byte order mark that some editors put at the head of a file. It is no character of
+/// the first line.
+pub fn after_mark(text: &str) -> usize {
+    match text.strip_prefix('\u{feff}') {
+        Some(rest) => text.len() - rest.len(),
+        None => 0,
+    }
+}
+
 /// A line and a column, both from 1. Columns count Unicode scalar values.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 pub struct LineColumn {
@@ -33,7 +42,10 @@ impl LineIndex {
     pub fn line_column(&self, text: &str, offset: usize) -> LineColumn {
         let offset = super::floor_boundary(text, offset);
         let line = self.starts.partition_point(|start| *start as usize <= offset).max(1);
-        let start = self.starts.get(line - 1).map_or(0, |start| *start as usize);
+        let start = match line {
+            1 => after_mark(text),
+            _ => self.starts.get(line - 1).map_or(0, |start| *start as usize),
+        };
         let column = text.get(start..offset).map_or(0, |part| part.chars().count()) + 1;
         LineColumn { line, column }
     }
@@ -69,6 +81,15 @@ mod tests {
         assert_eq!(index.line_range(text, 1), Some(0..6));
         assert_eq!(index.line_range(text, 3), Some(10..10));
         assert_eq!(index.line_range(text, 5), None);
+    }
+
+    #[test]
+    fn a_byte_order_mark_is_no_column() {
+        let text = "\u{feff}a\nb";
+        let index = LineIndex::new(text);
+        for (offset, line, column) in [(0, 1, 1), (3, 1, 1), (4, 1, 2), (5, 2, 1)] {
+            assert_eq!(index.line_column(text, offset), LineColumn { line, column });
+        }
     }
 
     #[test]

@@ -3,13 +3,15 @@
 //! This is the only place of the program that knows lines and columns. Everything else speaks of half-open byte
 //! ranges in a file.
 
+mod disk;
 mod line_index;
 mod reader;
 
-pub use line_index::{LineColumn, LineIndex};
-pub use reader::{Disk, LARGEST_FILE, Reader, Unreadable};
+pub use disk::Disk;
+pub use line_index::{LineColumn, LineIndex, after_mark};
+pub use reader::{LARGEST_FILE, Reader, Unreadable, beside, plain};
 
-use std::path::{Path, PathBuf};
+use std::path::PathBuf;
 
 /// A file of the project, as an index into [`Files`].
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -146,12 +148,4 @@ pub fn floor_boundary(text: &str, offset: usize) -> usize {
         offset -= 1;
     }
     offset
-}
-
-/// `path` as seen from the folder of the file `from`.
-pub fn beside(from: &Path, path: &str) -> PathBuf {
-    match from.parent() {
-        Some(folder) if from != Path::new("-") => folder.join(path),
-        _ => PathBuf::from(path),
-    }
 }

@@ -1,13 +1,12 @@
-//! Where texts come from: the one door to the file system.
+//! Where texts come from.
 
 use std::fmt;
-use std::io::Read;
 use std::path::{Path, PathBuf};
 
 /// The largest file that is read, in bytes.
 pub const LARGEST_FILE: u64 = 64 << 20;
 
-/// Gives out the text of a file. Tests put a map behind it, the program a disk.
+/// Gives out the text of a file. Tests put a map behind it, the program a [`Disk`](super::Disk).
 pub trait Reader {
     /// The text at a path.
     ///
@@ -28,6 +27,10 @@ pub enum Unreadable {
     Folder,
     /// Something is there that is neither a file nor a folder.
     NotAFile,
+    /// A model names it by an absolute path.
+    Absolute,
+    /// It lies outside of this folder, which is all that may be read.
+    Outside(PathBuf),
     /// It is larger than [`LARGEST_FILE`].
     TooLarge,
     /// Its bytes are not UTF-8 from this offset on.
@@ -42,6 +45,8 @@ impl fmt::Display for Unreadable {
             Self::Missing => write!(f, "there is no such file"),
             Self::Folder => write!(f, "it is a folder"),
             Self::NotAFile => write!(f, "it is a device or a pipe, not a file"),
+            Self::Absolute => write!(f, "a model names files by relative paths only"),
+            Self::Outside(root) => write!(f, "it lies outside of the root folder `{}`", root.display()),
             Self::TooLarge => write!(f, "it is larger than {} MiB", LARGEST_FILE >> 20),
             Self::NotUtf8(offset) => write!(f, "it is not UTF-8 text (byte {offset} is wrong)"),
             Self::Other(words) => write!(f, "{words}"),
@@ -49,44 +54,64 @@ impl fmt::Display for Unreadable {
     }
 }
 
-/// The file system, and standard input as `-`.
-#[derive(Clone, Copy, Debug, Default)]
-pub struct Disk;
-
-impl Reader for Disk {
-    fn read(&self, path: &Path) -> Result<String, Unreadable> {
-        if path == Path::new("-") {
-            return text(std::io::stdin().lock());
-        }
-        let about = std::fs::metadata(path).map_err(|error| words(&error))?;
-        if about.is_dir() {
-            return Err(Unreadable::Folder);
-        }
-        if !about.is_file() {
-            return Err(Unreadable::NotAFile);
-        }
-        text(std::fs::File::open(path).map_err(|error| words(&error))?)
+/// The file that `path`, written in the file `from`, names: it is seen from the folder of that file.
+///
+/// # Errors
+/// [`Unreadable::Absolute`] where the path does not start from that folder.
+pub fn beside(from: &Path, path: &str) -> Result<PathBuf, Unreadable> {
+    let path = Path::new(path);
+    // On Windows a path may also start from a drive, or from the root of the drive at hand.
+    let starts_elsewhere = |part| matches!(part, std::path::Component::Prefix(_) | std::path::Component::RootDir);
+    if path.components().next().is_some_and(starts_elsewhere) {
+        return Err(Unreadable::Absolute);
     }
-
-    fn identity(&self, path: &Path) -> PathBuf {
-        std::fs::canonicalize(path).unwrap_or_else(|_| path.to_path_buf())
-    }
+    Ok(match from.parent() {
+        Some(folder) if from != Path::new("-") => folder.join(path),
+        _ => path.to_path_buf(),
+    })
 }
 
-fn text(from: impl Read) -> Result<String, Unreadable> {
-    let mut bytes = Vec::new();
-    from.take(LARGEST_FILE + 1)
-        .read_to_end(&mut bytes)
-        .map_err(|error| words(&error))?;
-    if bytes.len() as u64 > LARGEST_FILE {
-        return Err(Unreadable::TooLarge);
+/// A path without its `.` and `..`, by its spelling alone; `None` where it leads above where it starts.
+pub fn plain(path: &Path) -> Option<PathBuf> {
+    use std::path::Component;
+    let mut plain = PathBuf::new();
+    for component in path.components() {
+        match component {
+            Component::CurDir => {}
+            Component::ParentDir => {
+                // The root of a file system has no name, and is its own parent.
+                if !plain.pop() && !plain.has_root() {
+                    return None;
+                }
+            }
+            other => plain.push(other),
+        }
     }
-    String::from_utf8(bytes).map_err(|error| Unreadable::NotUtf8(error.utf8_error().valid_up_to()))
+    Some(plain)
 }
 
-fn words(error: &std::io::Error) -> Unreadable {
-    match error.kind() {
-        std::io::ErrorKind::NotFound => Unreadable::Missing,
-        _ => Unreadable::Other(error.to_string()),
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_path_is_seen_from_the_folder_of_the_file_that_names_it() {
+        let target = |from: &str, path: &str| beside(Path::new(from), path);
+        assert_eq!(target("a/b.limit", "c.limit"), Ok(PathBuf::from("a/c.limit")));
+        assert_eq!(target("a/b.limit", "../c.limit"), Ok(PathBuf::from("a/../c.limit")));
+        assert_eq!(target("b.limit", "c.limit"), Ok(PathBuf::from("c.limit")));
+        assert_eq!(target("-", "c.limit"), Ok(PathBuf::from("c.limit")));
+        assert_eq!(target("a/b.limit", "/c.limit"), Err(Unreadable::Absolute));
+        assert_eq!(target("-", "//c.limit"), Err(Unreadable::Absolute));
+    }
+
+    #[test]
+    fn a_plain_path_does_not_lead_above_its_start() {
+        let plain = |path: &str| plain(Path::new(path)).map(|path| path.display().to_string());
+        assert_eq!(plain("a/./b/../c").as_deref(), Some("a/c"));
+        assert_eq!(plain("a/..").as_deref(), Some(""));
+        assert_eq!(plain("a/../../b"), None);
+        assert_eq!(plain("..").as_deref(), None);
+        assert_eq!(plain("/../a").as_deref(), Some("/a"));
     }
 }

@@ -3,6 +3,8 @@
 mod contract;
 mod examples;
 mod files;
+mod root;
+mod sarif;
 mod settings;
 mod statuses;
 mod terminal;

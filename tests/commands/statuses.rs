@@ -51,7 +51,17 @@ fn two_when_the_model_is_wrong_and_nothing_is_computed() {
         assert_eq!(run.out, "");
         assert!(run.err.contains("unit/mismatch"), "{}", run.err);
     }
-    assert_eq!(folder.run(["evaluate", "--json", "a.limit"]).ends_with(2).out, "");
+    // A machine that reads results is told what is wrong in their place.
+    let run = folder.run(["evaluate", "--json", "a.limit"]).ends_with(2);
+    assert_eq!(run.json()["format"], "outcross-diagnostics");
+    assert_eq!(run.json()["diagnostics"][0]["code"], "unit/mismatch");
+    folder.write("b.limit", GUST);
+    let both = folder
+        .run(["evaluate", "--json", "a.limit", "b.limit"])
+        .ends_with(2)
+        .json();
+    assert_eq!(both[0], run.json());
+    assert_eq!(both[1]["diagnostics"], serde_json::json!([]));
 }
 
 #[test]

@@ -3,14 +3,14 @@
 //! `faulty/` holds a file for each mistake, `several/` files with more than one; the snapshots show what the user reads.
 //! `shared/` holds the parts and tables they name.
 
-pub mod memory;
+mod limits;
 mod mutation;
 mod pages;
-mod random;
+mod parts;
 mod rendering;
 mod robustness;
 
-use memory::Memory;
+use crate::support::memory::Memory;
 use std::fs;
 use std::path::Path;
 

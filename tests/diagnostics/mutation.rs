@@ -1,8 +1,8 @@
 //! Texts damaged at random, and texts cut off anywhere: the program must take them all without a panic, with every
 //! place of every finding inside its file (which each run asserts).
 
-use super::random::Random;
 use super::{content, folder, shared};
+use crate::support::random::Random;
 use std::fs;
 use std::path::PathBuf;
 

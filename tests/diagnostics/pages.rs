@@ -1,6 +1,6 @@
 //! The page of every code: its examples raise that code alone, and its mends raise nothing.
 
-use super::memory::Memory;
+use crate::support::memory::Memory;
 use outcross::diagnostics::Code;
 
 /// The name under which an example is read.

@@ -1,7 +1,7 @@
 //! Texts that no one would write on purpose. None may panic or run on without end; whatever is wrong is said.
 
-use super::memory::{Memory, Run, run};
-use super::random::Random;
+use crate::support::memory::{Memory, Run, run};
+use crate::support::random::Random;
 use outcross::diagnostics::Severity;
 use outcross::source::{Disk, Reader, Unreadable};
 use std::fs;
@@ -265,6 +265,8 @@ fn files_that_cannot_be_read() {
         (Unreadable::Missing, "file/unreadable"),
         (Unreadable::Folder, "file/unreadable"),
         (Unreadable::NotAFile, "file/unreadable"),
+        (Unreadable::Absolute, "file/outside"),
+        (Unreadable::Outside(PathBuf::from("/srv/models")), "file/outside"),
         (Unreadable::NotUtf8(3), "file/unreadable"),
         (
             Unreadable::Other("the lock is held by another".to_owned()),
@@ -290,6 +292,7 @@ fn files_on_the_disk_that_cannot_be_read() {
         "use \"inner\" as a\nuse \"latin.limit\" as b\nuse \"nothing\" as c\n",
     )
     .expect("a file for this test");
+    let disk = Disk::within(&folder).expect("the folder is there");
     for name in [
         "inner",
         "latin.limit",
@@ -298,12 +301,25 @@ fn files_on_the_disk_that_cannot_be_read() {
         "\0",
         "",
     ] {
-        let run = run(&Disk, &folder.join(name), true);
+        let run = run(&disk, &folder.join(name), true);
         assert!(run.model.is_none(), "{name}");
         assert_eq!(run.codes(), ["file/unreadable"], "{name}");
     }
-    let run = run(&Disk, &folder.join("user.limit"), true);
+    let run = run(&disk, &folder.join("user.limit"), true);
     assert_eq!(run.codes(), ["file/unreadable"; 3]);
+    fs::remove_dir_all(&folder).expect("the folder of this test can be removed");
+}
+
+#[test]
+fn a_model_without_a_repository_reads_its_own_folder() {
+    let folder = std::env::temp_dir().join(format!("outcross-root-{}", std::process::id()));
+    fs::create_dir_all(folder.join("inner")).expect("a folder for this test");
+    let real = fs::canonicalize(&folder).expect("the folder is there");
+    assert_eq!(Disk::around(&folder.join("model.limit")).root(), real);
+    assert_eq!(Disk::around(&folder.join("inner/../model.limit")).root(), real);
+    fs::create_dir(folder.join(".git")).expect("a folder for this test");
+    assert_eq!(Disk::around(&folder.join("inner/model.limit")).root(), real);
+    assert_eq!(Disk::around(&folder.join("nowhere/model.limit")).root(), real);
     fs::remove_dir_all(&folder).expect("the folder of this test can be removed");
 }
 

@@ -5,7 +5,7 @@
 //! declarations of `limit prelude`, `limit refused` one that this version does not compute, `limit faulty CODE` one with
 //! a fault. A name, `gusts.limit` or `gusts.csv`, makes the block a file that the others can use.
 
-use crate::diagnostics::memory::{Memory, Run};
+use crate::support::memory::{Memory, Run};
 use outcross::diagnostics::{Code, Diagnostic};
 use outcross::expression::Function;
 use outcross::language;

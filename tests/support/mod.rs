@@ -1,29 +1,18 @@
 //! Running the program on texts in memory, as `check` and `evaluate` run it on files, and reading its results as another
 //! program would: from the JSON document.
 
-use outcross::check::{Model, Settings, check};
+pub mod memory;
+pub mod random;
+
+use memory::{Memory, Run};
+use outcross::check::Model;
 use outcross::diagnostics::{Diagnostic, Severity};
 use outcross::results::evaluate;
-use outcross::source::{Files, Reader, Unreadable};
 use serde_json::Value;
-use std::collections::{BTreeMap, BTreeSet};
-use std::path::{Path, PathBuf};
+use std::collections::BTreeSet;
 
 /// The name of the model among the texts.
 const MODEL: &str = "model.limit";
-
-/// Texts by path, in place of a disk.
-struct Texts(BTreeMap<PathBuf, String>);
-
-impl Reader for Texts {
-    fn read(&self, path: &Path) -> Result<String, Unreadable> {
-        self.0.get(path).cloned().ok_or(Unreadable::Missing)
-    }
-
-    fn identity(&self, path: &Path) -> PathBuf {
-        path.to_path_buf()
-    }
-}
 
 /// What became of a model.
 pub struct Outcome {
@@ -46,29 +35,22 @@ impl Outcome {
 }
 
 /// Checks a model beside other texts, `(path, text)`.
-fn checked(model: &str, neighbours: &[(&str, &str)]) -> (Files, Option<Model>, Vec<Diagnostic>) {
-    let mut texts = BTreeMap::from([(PathBuf::from(MODEL), model.to_string())]);
-    texts.extend(
-        neighbours
-            .iter()
-            .map(|(path, text)| (PathBuf::from(path), text.to_string())),
-    );
-    let settings = Settings {
-        require_parameters: true,
-        ..Settings::default()
-    };
-    let mut files = Files::new();
-    let (model, findings) = check(&mut files, &Texts(texts), Path::new(MODEL), &settings);
-    (files, model, findings)
+fn checked(model: &str, neighbours: &[(&str, &str)]) -> Run {
+    let texts = Memory::of(MODEL, model);
+    let texts = neighbours
+        .iter()
+        .fold(texts, |texts, (path, text)| texts.with(path, text));
+    texts.run(MODEL, true)
 }
 
 /// Checks and computes a model beside other texts, `(path, text)`.
 fn run_beside(model: &str, neighbours: &[(&str, &str)]) -> Outcome {
-    let (files, model, findings) = checked(model, neighbours);
-    let results = model.map(|model| {
-        let results = evaluate(&files, &model, &findings, &[]);
+    let run = checked(model, neighbours);
+    let results = run.model.map(|model| {
+        let results = evaluate(&run.files, &model, &run.diagnostics, &[]);
         Results(serde_json::to_value(results).expect("results are JSON"))
     });
+    let findings = run.diagnostics;
     Outcome { results, findings }
 }
 
@@ -80,8 +62,8 @@ pub fn run(model: &str) -> Outcome {
 /// The model that a text says, which must be sound.
 #[track_caller]
 pub fn model(text: &str) -> Model {
-    let (_, model, findings) = checked(text, &[]);
-    sound(model, &findings, text)
+    let run = checked(text, &[]);
+    sound(run.model, &run.diagnostics, text)
 }
 
 /// The results of a model in which nothing is wrong.

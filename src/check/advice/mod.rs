@@ -16,11 +16,11 @@ mod unused;
 use super::lower::{Lowered, fresh_source};
 use super::model::{LimitState, Named};
 use super::names::{ItemId, Names, Resolved};
+use super::origins::Found;
 use super::parts::InstanceId;
 use super::value::{Number, Value};
 use crate::covariance::form::LinearForm;
 use crate::covariance::moments::MomentTable;
-use crate::diagnostics::Diagnostic;
 use crate::language::tree::{
     Argument, Call, DeclarationKind, DefinitionKeyword, Expression, ExpressionKind, LimitLine, Path, Word,
 };
@@ -56,6 +56,7 @@ impl<'a> Gaussian<'a> {
 
 /// A limit state with its lines.
 struct Judged<'a> {
+    instance: InstanceId,
     name: &'a Word,
     lines: &'a [LimitLine],
     state: &'a LimitState,
@@ -79,24 +80,28 @@ impl<'a> Finished<'a> {
     }
 
     /// Everything that a reader should look at. `sound` says whether the file is free of errors.
-    pub fn advice(&self, sound: bool) -> Vec<Diagnostic> {
-        let mut found = Vec::new();
-        found.extend(self.conventions());
+    pub fn advice(&self, sound: bool) -> Vec<Found> {
+        let mut of_texts = self.conventions();
+        of_texts.extend(self.same_descriptions());
+        of_texts.extend(self.counted_twice());
+        of_texts.extend(self.expectations());
+        if sound {
+            of_texts.extend(self.unused());
+        }
+        let mut found: Vec<Found> = of_texts.into_iter().map(Found::of_text).collect();
         for gaussian in self.gaussians() {
-            found.extend(self.variation(&gaussian));
-            found.extend(self.deviation(&gaussian));
-            found.extend(self.raw_moment(&gaussian));
+            let of_one = self.variation(&gaussian).into_iter();
+            let of_one = of_one
+                .chain(self.deviation(&gaussian))
+                .chain(self.raw_moment(&gaussian));
+            found.extend(of_one.map(|one| Found::of_instance(gaussian.instance, one)));
         }
         for judged in self.limit_states() {
-            found.extend(self.failed_mean(&judged));
-            found.extend(self.short_period(&judged));
-            found.extend(self.requirements(&judged));
-        }
-        found.extend(self.same_descriptions());
-        found.extend(self.counted_twice());
-        found.extend(self.expectations());
-        if sound {
-            found.extend(self.unused());
+            let of_one = self.failed_mean(&judged).into_iter();
+            let of_one = of_one
+                .chain(self.short_period(&judged))
+                .chain(self.requirements(&judged));
+            found.extend(of_one.map(|one| Found::of_instance(judged.instance, one)));
         }
         found
     }
@@ -153,6 +158,7 @@ impl<'a> Finished<'a> {
             };
             let index = self.lowered.limit_states.get(&item)?;
             Some(Judged {
+                instance: self.names.item(item).instance,
                 name,
                 lines,
                 state: self.lowered.model.limit_states.get(*index)?,

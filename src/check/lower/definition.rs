@@ -129,7 +129,7 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
                 .here(why.to_string())
                 .label(source.place, "its correlation is tabulated")
                 .help("make the delays shorter, the table longer, or say `beyond: zero` or `beyond: hold`");
-            self.diagnostics.push(finding);
+            self.report(finding);
             sound = false;
         }
         sound

@@ -2,6 +2,7 @@
 
 use super::{Context, Lowering, Scope};
 use crate::check::names::ItemId;
+use crate::check::origins::Found;
 use crate::check::value::{Covariance, Number, Scalar, Value};
 use crate::covariance::kernel::{Kernel, User};
 use crate::diagnostics::{Code, Diagnostic};
@@ -240,7 +241,10 @@ impl Lowering<'_, '_, '_> {
         };
         let before = self.diagnostics.len();
         let value = self.value(value, scope);
-        for finding in self.diagnostics.iter_mut().skip(before) {
+        for Found {
+            diagnostic: finding, ..
+        } in self.diagnostics.iter_mut().skip(before)
+        {
             *finding = std::mem::replace(finding, Diagnostic::new(Code::KernelInvalid, call.brackets, ""))
                 .label(call.brackets, "with these arguments");
         }

@@ -30,6 +30,7 @@ pub(in crate::check) use process::fresh_source;
 use super::Settings;
 use super::model::Model;
 use super::names::{ItemId, Names, place};
+use super::origins::Found;
 use super::parts::{InstanceId, Library};
 use super::value::{Number, Scalar, Value, Varying};
 use crate::covariance::source::Source;
@@ -48,6 +49,9 @@ const MOST_TERMS: usize = 2_000_000;
 
 /// Pairs of terms over one source, in all forms of a model together: each pair is a lag at which a kernel is needed.
 const MOST_PAIRS: usize = 1_000_000;
+
+/// Operations and numbers in the kernels that a model writes out, all together: each part brings its own.
+const MOST_NODES: usize = 2_000_000;
 
 /// What an expression sees around it.
 #[derive(Clone, Copy)]
@@ -97,7 +101,7 @@ pub struct Lowered {
     /// Which of the model's limit states an item is.
     pub limit_states: HashMap<ItemId, usize>,
     /// What was found.
-    pub diagnostics: Vec<Diagnostic>,
+    pub found: Vec<Found>,
 }
 
 /// The state of the walk through all items.
@@ -119,7 +123,9 @@ pub struct Lowering<'p, 'l, 'f> {
     model: Model,
     varying: HashMap<ItemId, usize>,
     limit_states: HashMap<ItemId, usize>,
-    diagnostics: Vec<Diagnostic>,
+    /// The instance that is being looked at.
+    instance: InstanceId,
+    diagnostics: Vec<Found>,
 }
 
 impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
@@ -142,6 +148,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             model: Model::empty(tree.file),
             varying: HashMap::new(),
             limit_states: HashMap::new(),
+            instance: InstanceId(0),
             diagnostics: Vec::new(),
         }
     }
@@ -152,10 +159,11 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             self.values[item.index()] = Some(Value::Fault);
         }
         for item in items {
+            self.instance = self.names.item(*item).instance;
             let value = self.item(*item);
             self.note_if_lost(*item, &value);
             self.values[item.index()] = Some(value);
-            if self.terms > MOST_TERMS || self.pairs > MOST_PAIRS {
+            if self.terms > MOST_TERMS || self.pairs > MOST_PAIRS || self.arena.len() > MOST_NODES {
                 self.too_large(*item);
                 break;
             }
@@ -166,7 +174,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             values: self.values,
             varying: self.varying,
             limit_states: self.limit_states,
-            diagnostics: self.diagnostics,
+            found: self.diagnostics,
         }
     }
 
@@ -190,6 +198,11 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             (
                 format!("the processes and margins up to here have more than {MOST_TERMS} terms together"),
                 "build margins from fewer sources: sums of sums grow with every step",
+            )
+        } else if self.arena.len() > MOST_NODES {
+            (
+                format!("the kernels written out up to here have more than {MOST_NODES} operations and numbers"),
+                "use fewer parts that write out long kernels, or give the kernels as tables",
             )
         } else {
             (
@@ -232,7 +245,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
     }
 
     fn report(&mut self, diagnostic: Diagnostic) {
-        self.diagnostics.push(diagnostic);
+        self.diagnostics.push(Found::of_instance(self.instance, diagnostic));
     }
 
     fn item(&mut self, item: ItemId) -> Value {

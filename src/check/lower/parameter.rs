@@ -4,6 +4,7 @@ use super::{Lowering, Scope, unit_or_si, word_text};
 use crate::check::model::Parameter;
 use crate::check::names::{ItemId, Names, choice, near, place};
 use crate::check::order::walk;
+use crate::check::origins::set_from_outside;
 use crate::check::parts::InstanceId;
 use crate::check::value::{Number, Scalar, Value};
 use crate::check::{Overrides, Settings};
@@ -75,18 +76,8 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
     where
         'l: 'p,
     {
-        let same = |word: &Word| word.text == name.text;
-        match self.names.parts().arguments(instance) {
-            Some((origin, _, arguments)) => {
-                let argument = arguments.iter().find(|one| one.name.as_ref().is_some_and(same))?;
-                Some((&argument.value, origin.user))
-            }
-            None => {
-                let settings: &'l Settings = self.settings;
-                let set = settings.overrides.iter().rev().find(|set| same(&set.name))?;
-                Some((&set.value, InstanceId(0)))
-            }
-        }
+        let settings: &'l Settings = self.settings;
+        set_from_outside(self.names.parts(), settings, instance, name)
     }
 
     pub(super) fn set_parameter(

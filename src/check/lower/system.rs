@@ -350,7 +350,7 @@ impl Lowering<'_, '_, '_> {
             } else {
                 continue;
             };
-            self.diagnostics.push(finding);
+            self.report(finding);
             sound = false;
         }
         sound

@@ -67,10 +67,13 @@ impl Lowering<'_, '_, '_> {
             self.wrong_kind(file.span, "no text", "the name of a file", help);
             return None;
         };
-        Some((
-            text,
-            beside(&self.library.files().get(file.span.file).path, &text.value),
-        ))
+        match beside(&self.library.files().get(file.span.file).path, &text.value) {
+            Ok(path) => Some((text, path)),
+            Err(why) => {
+                self.report(unreadable(text.span, Path::new(&*text.value), &why));
+                None
+            }
+        }
     }
 
     /// A data file; that it cannot be read is reported.

@@ -5,9 +5,9 @@ use outcross::diagnostics::{Diagnostic, any_error, sort, terminal};
 use outcross::language;
 use outcross::language::tree::{DeclarationKind, DefinitionKeyword};
 use outcross::results;
-use outcross::source::{Files, Reader, Unreadable};
+use outcross::source::{Files, Reader, Unreadable, plain};
 use std::collections::HashMap;
-use std::path::{Component, Path, PathBuf};
+use std::path::{Path, PathBuf};
 
 /// Texts by path.
 #[derive(Clone, Default)]
@@ -25,9 +25,9 @@ impl Memory {
         self
     }
 
-    /// Adds a file, in place of another of the same name.
-    pub fn insert(&mut self, name: impl Into<PathBuf>, text: impl Into<String>) {
-        self.0.insert(name.into(), text.into());
+    /// Adds a file, in place of another of the same name, whose text it returns.
+    pub fn insert(&mut self, name: impl Into<PathBuf>, text: impl Into<String>) -> Option<String> {
+        self.0.insert(name.into(), text.into())
     }
 
     /// Checks a file, with values demanded of all parameters or not.
@@ -36,15 +36,15 @@ impl Memory {
     }
 }
 
+/// All texts lie in one root folder.
 impl Reader for Memory {
     fn read(&self, path: &Path) -> Result<String, Unreadable> {
-        self.0.get(&self.identity(path)).cloned().ok_or(Unreadable::Missing)
+        let path = plain(path).ok_or_else(|| Unreadable::Outside(PathBuf::from("models")))?;
+        self.0.get(&path).cloned().ok_or(Unreadable::Missing)
     }
 
     fn identity(&self, path: &Path) -> PathBuf {
-        path.components()
-            .filter(|component| *component != Component::CurDir)
-            .collect()
+        plain(path).unwrap_or_else(|| path.to_path_buf())
     }
 }
 
