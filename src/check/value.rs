@@ -2,6 +2,7 @@
 
 use crate::covariance::form::LinearForm;
 use crate::covariance::kernel::Kernel;
+use crate::covariance::spectrum::Spectrum;
 use crate::expression::NodeId;
 use crate::units::{Dimension, Unit};
 use std::rc::Rc;
@@ -17,6 +18,8 @@ pub enum Value {
     Form(Varying),
     /// A kernel, as an argument of a process.
     Kernel(Covariance),
+    /// A spectrum, as an argument of a process.
+    Spectrum(Density),
 }
 
 /// A deterministic quantity.
@@ -82,6 +85,28 @@ pub struct Covariance {
     pub dimension: Dimension,
 }
 
+/// A spectrum with its dimension: unit² times time over angle for a density, time over angle for a shape.
+#[derive(Clone, Debug)]
+pub struct Density {
+    /// The spectrum in coherent SI units, per rad/s.
+    pub spectrum: Spectrum,
+    /// Its dimension.
+    pub dimension: Dimension,
+    /// What is known of its area before it is computed.
+    pub area: Area,
+}
+
+/// What a spectrum says about its own area.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Area {
+    /// Nothing: it follows from the levels.
+    Open,
+    /// 1, by definition: a shape.
+    Unit,
+    /// The variance, from a significant height: hs²/16.
+    Height,
+}
+
 impl Value {
     /// What it is, for a message.
     pub fn kind(&self) -> &'static str {
@@ -90,6 +115,7 @@ impl Value {
             Self::Scalar(_) => "a number",
             Self::Form(_) => "a process",
             Self::Kernel(_) => "a kernel",
+            Self::Spectrum(_) => "a spectrum",
         }
     }
 }

@@ -69,6 +69,11 @@ impl Tape {
         values.last().cloned().unwrap_or_else(N::undefined)
     }
 
+    /// How many operations, numbers and symbols it has.
+    pub fn size(&self) -> usize {
+        self.nodes.len()
+    }
+
     /// The numbers it contains, in order of evaluation.
     pub fn numbers(&self) -> impl Iterator<Item = f64> {
         self.nodes.nodes().filter_map(|node| match node {

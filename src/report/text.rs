@@ -120,7 +120,13 @@ fn moments_row(named: &Named, result: &Moments) -> Vec<String> {
     vec![
         result.name.clone(),
         known(result.mean, |mean| show(mean, unit, DIGITS)),
-        known(result.standard_deviation, |deviation| show(deviation, unit, DIGITS)),
+        known(result.standard_deviation, |deviation| {
+            if deviation.is_finite() {
+                show(deviation, unit, DIGITS)
+            } else {
+                show_number(deviation, DIGITS)
+            }
+        }),
         derivative.unwrap_or_default(),
         result.zero_upcrossing_rate.map(per_second).unwrap_or_default(),
         bandwidth,

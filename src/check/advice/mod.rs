@@ -192,7 +192,7 @@ impl<'a> Finished<'a> {
                     };
                     Some(Plain { value, unit })
                 }
-                Value::Fault | Value::Form(_) | Value::Kernel(_) => None,
+                Value::Fault | Value::Form(_) | Value::Kernel(_) | Value::Spectrum(_) => None,
             },
             _ => None,
         }

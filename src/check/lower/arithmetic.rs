@@ -1,6 +1,6 @@
 //! Numbers, sums, products and powers: of numbers, of things that vary, and of kernels.
 
-use super::{Context, Lowering, Scope};
+use super::{Lowering, Scope};
 use crate::check::value::{Covariance, Number, Scalar, Value, Varying};
 use crate::covariance::form::LinearForm;
 use crate::covariance::kernel::{Kernel, User};
@@ -90,6 +90,9 @@ impl Lowering<'_, '_, '_> {
         if values.iter().any(|(_, _, value)| matches!(value, Value::Kernel(_))) {
             return self.kernel_sum(values, dimension);
         }
+        if values.iter().any(|(_, _, value)| matches!(value, Value::Spectrum(_))) {
+            return self.spectrum_sum(values, dimension);
+        }
         let unit = values.iter().find_map(|(_, _, value)| match value {
             Value::Scalar(scalar) if !scalar.bare_zero => scalar.unit.clone(),
             Value::Form(varying) => varying.unit.clone(),
@@ -150,6 +153,7 @@ impl Lowering<'_, '_, '_> {
             Value::Scalar(scalar) => Some((scalar.dimension, scalar.unit.clone())),
             Value::Form(varying) => Some((varying.dimension, varying.unit.clone())),
             Value::Kernel(covariance) => Some((covariance.dimension, None)),
+            Value::Spectrum(density) => Some((density.dimension, None)),
             Value::Fault => None,
         };
         let mut first: Option<(Span, Dimension, Option<Rc<Unit>>)> = None;
@@ -227,7 +231,7 @@ impl Lowering<'_, '_, '_> {
                 }
                 Number::Unset => None,
             },
-            Value::Form(_) | Value::Fault => None,
+            Value::Form(_) | Value::Spectrum(_) | Value::Fault => None,
         }
     }
 
@@ -261,6 +265,9 @@ impl Lowering<'_, '_, '_> {
         if values.iter().any(|(_, _, value)| matches!(value, Value::Kernel(_))) {
             return self.kernel_product(span, values, dimension);
         }
+        if values.iter().any(|(_, _, value)| matches!(value, Value::Spectrum(_))) {
+            return self.spectrum_product(values, dimension);
+        }
         let unit = product_unit(&values);
         let mut scalars = Vec::with_capacity(values.len());
         let mut varying: Option<(Span, Varying)> = None;
@@ -278,7 +285,7 @@ impl Lowering<'_, '_, '_> {
                     }
                     varying = Some((place, form));
                 }
-                Value::Kernel(_) | Value::Fault => return Value::Fault,
+                Value::Kernel(_) | Value::Spectrum(_) | Value::Fault => return Value::Fault,
             }
         }
         let known = scalars.iter().try_fold(1.0, |product, (inverse, number)| match number {
@@ -397,6 +404,10 @@ impl Lowering<'_, '_, '_> {
                 self.negative_weight(inner.span);
                 Value::Fault
             }
+            Value::Spectrum(_) => {
+                self.negative_spectrum(inner.span);
+                Value::Fault
+            }
         }
     }
 
@@ -405,11 +416,6 @@ impl Lowering<'_, '_, '_> {
             Diagnostic::new(Code::ValueRange, place, "the dimension of this is beyond all bounds")
                 .help("check the powers: no quantity of the trade has such a unit"),
         );
-    }
-
-    /// Whether a kernel may stand here, for calls.
-    pub(super) fn in_kernel(scope: Scope<'_>) -> bool {
-        scope.context == Context::Kernel
     }
 }
 
@@ -421,6 +427,7 @@ fn product_dimension(values: &[(bool, Span, Value)]) -> Option<Dimension> {
                 Value::Scalar(scalar) => scalar.dimension,
                 Value::Form(varying) => varying.dimension,
                 Value::Kernel(covariance) => covariance.dimension,
+                Value::Spectrum(density) => density.dimension,
                 Value::Fault => Dimension::PLAIN,
             };
             if *inverse {

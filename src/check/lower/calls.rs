@@ -2,7 +2,8 @@
 
 use super::not_yet::Later;
 use super::operations::OPERATIONS;
-use super::{Lowering, Scope, family};
+use super::spectrum_family::SPECTRA;
+use super::{Context, Lowering, Scope, family};
 use crate::check::names::{Resolved, choice, near};
 use crate::check::value::{Number, Scalar, Value};
 use crate::diagnostics::{Code, Diagnostic};
@@ -28,19 +29,6 @@ const DISTRIBUTIONS: &[&str] = &[
     "truncated_normal",
 ];
 
-/// The spectra of the language.
-const SPECTRA: &[&str] = &[
-    "white",
-    "pierson_moskowitz",
-    "jonswap",
-    "kanai_tajimi",
-    "clough_penzien",
-    "kaimal",
-    "von_karman",
-    "davenport",
-    "two_sided",
-];
-
 impl Lowering<'_, '_, '_> {
     pub(super) fn call(&mut self, span: Span, call: &Call, scope: Scope<'_>) -> Value {
         if let [word] = call.function.words.as_slice() {
@@ -51,12 +39,19 @@ impl Lowering<'_, '_, '_> {
             if let Some((_, divisor)) = ANGLE_COUNTS.iter().find(|(known, _)| *known == name) {
                 return self.angle_count(span, call, *divisor, scope);
             }
+            // Some names are those of a kernel and of a spectrum: where they stand decides.
+            if SPECTRA.contains(&name) && scope.context == Context::Spectrum {
+                return self.spectrum_family(span, call, name, scope);
+            }
             if family::FAMILIES.contains(&name) {
-                return if Self::in_kernel(scope) {
-                    self.family(span, call, name, scope)
-                } else {
-                    self.kernel_out_of_place(span, name)
+                return match scope.context {
+                    Context::Kernel => self.family(span, call, name, scope),
+                    Context::Spectrum => self.kernel_for_spectrum(span),
+                    Context::Plain => self.kernel_out_of_place(span, name),
                 };
+            }
+            if SPECTRA.contains(&name) {
+                return self.spectrum_out_of_place(span, name, scope);
             }
             if OPERATIONS.contains(&name) {
                 return self.operation(call, name, scope);
@@ -66,10 +61,6 @@ impl Lowering<'_, '_, '_> {
             }
             if DISTRIBUTIONS.contains(&name) {
                 self.not_yet(span, Later::Variables);
-                return Value::Fault;
-            }
-            if SPECTRA.contains(&name) {
-                self.not_yet(span, Later::Spectra);
                 return Value::Fault;
             }
         }
@@ -90,14 +81,19 @@ impl Lowering<'_, '_, '_> {
             DeclarationKind::Function {
                 keyword: FunctionKeyword::Kernel,
                 ..
-            } => {
-                if Self::in_kernel(scope) {
-                    self.user_kernel(item, call, scope)
-                } else {
-                    self.kernel_out_of_place(span, &name)
-                }
-            }
-            DeclarationKind::Function { .. } => Value::Fault, // profiles and spectra: reported where they are declared
+            } => match scope.context {
+                Context::Kernel => self.user_kernel(item, call, scope),
+                Context::Spectrum => self.kernel_for_spectrum(span),
+                Context::Plain => self.kernel_out_of_place(span, &name),
+            },
+            DeclarationKind::Function {
+                keyword: FunctionKeyword::Spectrum,
+                ..
+            } => match scope.context {
+                Context::Spectrum => self.user_spectrum(item, span, call, scope),
+                Context::Kernel | Context::Plain => self.spectrum_out_of_place(span, &name, scope),
+            },
+            DeclarationKind::Function { .. } => Value::Fault, // profiles: reported where they are declared
             _ => {
                 let help = "only functions, operations and kernels are called; to multiply, write `*`";
                 self.report(
@@ -123,6 +119,7 @@ impl Lowering<'_, '_, '_> {
         let known = functions
             .chain(angles)
             .chain(family::FAMILIES.iter().copied())
+            .chain(SPECTRA.iter().copied())
             .chain(OPERATIONS.iter().copied())
             .chain(["gaussian"])
             .chain(declared);
@@ -182,6 +179,10 @@ impl Lowering<'_, '_, '_> {
                         "a number",
                         "kernels are only added and multiplied",
                     );
+                }
+                Value::Spectrum(_) => {
+                    let help = "spectra are only added and scaled";
+                    self.wrong_kind(argument.value.span, "a spectrum", "a number", help);
                 }
             }
         }

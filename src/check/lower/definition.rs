@@ -66,13 +66,9 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
                 self.nothing_varies(kind, name, expression);
                 return Value::Fault;
             }
-            Value::Kernel(_) => {
-                self.wrong_kind(
-                    expression.span,
-                    "a kernel",
-                    "a process",
-                    "it is the argument of a `gaussian(...)`",
-                );
+            Value::Kernel(_) | Value::Spectrum(_) => {
+                let help = "it is the argument of a `gaussian(...)`";
+                self.wrong_kind(expression.span, value.kind(), "a process", help);
                 return Value::Fault;
             }
         };
@@ -87,7 +83,10 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
             }
             None => {}
         }
-        if !(self.within_tables(&varying, name) && self.within_responses(&varying, name)) {
+        if !(self.within_tables(&varying, name)
+            && self.within_responses(&varying, name)
+            && (kind == Kind::Process || self.of_finite_variance(&varying, expression.span)))
+        {
             return Value::Fault;
         }
         let index = self.model.varying.len();

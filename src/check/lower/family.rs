@@ -1,6 +1,7 @@
 //! The kernels the language knows by name, with their arguments.
 
 use super::arguments::Arguments;
+use super::spectrum_family::SPECTRA;
 use super::{Context, Lowering, Scope};
 use crate::check::value::{Covariance, Number, Value};
 use crate::covariance::kernel::{
@@ -126,28 +127,31 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    /// The kernel or the system, or a finding at the argument that none can have.
+    /// The kernel, the spectrum or the system, or a finding at the argument that none can have.
     pub(super) fn valid<T>(
         &mut self,
         span: Span,
         arguments: &Arguments<'_>,
-        kernel: Result<T, InvalidParameter>,
+        built: Result<T, InvalidParameter>,
     ) -> Option<T> {
-        match kernel {
-            Ok(kernel) => Some(kernel),
+        match built {
+            Ok(built) => Some(built),
             Err(fault) => {
                 let place = arguments
                     .get(fault.parameter)
                     .map_or(span, |expression| expression.span);
                 let message = format!("`{}` of `{}` must be {}", fault.parameter, fault.family, fault.demand);
                 let unit = match fault.parameter {
-                    "length" | "time_constant" | "over" => " s",
-                    "frequency" | "lower" | "upper" => " rad/s",
+                    "length" if SPECTRA.contains(&fault.family) => " m",
+                    "hs" => " m",
+                    "mean_speed" => " m/s",
+                    "length" | "tp" | "time_constant" | "over" => " s",
+                    "frequency" | "low_frequency" | "lower" | "upper" => " rad/s",
                     _ => "",
                 };
                 let here = format!("this is {}{unit}", show_number(fault.value, 6));
                 let mut finding = Diagnostic::new(Code::ValueRange, place, message).here(here);
-                if fault.parameter == "damping" && fault.value >= 1.0 {
+                if fault.parameter.ends_with("damping") && fault.value >= 1.0 {
                     finding.help = Some("write it as a share of critical damping, such as `2 %`".to_string());
                 }
                 self.report(finding);

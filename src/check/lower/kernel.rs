@@ -1,5 +1,6 @@
 //! Kernels that a model declares.
 
+use super::function::{Parameters, known_values};
 use super::{Context, Lowering, Scope};
 use crate::check::names::ItemId;
 use crate::check::origins::Found;
@@ -23,7 +24,7 @@ const LONG_BODY: usize = 1024;
 /// A kernel that a model declares.
 #[derive(Clone)]
 pub(super) struct KernelDefinition {
-    parameters: Vec<(Box<str>, Dimension)>,
+    parameters: Parameters,
     body: Body,
 }
 
@@ -51,28 +52,13 @@ impl Lowering<'_, '_, '_> {
         let faults = self.diagnostics.len();
         let declared = unit.map(|unit| self.unit(unit));
         let mut locals: Vec<(&str, Scalar)> = Vec::with_capacity(parameters.len());
-        let mut arguments = Vec::with_capacity(parameters.len());
+        let mut arguments = Parameters::new();
         match parameters.split_first() {
             Some((lag, others)) => {
                 self.lag(lag);
                 let node = self.arena.symbol(Symbol::Lag);
                 locals.push((&lag.name.text, Scalar::new(Number::Open(node), Dimension::TIME)));
-                for (index, parameter) in others.iter().enumerate() {
-                    if locals.iter().any(|(known, _)| *known == &*parameter.name.text) {
-                        let message = format!("`{}` is an argument twice", parameter.name.text);
-                        self.report(
-                            Diagnostic::new(Code::NameRepeated, parameter.name.span, message)
-                                .help("give one of the two another name"),
-                        );
-                    }
-                    let unit = parameter.unit.as_ref().map(|unit| self.unit(unit));
-                    let dimension = unit.flatten().map_or(Dimension::PLAIN, |unit| unit.dimension());
-                    let node = self
-                        .arena
-                        .symbol(Symbol::Argument(u16::try_from(index).unwrap_or(u16::MAX)));
-                    locals.push((&parameter.name.text, Scalar::new(Number::Open(node), dimension)));
-                    arguments.push((parameter.name.text.clone(), dimension));
-                }
+                arguments = self.open_arguments(others, &mut locals);
             }
             None => self.no_lag(name),
         }
@@ -97,6 +83,11 @@ impl Lowering<'_, '_, '_> {
                 None => Body::Fault,
             },
             Value::Kernel(_) => Body::Kernels,
+            Value::Spectrum(_) => {
+                let help = "a kernel is a function of the lag; a density over frequency is a `spectrum`";
+                self.wrong_kind(body.span, "a spectrum", "a function of the lag", help);
+                Body::Fault
+            }
             Value::Form(_) => {
                 let help = "a kernel is made of the lag, its arguments and constants";
                 self.wrong_kind(body.span, "a process", "a function of the lag", help);
@@ -140,48 +131,10 @@ impl Lowering<'_, '_, '_> {
         let Some(definition) = self.kernels.get(&item).cloned() else {
             return Value::Fault;
         };
-        let names: Vec<&str> = definition.parameters.iter().map(|(name, _)| &**name).collect();
-        if let Some(word) = call
-            .arguments
-            .iter()
-            .filter_map(|one| one.name.as_ref())
-            .find(|word| &*word.text == "tau")
-        {
-            let message = format!("`{}` is called without its lag", super::word_text(&call.function));
-            self.report(Diagnostic::new(Code::CallArgument, word.span, message).help("leave `tau` out"));
-            return Value::Fault;
-        }
-        let Some(arguments) = self.arguments(call, &[], &names) else {
+        let Some(scalars) = self.called_with(call, &definition.parameters, (&["tau"], "lag"), scope) else {
             return Value::Fault;
         };
-        let mut scalars: Vec<(&str, Scalar)> = Vec::new();
-        for (name, dimension) in &definition.parameters {
-            let example = match dimension.si_name().as_str() {
-                "1" => "1".to_string(),
-                unit => format!("1 {unit}"),
-            };
-            let Some(expression) = self.required(&arguments, name, &example) else {
-                continue;
-            };
-            let plain = Scope {
-                context: Context::Plain,
-                ..scope
-            };
-            if let Some(scalar) = self.number(expression, plain, *dimension, &format!("`{name}`"), None) {
-                scalars.push((name, scalar));
-            }
-        }
-        let unset = scalars.iter().any(|(_, scalar)| scalar.value == Number::Unset);
-        if unset || scalars.len() < definition.parameters.len() {
-            return Value::Fault;
-        }
-        let known: Option<Vec<(String, f64)>> = scalars
-            .iter()
-            .map(|(name, scalar)| match scalar.value {
-                Number::Known(value) => Some((name.to_string(), value)),
-                _ => None,
-            })
-            .collect();
+        let known = known_values(&scalars);
         match (&definition.body, known) {
             (Body::Fault, _) => Value::Fault,
             (Body::Tape(tape, dimension), Some(values)) => Value::Kernel(Covariance {
@@ -203,26 +156,41 @@ impl Lowering<'_, '_, '_> {
 
     /// The body of a kernel made of kernels, with the values of its arguments.
     fn expanded(&mut self, item: ItemId, call: &Call, scalars: Vec<(&str, Scalar)>) -> Value {
+        let Some(value) = self.expanding(item, call, |lowering| lowering.body_with(item, call, scalars)) else {
+            return Value::Fault;
+        };
+        value
+    }
+
+    /// Looks into the body of a function made of others, unless that goes too deep or on for too long.
+    pub(super) fn expanding(
+        &mut self,
+        item: ItemId,
+        call: &Call,
+        look: impl FnOnce(&mut Self) -> Value,
+    ) -> Option<Value> {
         if self.expansion_depth >= DEEPEST_KERNEL || self.expansions >= MOST_KERNEL_CALLS {
             self.too_many_kernels(call);
-            return Value::Fault;
+            return None;
         }
         self.expansion_depth += 1;
         // A body longer than a screen counts as several calls, so that the work is bounded and not its count alone.
         let body = self.names.declaration(item).span.range().len();
         self.expansions += 1 + body / LONG_BODY;
-        let value = self.body_with(item, call, scalars);
+        let value = look(self);
         self.expansion_depth -= 1;
-        value
+        Some(value)
     }
 
     fn too_many_kernels(&mut self, call: &Call) {
         let message = format!(
-            "kernels made of kernels are followed {DEEPEST_KERNEL} deep and through {MOST_KERNEL_CALLS} calls, not further"
+            "kernels made of kernels, and spectra of spectra, are followed {DEEPEST_KERNEL} deep and through \
+             {MOST_KERNEL_CALLS} calls, not further"
         );
-        self.report(Diagnostic::new(Code::ModelTooLarge, call.function.span, message).help(
-            "write the kernel out: one that calls another twice, which calls a third twice, grows as powers of two",
-        ));
+        self.report(
+            Diagnostic::new(Code::ModelTooLarge, call.function.span, message)
+                .help("write it out: one that calls another twice, which calls a third twice, grows as powers of two"),
+        );
     }
 
     fn body_with(&mut self, item: ItemId, call: &Call, scalars: Vec<(&str, Scalar)>) -> Value {

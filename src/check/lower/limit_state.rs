@@ -348,8 +348,8 @@ impl Lowering<'_, '_, '_> {
                 self.report(finding);
                 None
             }
-            Value::Kernel(_) => {
-                self.wrong_kind(margin.span, "a kernel", "a margin", "name a margin");
+            other @ (Value::Kernel(_) | Value::Spectrum(_)) => {
+                self.wrong_kind(margin.span, other.kind(), "a margin", "name a margin");
                 None
             }
         }
@@ -389,6 +389,9 @@ impl Lowering<'_, '_, '_> {
 
     /// Whether crossings can be counted: every source must have the derivative that the margin needs.
     fn crossable(&mut self, varying: &Varying, place: Span, name: &Word) -> bool {
+        if !self.of_finite_variance(varying, place) {
+            return false;
+        }
         let rough: Vec<_> = varying
             .form
             .by_source()

@@ -142,6 +142,9 @@ fn hint(found: Dimension, wanted: Dimension, unit: Option<&Unit>) -> Option<Stri
     if (found, wanted) == (Dimension::TIME, Dimension::ANGULAR_FREQUENCY) {
         return Some("write `1 turn / ...` to make a frequency of a period".to_string());
     }
+    if (found, wanted) == (Dimension::ANGULAR_FREQUENCY, Dimension::TIME) {
+        return Some("write `1 turn / ...` to make a period of a frequency".to_string());
+    }
     let factor = wanted.over(found)?;
     Some(format!(
         "multiply it by something in {}, or correct a unit",

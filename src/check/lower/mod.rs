@@ -2,12 +2,14 @@
 
 mod arguments;
 mod arithmetic;
+mod by_spectrum;
 mod calls;
 mod covariance;
 mod definition;
 mod expectation;
 mod extremes;
 mod family;
+mod function;
 mod kernel;
 mod limit_state;
 mod mismatch;
@@ -20,6 +22,10 @@ mod power;
 mod process;
 mod response_table;
 mod slash_unit;
+mod spectrum;
+mod spectrum_arithmetic;
+mod spectrum_family;
+mod spectrum_table;
 mod system;
 mod table;
 mod unit;
@@ -41,6 +47,7 @@ use crate::source::Span;
 use crate::units::{Dimension, Unit};
 use kernel::KernelDefinition;
 use not_yet::Later;
+use spectrum::SpectrumDefinition;
 use std::collections::HashMap;
 use std::rc::Rc;
 
@@ -71,6 +78,8 @@ enum Context {
     Plain,
     /// In a correlation or covariance function.
     Kernel,
+    /// In a spectral density.
+    Spectrum,
 }
 
 impl Scope<'_> {
@@ -85,6 +94,13 @@ impl Scope<'_> {
     fn in_kernel(self) -> Self {
         Self {
             context: Context::Kernel,
+            ..self
+        }
+    }
+
+    fn in_spectrum(self) -> Self {
+        Self {
+            context: Context::Spectrum,
             ..self
         }
     }
@@ -114,6 +130,10 @@ pub struct Lowering<'p, 'l, 'f> {
     kernels: HashMap<ItemId, KernelDefinition>,
     tables: HashMap<std::path::PathBuf, Option<Rc<table::Table>>>,
     responses: HashMap<std::path::PathBuf, Option<Rc<response_table::ResponseTable>>>,
+    spectra: HashMap<ItemId, SpectrumDefinition>,
+    spectrum_tables: HashMap<std::path::PathBuf, Option<Rc<spectrum_table::Table>>>,
+    /// Operations in written spectra that have been looked at, over all calls.
+    written: usize,
     terms: usize,
     /// Pairs of terms over one source, in all forms together.
     pairs: usize,
@@ -141,6 +161,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             kernels: HashMap::new(),
             tables: HashMap::new(),
             responses: HashMap::new(),
+            spectra: HashMap::new(),
+            spectrum_tables: HashMap::new(),
+            written: 0,
             terms: 0,
             pairs: 0,
             expansion_depth: 0,
@@ -292,8 +315,11 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             } => self.not_yet(declaration.keyword, Later::Profiles),
             DeclarationKind::Function {
                 keyword: FunctionKeyword::Spectrum,
-                ..
-            } => self.not_yet(declaration.keyword, Later::Spectra),
+                parameters,
+                unit,
+                value,
+                name,
+            } => self.spectrum_definition(item, name, parameters, unit.as_ref(), value),
             DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, Later::Climates),
             DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, Later::Correlations),
             // Looked at once everything has been found that it could accept.
@@ -371,6 +397,11 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                     &format!("a number for {what}"),
                     "kernels stand in `correlation:`",
                 );
+                None
+            }
+            Value::Spectrum(_) => {
+                let help = "spectra stand in `spectrum:`";
+                self.wrong_kind(place, "a spectrum", &format!("a number for {what}"), help);
                 None
             }
         }

@@ -54,29 +54,31 @@ impl Lowering<'_, '_, '_> {
                 self.wrong_kind(path.span, "a limit state", "a quantity", "name the margin it speaks of");
                 Value::Fault
             }
-            (
-                DeclarationKind::Function {
-                    keyword: FunctionKeyword::Kernel,
-                    ..
-                },
-                _,
-            ) => {
+            (DeclarationKind::Function { keyword, .. }, _) if *keyword != FunctionKeyword::Profile => {
+                let (what, home) = match keyword {
+                    FunctionKeyword::Spectrum => ("spectrum", Context::Spectrum),
+                    _ => ("kernel", Context::Kernel),
+                };
                 let help = format!("call it with its arguments: `{}(...)`", word_text(path));
-                if scope.context == Context::Kernel {
-                    self.wrong_kind(
-                        path.span,
-                        "the name of a kernel",
-                        "the kernel with its arguments",
-                        &help,
-                    );
+                let (found, wanted) = if scope.context == home {
+                    (
+                        format!("the name of a {what}"),
+                        format!("the {what} with its arguments"),
+                    )
                 } else {
-                    self.wrong_kind(path.span, "a kernel", "a quantity", &help);
-                }
+                    (format!("a {what}"), "a quantity".to_string())
+                };
+                self.wrong_kind(path.span, &found, &wanted, &help);
                 Value::Fault
             }
             (_, Some(Value::Form(_))) if scope.context == Context::Kernel => {
                 let help = "a kernel is made of the lag, its arguments, constants and other kernels";
                 self.wrong_kind(path.span, "a process", "a part of a kernel", help);
+                Value::Fault
+            }
+            (_, Some(Value::Form(_))) if scope.context == Context::Spectrum => {
+                let help = "a spectrum is made of the frequency, its arguments, constants and other spectra";
+                self.wrong_kind(path.span, "a process", "a part of a spectrum", help);
                 Value::Fault
             }
             (_, Some(value)) => value.clone(),

@@ -13,7 +13,6 @@ pub(super) enum Later {
     Profiles,
     Time,
     Climates,
-    Spectra,
     Systems,
     Hazards,
 }
@@ -27,7 +26,6 @@ impl Later {
             Self::Profiles => "profiles of time",
             Self::Time => "quantities that change with the time `t`",
             Self::Climates => "climates",
-            Self::Spectra => "spectra",
             Self::Systems => "systems of several conditions",
             Self::Hazards => "annual and point-in-time quantities",
         }
@@ -42,7 +40,6 @@ impl Later {
             Self::Quantities => "use a `constant` or a `parameter`",
             Self::Profiles | Self::Time => "use a `constant` with the least favourable value of the service life",
             Self::Climates => "use a `parameter` for the state, and evaluate the states one by one",
-            Self::Spectra => "describe the process by its `correlation` or `autocovariance`",
             Self::Systems => {
                 "make a limit state of each condition: their failure probabilities add up to an upper bound of `any`"
             }

@@ -65,6 +65,9 @@ impl Lowering<'_, '_, '_> {
                 continue;
             };
             if !existence::has_derivative(source, terms, 0) {
+                if !self.of_finite_variance(&varying, subject.span) {
+                    return Value::Fault;
+                }
                 let finding = self.not_differentiable(subject.span, id, "has no derivative to use here");
                 self.report(finding);
                 return Value::Fault;
@@ -96,10 +99,16 @@ impl Lowering<'_, '_, '_> {
         )
         .here("needs its derivative")
         .label(source.place, source.roughness_in_words())
-        .help(
-            "use a kernel that is smoother at lag 0, such as `matern(smoothness: 5/2, ...)` or \
-             `squared_exponential(...)`, if the physics allows it: a rough kernel crosses any level infinitely often",
-        )
+        .help(match source.kernel() {
+            Some(_) => {
+                "use a kernel that is smoother at lag 0, such as `matern(smoothness: 5/2, ...)` or \
+                 `squared_exponential(...)`, if the physics allows it: a rough kernel crosses any level infinitely often"
+            }
+            None => {
+                "pass it through what smooths it, such as `average(...)` or `respond(...)`, if the physics has it: what \
+                 has so much power at high frequency crosses any level infinitely often"
+            }
+        })
     }
 
     fn delay(&mut self, call: &Call, scope: Scope<'_>) -> Value {

@@ -27,6 +27,15 @@ impl Lowering<'_, '_, '_> {
                 self.wrong_kind(base.span, "a kernel", "a number to take a power of", help);
                 return Value::Fault;
             }
+            (Value::Spectrum(_), _) => {
+                self.wrong_kind(
+                    base.span,
+                    "a spectrum",
+                    "a number to take a power of",
+                    "spectra are only added and scaled",
+                );
+                return Value::Fault;
+            }
             (Value::Scalar(base), Some(exponent)) => (base, exponent),
         };
         let known = match exponent_value.value {

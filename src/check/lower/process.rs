@@ -2,13 +2,12 @@
 
 use super::arguments::Arguments;
 use super::covariance::{constant_of, table_notes};
-use super::not_yet::Later;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::Kind;
 use crate::check::names::ItemId;
 use crate::check::value::{Covariance, Number, Scalar, Value};
-use crate::covariance::kernel::{Kernel, Smoothness};
-use crate::covariance::source::Source;
+use crate::covariance::kernel::Smoothness;
+use crate::covariance::source::{Law, Source};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Expression, ExpressionKind, Word};
 use crate::source::Span;
@@ -30,22 +29,22 @@ const ARGUMENTS: &[&str] = &[
 
 /// What a source is called in messages, and what is known of it before its arguments are looked at.
 #[derive(Clone, Copy)]
-struct Subject<'a> {
-    name: &'a Word,
-    dimension: Option<Dimension>,
-    scope: Scope<'a>,
+pub(super) struct Subject<'a> {
+    pub name: &'a Word,
+    pub dimension: Option<Dimension>,
+    pub scope: Scope<'a>,
 }
 
-/// A process by its mean and its covariance function.
-struct Description {
-    mean: f64,
-    kernel: Kernel,
-    /// Where the kernel stands.
-    place: Span,
-    dimension: Dimension,
-    unit: Option<Rc<Unit>>,
+/// A process by its mean and its covariance function or its spectrum.
+pub(super) struct Description {
+    pub mean: f64,
+    pub law: Law,
+    /// Where the kernel or the spectrum stands.
+    pub place: Span,
+    pub dimension: Dimension,
+    pub unit: Option<Rc<Unit>>,
     /// What was taken for granted, for the reader of results.
-    notes: Vec<String>,
+    pub notes: Vec<String>,
 }
 
 impl Lowering<'_, '_, '_> {
@@ -73,7 +72,12 @@ impl Lowering<'_, '_, '_> {
         let Some(description) = self.description(call, subject) else {
             return Value::Fault;
         };
-        self.sample_for_validity(&description.kernel, description.place)
+        let sound = match &description.law {
+            Law::Kernel(kernel) => self.sample_for_validity(kernel, description.place),
+            // Looked at where it is made.
+            Law::Spectrum(_) => Some(()),
+        };
+        sound
             .and_then(|()| self.finish(item, name, description))
             .unwrap_or(Value::Fault)
     }
@@ -89,8 +93,10 @@ impl Lowering<'_, '_, '_> {
 
     fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
         let mut notes = description.notes;
-        notes.extend(table_notes(&description.kernel, &self.names.full_name(item)));
-        let source = Source::new(self.names.full_name(item), description.kernel, name.span, notes);
+        if let Law::Kernel(kernel) = &description.law {
+            notes.extend(table_notes(kernel, &self.names.full_name(item)));
+        }
+        let source = Source::new(self.names.full_name(item), description.law, name.span, notes);
         if let Smoothness::Unclear { reason } = source.smoothness() {
             let message = format!("it cannot be told how smooth the process `{}` is", name.text);
             let finding = Diagnostic::new(Code::KernelUnclear, description.place, message)
@@ -112,10 +118,6 @@ impl Lowering<'_, '_, '_> {
             return None;
         };
         let name = &subject.name.text;
-        if let Some(word) = arguments.word("spectrum") {
-            self.not_yet(word.span, Later::Spectra);
-            return None;
-        }
         let given = |names: &[&str]| -> Vec<Span> {
             names
                 .iter()
@@ -123,23 +125,31 @@ impl Lowering<'_, '_, '_> {
                 .map(|word| word.span)
                 .collect()
         };
+        // A scatter stands beside a correlation or a spectrum.
+        let by_correlation: &[&str] = if arguments.get("spectrum").is_some() {
+            &["correlation"]
+        } else {
+            &["standard_deviation", "coefficient_of_variation", "correlation"]
+        };
         let ways = [
-            given(&["standard_deviation", "coefficient_of_variation", "correlation"]),
+            given(by_correlation),
             given(&["autocovariance"]),
             given(&["autocorrelation"]),
+            given(&["spectrum"]),
         ];
         let used: Vec<&Span> = ways.iter().filter_map(|places| places.first()).collect();
         match used.as_slice() {
             [] => {
                 let message = format!("the process `{name}` has no description of how it varies");
                 self.report(Diagnostic::new(Code::ProcessDescription, call.brackets, message).help(
-                    "give `standard_deviation` (or `coefficient_of_variation`) with `correlation`, or \
-                     `autocovariance`, or `autocorrelation`",
+                    "give `standard_deviation` (or `coefficient_of_variation`) with `correlation`, or one of \
+                     `autocovariance`, `autocorrelation` and `spectrum`",
                 ));
                 None
             }
             [_] if !ways[1].is_empty() => self.by_autocovariance(&arguments, subject),
             [_] if !ways[2].is_empty() => self.by_autocorrelation(&arguments, subject),
+            [_] if !ways[3].is_empty() => self.by_spectrum(call, &arguments, subject),
             [_] => self.by_correlation(call, &arguments, subject),
             [first, second, ..] => {
                 let message = format!("the process `{name}` is described twice");
@@ -156,19 +166,13 @@ impl Lowering<'_, '_, '_> {
 
     /// Standard deviation or coefficient of variation, and a correlation function.
     fn by_correlation(&mut self, call: &Call, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Description> {
-        let (deviation, variation) = (
-            arguments.get("standard_deviation"),
-            arguments.get("coefficient_of_variation"),
-        );
-        if let (Some(_), Some(word)) = (deviation, arguments.word("coefficient_of_variation")) {
-            let message = format!("the process `{}` has its scatter given twice", subject.name.text);
-            self.report(
-                Diagnostic::new(Code::ProcessDescription, word.span, message)
-                    .help("keep `standard_deviation` or `coefficient_of_variation`, not both"),
-            );
+        let given = ["standard_deviation", "coefficient_of_variation"]
+            .iter()
+            .find_map(|name| arguments.get(name));
+        if !self.scattered_once(arguments, subject) {
             return None;
         }
-        if deviation.is_none() && variation.is_none() {
+        if given.is_none() {
             let message = format!("the process `{}` has a correlation but no scatter", subject.name.text);
             self.report(
                 Diagnostic::new(Code::ProcessDescription, call.brackets, message)
@@ -183,13 +187,8 @@ impl Lowering<'_, '_, '_> {
                     .help("add `correlation: ...`, such as `matern(smoothness: 5/2, length: 10 s)`"),
             );
         }
-        let given = deviation.or(variation);
         let mean = self.mean(arguments, subject);
-        let scatter = match (deviation, variation) {
-            (Some(expression), _) => self.deviation(expression, mean.as_ref(), subject),
-            (None, Some(expression)) => self.variation(expression, arguments, mean.as_ref(), subject),
-            (None, None) => None,
-        };
+        let scatter = self.scatter(arguments, mean.as_ref(), subject);
         let kernel = correlation.and_then(|expression| {
             let kernel = self.kernel(expression, subject.scope, Dimension::PLAIN, "a correlation function")?;
             self.one_at_zero(&kernel, expression.span)?;
@@ -209,7 +208,7 @@ impl Lowering<'_, '_, '_> {
         let kernel = kernel.scaled(variance).ok()?;
         Some(Description {
             mean: mean_value,
-            kernel,
+            law: kernel.into(),
             place,
             dimension: deviation.dimension,
             unit: mean.unit.clone().or(deviation.unit),
@@ -217,8 +216,42 @@ impl Lowering<'_, '_, '_> {
         })
     }
 
+    /// Refuses a scatter that is given twice.
+    fn scattered_once(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> bool {
+        let (Some(_), Some(word)) = (
+            arguments.get("standard_deviation"),
+            arguments.word("coefficient_of_variation"),
+        ) else {
+            return true;
+        };
+        let message = format!("the process `{}` has its scatter given twice", subject.name.text);
+        self.report(
+            Diagnostic::new(Code::ProcessDescription, word.span, message)
+                .help("keep `standard_deviation` or `coefficient_of_variation`, not both"),
+        );
+        false
+    }
+
+    /// The standard deviation, given as such or as a share of the mean; `None` where it is neither, or at fault.
+    pub(super) fn scatter(
+        &mut self,
+        arguments: &Arguments<'_>,
+        mean: Option<&Scalar>,
+        subject: Subject<'_>,
+    ) -> Option<Scalar> {
+        let (deviation, variation) = (
+            arguments.get("standard_deviation"),
+            arguments.get("coefficient_of_variation"),
+        );
+        match (deviation, variation) {
+            (Some(expression), _) => self.deviation(expression, mean, subject),
+            (None, Some(expression)) => self.variation(expression, arguments, mean, subject),
+            (None, None) => None,
+        }
+    }
+
     /// A variance that no double holds.
-    fn variance_beyond_bounds(&mut self, place: Span, subject: Subject<'_>) {
+    pub(super) fn variance_beyond_bounds(&mut self, place: Span, subject: Subject<'_>) {
         let message = format!(
             "the square of the standard deviation of `{}` is beyond all bounds",
             subject.name.text
@@ -230,7 +263,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     /// The mean; a bare 0 where none is given. `None` where it is at fault.
-    fn mean(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Scalar> {
+    pub(super) fn mean(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> Option<Scalar> {
         let Some(expression) = arguments.get("mean") else {
             let mut zero = Scalar::new(Number::Known(0.0), Dimension::PLAIN);
             zero.bare_zero = true;
@@ -315,7 +348,7 @@ impl Lowering<'_, '_, '_> {
         self.positive_variance(&covariance.kernel, expression.span, "autocovariance")?;
         Some(Description {
             mean: known(&mean)?,
-            kernel: covariance.kernel,
+            law: covariance.kernel.into(),
             place: expression.span,
             dimension,
             unit: mean.unit,
@@ -405,7 +438,7 @@ impl Lowering<'_, '_, '_> {
         self.positive_variance(&kernel, expression.span, "autocorrelation less the square of the mean")?;
         Some(Description {
             mean: mean_value,
-            kernel,
+            law: kernel.into(),
             place: expression.span,
             dimension,
             unit: mean.unit,
@@ -414,7 +447,7 @@ impl Lowering<'_, '_, '_> {
     }
 }
 
-fn known(scalar: &Scalar) -> Option<f64> {
+pub(super) fn known(scalar: &Scalar) -> Option<f64> {
     match scalar.value {
         Number::Known(value) => Some(value),
         Number::Open(_) | Number::Unset => None,

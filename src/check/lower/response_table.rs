@@ -2,7 +2,7 @@
 
 use super::Lowering;
 use super::arguments::Arguments;
-use super::table::Column;
+use super::table::{Column, Columns, Demanded};
 use crate::covariance::kernel::Beyond;
 use crate::covariance::response::{FrequencyResponse, InvalidResponse};
 use crate::language::tree::{Call, Expression};
@@ -24,15 +24,15 @@ pub(super) struct ResponseTable {
 const COLUMNS: [Column; 3] = [
     Column {
         name: "frequency",
-        dimension: Some(Dimension::ANGULAR_FREQUENCY),
+        dimension: Demanded::Exactly(Dimension::ANGULAR_FREQUENCY),
     },
     Column {
         name: "modulus",
-        dimension: None,
+        dimension: Demanded::Any,
     },
     Column {
         name: "phase",
-        dimension: Some(Dimension::ANGLE),
+        dimension: Demanded::Exactly(Dimension::ANGLE),
     },
 ];
 
@@ -63,7 +63,12 @@ impl Lowering<'_, '_, '_> {
     }
 
     fn read_response_table(&mut self, file: FileId, name: &str, named: Span) -> Option<ResponseTable> {
-        let ([frequencies, moduli, phases], [_, dimension, _]) = self.columns(file, named, &COLUMNS)?;
+        let Columns {
+            values: [frequencies, moduli, phases],
+            units,
+            head,
+        } = self.columns(file, named, &COLUMNS)?;
+        let dimension = units.get(1)?.dimension();
         let rows: Vec<[f64; 3]> = frequencies
             .iter()
             .zip(&moduli)
@@ -77,7 +82,7 @@ impl Lowering<'_, '_, '_> {
                 dimension,
             }),
             Err(why) => {
-                self.response_fault(&why, &frequencies, Span::new(file, 0, 0), named);
+                self.response_fault(&why, &frequencies, head, named);
                 None
             }
         }

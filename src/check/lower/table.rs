@@ -7,7 +7,7 @@ use crate::diagnostics::{Code, Diagnostic};
 use crate::language::parse_expression;
 use crate::language::tree::{Expression, ExpressionKind, Text};
 use crate::source::{FileId, Span, beside};
-use crate::units::{self, Dimension, Unit};
+use crate::units::{self, Base, Dimension, Unit};
 use std::path::{Path, PathBuf};
 use std::rc::Rc;
 
@@ -15,7 +15,7 @@ use std::rc::Rc;
 const MOST_ROWS: usize = 1_000_000;
 
 /// Findings in one file; further rows are not looked at.
-const MOST_FINDINGS: usize = 20;
+pub(super) const MOST_FINDINGS: usize = 20;
 
 /// The content of a kernel's table, in SI units.
 pub(super) struct Table {
@@ -25,23 +25,37 @@ pub(super) struct Table {
     pub rows: Vec<(f64, f64)>,
 }
 
-/// A column that a table must have; of any dimension where none is asked for.
+/// A column that a table must have.
 pub(super) struct Column {
     pub name: &'static str,
-    pub dimension: Option<Dimension>,
+    pub dimension: Demanded,
 }
 
-/// The columns of a file in SI units, each number with its place, and their dimensions.
-type Columns<const N: usize> = ([Vec<(f64, Span)>; N], [Dimension; N]);
+/// The dimension that a column must have.
+pub(super) enum Demanded {
+    Exactly(Dimension),
+    /// Something per Hz or per rad/s.
+    PerFrequency,
+    /// Any: it says what the table is of.
+    Any,
+}
+
+/// The columns of a file in SI units, each number with its place, and the units they were written in.
+pub(super) struct Columns<const N: usize> {
+    pub values: [Vec<(f64, Span)>; N],
+    pub units: Vec<Rc<Unit>>,
+    /// The row of names.
+    pub head: Span,
+}
 
 const KERNEL_COLUMNS: [Column; 2] = [
     Column {
         name: "lag",
-        dimension: Some(Dimension::TIME),
+        dimension: Demanded::Exactly(Dimension::TIME),
     },
     Column {
         name: "correlation",
-        dimension: Some(Dimension::PLAIN),
+        dimension: Demanded::Exactly(Dimension::PLAIN),
     },
 ];
 
@@ -88,7 +102,7 @@ impl Lowering<'_, '_, '_> {
     }
 
     fn read_kernel_table(&mut self, file: FileId, name: &str, named: Span) -> Option<Table> {
-        let ([lags, correlations], _) = self.columns(file, named, &KERNEL_COLUMNS)?;
+        let [lags, correlations] = self.columns(file, named, &KERNEL_COLUMNS)?.values;
         let rows: Vec<(f64, f64, Span)> = lags
             .into_iter()
             .zip(correlations)
@@ -203,9 +217,12 @@ impl Lowering<'_, '_, '_> {
                 break;
             }
         }
-        let dimension = |found: &Option<(usize, Rc<Unit>)>| found.as_ref().map(|(_, unit)| unit.dimension());
-        let dimensions = std::array::from_fn(|index| found.get(index).and_then(dimension).unwrap_or(Dimension::PLAIN));
-        (self.diagnostics.len() == before).then_some((columns, dimensions))
+        let units = found.into_iter().flatten().map(|(_, unit)| unit).collect();
+        (self.diagnostics.len() == before).then_some(Columns {
+            values: columns,
+            units,
+            head,
+        })
     }
 
     /// Where a column stands, and its unit; its absence and a wrong unit are reported.
@@ -254,27 +271,45 @@ impl Lowering<'_, '_, '_> {
                 }
             }
         };
-        if let Some(dimension) = wanted.dimension
-            && dimension != unit.dimension()
-        {
-            let message = format!(
-                "the column `{}` must be {}, not {}",
-                wanted.name,
-                dimension.describe(),
-                unit.dimension().describe()
-            );
-            let mut finding = Diagnostic::new(Code::UnitMismatch, head, message).label(named, "the file is named here");
-            let examples = [
-                (Dimension::TIME, "s"),
-                (Dimension::ANGULAR_FREQUENCY, "Hz"),
-                (Dimension::ANGLE, "deg"),
-            ];
-            let example = examples.iter().find(|(known, _)| *known == dimension);
-            finding.help = example.map(|(_, unit)| format!("write its unit in the header: `{} [{unit}]`", wanted.name));
-            self.report(finding);
+        if let Some(finding) = misfit(wanted, &unit, head) {
+            self.report(finding.label(named, "the file is named here"));
             return None;
         }
         Some((index, Rc::new(unit)))
+    }
+}
+
+/// What is wrong with the unit of a column.
+fn misfit(wanted: &Column, unit: &Unit, head: Span) -> Option<Diagnostic> {
+    let (name, found) = (wanted.name, unit.dimension());
+    match wanted.dimension {
+        Demanded::Exactly(dimension) if found == dimension => None,
+        Demanded::Exactly(dimension) => {
+            let (there, here) = (dimension.describe(), found.describe());
+            let angle = found.without_angle() == dimension.without_angle();
+            let code = if angle { Code::UnitAngle } else { Code::UnitMismatch };
+            let finding = Diagnostic::new(code, head, format!("the column `{name}` must be {there}, not {here}"));
+            let units = if dimension == Dimension::TIME {
+                format!("`{name} [s]`")
+            } else if dimension == Dimension::ANGULAR_FREQUENCY {
+                format!("`{name} [Hz]` or `{name} [rad/s]`")
+            } else if dimension == Dimension::ANGLE {
+                format!("`{name} [deg]` or `{name} [rad]`")
+            } else {
+                return Some(finding);
+            };
+            Some(finding.help(format!("write its unit in the header: {units}")))
+        }
+        Demanded::Any => None,
+        Demanded::PerFrequency if *found.exponent(Base::Angle).numer() == -1 => None,
+        Demanded::PerFrequency => {
+            let message = format!(
+                "the column `{name}` must be per Hz or per rad/s: it is {}",
+                found.describe()
+            );
+            let help = format!("write its unit in the header, such as `{name} [m^2/Hz]` or `{name} [m^2/(rad/s)]`");
+            Some(Diagnostic::new(Code::UnitAngle, head, message).help(help))
+        }
     }
 }
 

@@ -120,6 +120,11 @@ impl Tabulated {
         self.beyond
     }
 
+    /// What holds between its rows.
+    pub fn interpolation(&self) -> Interpolation {
+        self.interpolation
+    }
+
     /// The first row: frequency in rad/s and density.
     pub fn first(&self) -> (f64, f64) {
         self.rows.first().copied().unwrap_or_default()

@@ -77,8 +77,9 @@ impl fmt::Display for InvalidSpectrum {
 
 impl std::error::Error for InvalidSpectrum {}
 
-/// Integrand values after which an integral is given up.
+/// Integrand values after which an integral is given up, and the operations they may take.
 const EVALUATIONS: usize = 200_000;
+const OPERATIONS: usize = 100_000_000;
 
 /// The relative error aimed at.
 const RELATIVE: f64 = 1e-12;
@@ -159,7 +160,8 @@ impl User {
             relative: RELATIVE,
         };
         // Nothing lies between the ends of a single power.
-        let middle = quadrature::between(integrand, &self.breakpoints, tolerance, EVALUATIONS);
+        let evaluations = EVALUATIONS.min(OPERATIONS / self.tape.size().max(1));
+        let middle = quadrature::between(integrand, &self.breakpoints, tolerance, evaluations);
         Ok(middle.map_or(ends, |middle| {
             ends.plus(Estimate {
                 value: middle.value,
