@@ -22,6 +22,9 @@ pub(super) fn special(fault: &Fault<'_>) -> Option<Diagnostic> {
         missing_colon_or_comma,
         missing_colon,
         unit_in_two,
+        text_without_quotes,
+        value_without_text,
+        missing_operator,
     ]
     .into_iter()
     .find_map(|mend| mend(fault))
@@ -268,6 +271,39 @@ fn unit_in_two(fault: &Fault<'_>) -> Option<Diagnostic> {
         return None;
     }
     let help = format!("write `{first}*{}` if both belong to the unit", fault.found);
+    Some(fault.plain().help(help))
+}
+
+/// `basis drawing`
+fn text_without_quotes(fault: &Fault<'_>) -> Option<Diagnostic> {
+    let begins = fault.found.starts_with(is_word_char);
+    if fault.missing || !begins || !fault.expects(Rule::string) || fault.expects_value() {
+        return None;
+    }
+    let before = word_before(fault).map_or(String::new(), |word| format!("{word} "));
+    let help = format!("write `{before}\"{} ...\"`", fault.found);
+    Some(fault.plain().help(help))
+}
+
+/// `constant width =`
+fn value_without_text(fault: &Fault<'_>) -> Option<Diagnostic> {
+    let before = fault.reader.slice(fault.start..fault.last_end);
+    if !fault.missing || !fault.expects_value() || !before.ends_with('=') {
+        return None;
+    }
+    Some(fault.plain().help("write the value, or remove the declaration"))
+}
+
+/// `force lever`
+fn missing_operator(fault: &Fault<'_>) -> Option<Diagnostic> {
+    let first = word_before(fault)?;
+    let both_names = [first, fault.found]
+        .into_iter()
+        .all(|word| word.starts_with(|c: char| c.is_alphabetic() || c == '_') && !is_reserved(word));
+    if fault.missing || !both_names || !fault.expects(Rule::multiplicative) {
+        return None;
+    }
+    let help = format!("write `{first} * {}` to multiply", fault.found);
     Some(fault.plain().help(help))
 }
 

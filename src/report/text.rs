@@ -10,6 +10,9 @@ use std::io::{self, Write};
 /// Significant digits of values.
 const DIGITS: usize = 5;
 
+/// At most so many names of what has no basis are listed.
+const MOST_LISTED: usize = 40;
+
 const CAUTION: &str = "\
 These results rest on the model and on the assumptions named above. They do not replace the code of practice that \
 applies, the judgement of a licensed engineer, or an independent check.";
@@ -351,7 +354,18 @@ fn without_basis(out: &mut dyn Write, model: &Model) -> io::Result<()> {
         return Ok(());
     }
     heading(out, "Numbers without a basis")?;
-    paragraph(out, "  ", &model.without_basis.join(", "))
+    let mut listed: Vec<&str> = model
+        .without_basis
+        .iter()
+        .take(MOST_LISTED)
+        .map(String::as_str)
+        .collect();
+    let more = model.without_basis.len() - listed.len();
+    let rest = format!("and {more} more");
+    if more > 0 {
+        listed.push(&rest);
+    }
+    paragraph(out, "  ", &listed.join(", "))
 }
 
 /// One line that says how it ended.

@@ -44,8 +44,12 @@ pub fn resolve(expression: &UnitExpression) -> Result<Unit, Vec<UnknownSymbol>> 
             faults.push(unknown(index, symbol));
             continue;
         };
-        match named.power(factor.power).and_then(|power| unit.times(&power)) {
+        let power = named.power(factor.power);
+        let alone = power.is_none();
+        match power.and_then(|power| unit.times(&power)) {
             Some(product) => unit = product,
+            // Too large only together with what is too large already.
+            None if !alone && faults.iter().any(|fault| fault.cause == Cause::PowerTooLarge) => {}
             None => faults.push(UnknownSymbol {
                 factor: index,
                 symbol: symbol.to_owned(),

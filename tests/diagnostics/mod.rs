@@ -9,6 +9,7 @@ mod pages;
 mod parts;
 mod rendering;
 mod robustness;
+mod slips;
 
 use crate::support::memory::Memory;
 use std::fs;

@@ -14,8 +14,8 @@ use std::f64::consts::PI;
 struct Convention {
     /// The argument it is given to.
     argument: &'static str,
-    /// A word of the name.
-    word: &'static str,
+    /// The words of the name that tell, all of them.
+    words: &'static [&'static str],
     /// What the name says it is.
     said: &'static str,
     /// What the argument takes.
@@ -38,7 +38,7 @@ enum Effect {
 const CONVENTIONS: &[Convention] = &[
     Convention {
         argument: "length",
-        word: "fluctuation",
+        words: &["fluctuation"],
         said: "a scale of fluctuation",
         taken: "the length in the formula",
         effect: Effect::Fluctuation,
@@ -46,7 +46,7 @@ const CONVENTIONS: &[Convention] = &[
     },
     Convention {
         argument: "scale_of_fluctuation",
-        word: "integral",
+        words: &["integral"],
         said: "an integral scale, which counts lags of one sign",
         taken: "the integral over lags of both signs",
         effect: Effect::Words("the process would change twice as fast, and every crossing rate be twice too high"),
@@ -54,7 +54,7 @@ const CONVENTIONS: &[Convention] = &[
     },
     Convention {
         argument: "damping",
-        word: "decrement",
+        words: &["decrement"],
         said: "a logarithmic decrement",
         taken: "the ratio to critical damping",
         effect: Effect::Decrement,
@@ -62,7 +62,7 @@ const CONVENTIONS: &[Convention] = &[
     },
     Convention {
         argument: "standard_deviation",
-        word: "variance",
+        words: &["variance"],
         said: "a variance",
         taken: "its root",
         effect: Effect::Words("the scatter would be that of its square"),
@@ -70,31 +70,15 @@ const CONVENTIONS: &[Convention] = &[
     },
     Convention {
         argument: "standard_deviation",
-        word: "significant",
+        words: &["significant", "height"],
         said: "a significant height",
         taken: "a standard deviation",
         effect: Effect::Words("a significant height is 4 standard deviations: the scatter would be 4 times too large"),
         mend: "write `{} / 4`",
     },
     Convention {
-        argument: "standard_deviation",
-        word: "variation",
-        said: "a coefficient of variation",
-        taken: "a scatter in the unit of the process",
-        effect: Effect::Words("the scatter would not follow the mean"),
-        mend: "give it as `coefficient_of_variation: {}`",
-    },
-    Convention {
-        argument: "coefficient_of_variation",
-        word: "deviation",
-        said: "a standard deviation",
-        taken: "its share of the mean",
-        effect: Effect::Words("the scatter would be that number of means"),
-        mend: "give it as `standard_deviation: {}`",
-    },
-    Convention {
         argument: "mean",
-        word: "characteristic",
+        words: &["characteristic"],
         said: "a characteristic value",
         taken: "a mean",
         effect: Effect::Words(
@@ -104,7 +88,7 @@ const CONVENTIONS: &[Convention] = &[
     },
     Convention {
         argument: "mean",
-        word: "fractile",
+        words: &["fractile"],
         said: "a fractile",
         taken: "a mean",
         effect: Effect::Words(
@@ -120,6 +104,9 @@ impl Finished<'_> {
         for item in self.names.items() {
             let instance = self.names.item(item).instance;
             match &self.names.declaration(item).kind {
+                // What is at fault has been reported.
+                DeclarationKind::Definition { .. } if !self.is_sound(item) => {}
+                DeclarationKind::LimitState { .. } if !self.lowered.limit_states.contains_key(&item) => {}
                 DeclarationKind::Definition { value, .. } | DeclarationKind::Function { value, .. } => {
                     calls(value, &mut |call| {
                         if self.is_built_in(call, instance) {
@@ -152,7 +139,7 @@ impl Finished<'_> {
         let path = sole_name(&argument.value)?;
         let convention = CONVENTIONS
             .iter()
-            .find(|one| one.argument == &*word.text && says(path, one.word))?;
+            .find(|one| one.argument == &*word.text && says(path, one.words))?;
         let name = written(path);
         let value = self.plain(&argument.value, instance);
         let effect = match (&convention.effect, value) {
@@ -218,7 +205,7 @@ impl Finished<'_> {
 /// The return period of a load is not the time that a structure is to survive.
 fn return_period(time: &Expression) -> Option<Diagnostic> {
     let path = sole_name(time)?;
-    if !says(path, "return") {
+    if !says(path, &["return"]) {
         return None;
     }
     let message = format!(
@@ -232,10 +219,12 @@ fn return_period(time: &Expression) -> Option<Diagnostic> {
     )
 }
 
-fn says(path: &Path, word: &str) -> bool {
-    path.words
-        .last()
-        .is_some_and(|last| last.text.split('_').any(|part| part.eq_ignore_ascii_case(word)))
+/// Whether a name holds all of some words.
+fn says(path: &Path, words: &[&str]) -> bool {
+    path.words.last().is_some_and(|last| {
+        let holds = |word: &&str| last.text.split('_').any(|part| part.eq_ignore_ascii_case(word));
+        words.iter().all(holds)
+    })
 }
 
 fn written(path: &Path) -> String {

@@ -50,7 +50,7 @@ impl<'a> Finished<'a> {
         let mut found = Vec::new();
         for one in &members {
             for other in &members {
-                found.extend(twice(one, other));
+                found.extend(self.twice(one, other));
             }
         }
         found
@@ -64,37 +64,37 @@ impl<'a> Finished<'a> {
             place: term.value.span,
         })
     }
-}
 
-/// Whether `source`, which is nothing but a process of its own, is also inside `whole` with the same weight. Another
-/// weight, a delay or a derivative is there on purpose.
-fn twice(source: &Member<'_>, whole: &Member<'_>) -> Option<Diagnostic> {
-    let [own] = source.named.form.terms() else {
-        return None;
-    };
-    if own.operator != Operator::IDENTITY || whole.named.form.terms().len() < 2 {
-        return None;
+    /// Whether `source`, which is nothing but a process of its own, is also inside `whole` with the same weight. Another
+    /// weight, a delay or a derivative is there on purpose.
+    fn twice(&self, source: &Member<'_>, whole: &Member<'_>) -> Option<Diagnostic> {
+        let [own] = source.named.form.terms() else {
+            return None;
+        };
+        if own.operator != Operator::IDENTITY || whole.named.form.terms().len() < 2 {
+            return None;
+        }
+        let inside = whole
+            .named
+            .form
+            .terms()
+            .iter()
+            .find(|term| term.source == own.source && term.operator == own.operator)?;
+        let (weight, again) = (source.factor * own.coefficient(), whole.factor * inside.coefficient());
+        if weight != again {
+            return None;
+        }
+        let (name, other) = (self.as_written(source.place), self.as_written(whole.place));
+        let message = format!("`{name}` is counted twice: once as itself, and once inside `{other}`");
+        let mean = show(2.0 * source.named.form.mean(), &source.named.unit, 4);
+        Some(
+            Diagnostic::new(Code::MarginCountedTwice, source.place, message)
+                .here(format!("its scatter counts double here, and its mean as {mean}"))
+                .label(whole.place, format!("holds `{name}` with the same weight"))
+                .label(whole.named.place, "made here")
+                .help(format!(
+                    "leave `{name}` out here; if both are meant, write `2 * {name}` and the rest of `{other}`"
+                )),
+        )
     }
-    let inside = whole
-        .named
-        .form
-        .terms()
-        .iter()
-        .find(|term| term.source == own.source && term.operator == own.operator)?;
-    let (weight, again) = (source.factor * own.coefficient(), whole.factor * inside.coefficient());
-    if weight != again {
-        return None;
-    }
-    let (name, other) = (&source.named.name, &whole.named.name);
-    let message = format!("`{name}` is counted twice: once as itself, and once inside `{other}`");
-    let mean = show(2.0 * source.named.form.mean(), &source.named.unit, 4);
-    Some(
-        Diagnostic::new(Code::MarginCountedTwice, source.place, message)
-            .here(format!("its scatter counts double here, and its mean as {mean}"))
-            .label(whole.place, format!("holds `{name}` with the same weight"))
-            .label(whole.named.place, "made here")
-            .help(format!(
-                "leave `{name}` out here; if both are meant, write `2 * {name}` and the rest of `{other}`"
-            )),
-    )
 }

@@ -22,17 +22,17 @@ impl Finished<'_> {
         };
         let (order, consequence) = match quantity {
             ProcessQuantity::Mean | ProcessQuantity::StandardDeviation => return None,
-            ProcessQuantity::DerivativeStandardDeviation => (1, "it is infinite"),
-            ProcessQuantity::ZeroUpcrossingRate => (1, "it is infinite"),
-            ProcessQuantity::Bandwidth => (1, "lambda_2 is infinite, so it does not exist"),
-            ProcessQuantity::Irregularity => (2, "lambda_4 is infinite, so it does not exist"),
+            ProcessQuantity::DerivativeStandardDeviation => (1, "the standard deviation of the derivative is infinite"),
+            ProcessQuantity::ZeroUpcrossingRate => (1, "the rate of upcrossings is infinite"),
+            ProcessQuantity::Bandwidth => (1, "lambda_2 is infinite, so there is no bandwidth"),
+            ProcessQuantity::Irregularity => (2, "lambda_4 is infinite, so there is no irregularity"),
         };
         let named = self.lowered.model.varying.get(index)?;
         let rough = named.form.by_source().find_map(|(id, terms)| {
             let source: &Source = self.lowered.model.sources.get(id.0 as usize)?;
             (!existence::has_derivative(source, terms, order)).then_some(source)
         })?;
-        let message = format!("this expectation about `{}` can never hold: {consequence}", named.name);
+        let message = format!("this expectation can never hold: {consequence}");
         Some(
             Diagnostic::new(Code::ExpectationNever, expectation.place, message)
                 .here("reported as not holding, whatever is expected")

@@ -28,8 +28,8 @@ use crate::source::{Files, Span};
 use crate::units::{Dimension, Unit, resolve};
 use std::rc::Rc;
 
-/// Forms of more terms are left alone: the work on them grows as the square.
-const MOST_TERMS: usize = 500;
+/// Sums and forms of more terms are left alone: the work on them grows as the square.
+const MOST_TERMS: usize = 60;
 
 /// A checked model with the text it comes from.
 pub struct Finished<'a> {
@@ -116,6 +116,11 @@ impl<'a> Finished<'a> {
 
     fn value(&self, item: ItemId) -> Option<&'a Value> {
         self.lowered.values.get(item.index())?.as_ref()
+    }
+
+    /// Whether something came of a definition.
+    fn is_sound(&self, item: ItemId) -> bool {
+        self.value(item).is_some_and(|value| !matches!(value, Value::Fault))
     }
 
     fn named(&self, item: ItemId) -> Option<&'a Named> {

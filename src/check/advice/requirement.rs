@@ -114,7 +114,8 @@ fn idle(line: &Line<'_>, requirement: &Requirement) -> Option<Diagnostic> {
 
 /// The target of one year demanded over many, or the reverse.
 fn other_period(line: &Line<'_>, requirement: &Requirement) -> Option<Diagnostic> {
-    if requirement.quantity != LimitQuantity::ReliabilityIndex || !line.basis?.contains("1990") {
+    let cites = |basis: &str| basis.contains("EN 1990") || basis.contains("EN1990");
+    if requirement.quantity != LimitQuantity::ReliabilityIndex || !cites(line.basis?) {
         return None;
     }
     let Demand::AtLeast(limit) = requirement.demand else {

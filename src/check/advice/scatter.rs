@@ -8,6 +8,9 @@ use crate::units::{show, show_number};
 /// judgement, without a source.
 const SMALLEST_VARIATION: f64 = 0.005;
 
+/// A standard deviation that is a smaller share of the mean than this is no usual scatter. A judgement, without a source.
+const SMALLEST_SHARE: f64 = 0.002;
+
 /// A Gaussian process with more scatter than this is described by its standard deviation: its mean is next to nothing. A
 /// judgement, without a source.
 const LARGEST_VARIATION: f64 = 2.0;
@@ -58,7 +61,7 @@ impl Finished<'_> {
         let given = self.plain(expression, gaussian.instance)?;
         let mean = gaussian.named.form.mean().abs();
         let number = given.unit.from_si(given.value);
-        let small = given.value > 0.0 && given.value < SMALLEST_VARIATION * mean;
+        let small = given.value > 0.0 && given.value < SMALLEST_SHARE * mean;
         if !small || !RATIOS.contains(&number) {
             return None;
         }

@@ -55,15 +55,11 @@ impl Finished<'_> {
         let sources = sources.filter_map(|(id, _)| self.lowered.model.sources.get(id.0 as usize));
         sources.max_by(|a, b| {
             let memory = |source: &crate::covariance::source::Source| {
-                let at = |lag| {
-                    source
-                        .kernel()
-                        .and_then(|kernel| kernel.value(lag).ok())
-                        .unwrap_or(f64::NEG_INFINITY)
-                };
-                at(judged.state.reference_period.seconds) / at(0.0)
+                let kernel = source.kernel()?;
+                Some(kernel.value(judged.state.reference_period.seconds).ok()? / kernel.value(0.0).ok()?)
             };
-            memory(a).total_cmp(&memory(b))
+            let known = |source| memory(source).unwrap_or(f64::NEG_INFINITY);
+            known(a).total_cmp(&known(b))
         })
     }
 }

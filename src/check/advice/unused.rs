@@ -6,6 +6,7 @@ use crate::check::order::made_from;
 use crate::check::parts::InstanceId;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{DeclarationKind, DefinitionKeyword, FunctionKeyword};
+use std::collections::HashSet;
 
 /// At most so many declarations are named that only an unused one needs.
 const MOST_NAMED: usize = 4;
@@ -25,23 +26,24 @@ impl Finished<'_> {
             return Vec::new();
         }
         let used = self.reached(results);
-        let unused: Vec<ItemId> = self
-            .names
-            .items()
-            .filter(in_file)
-            .filter(|item| self.what(*item).is_some() && !self.is_used(*item, &used))
-            .collect();
+        let used_parts = self.used_parts(&used);
+        let mut idle = vec![false; used.len()];
+        let candidates = self.names.items().filter(in_file);
+        for item in candidates.filter(|item| self.what(*item).is_some()) {
+            idle[item.index()] = !self.is_used(item, &used, &used_parts);
+        }
+        let unused: Vec<ItemId> = self.names.items().filter(|item| idle[item.index()]).collect();
         // What only an unused declaration needs goes with it.
-        let mut needed = vec![false; used.len()];
         let needs: Vec<Vec<ItemId>> = unused.iter().map(|item| self.needs(*item)).collect();
+        let mut needed = vec![false; used.len()];
         for need in needs.iter().flatten() {
             needed[need.index()] = true;
         }
-        let heads = unused.iter().zip(&needs).filter(|(item, _)| !needed[item.index()]);
+        let heads = unused.iter().zip(needs).filter(|(item, _)| !needed[item.index()]);
         heads
-            .filter_map(|(item, needs)| {
-                let with_it: Vec<ItemId> = needs.iter().copied().filter(|need| unused.contains(need)).collect();
-                self.finding(*item, &with_it)
+            .filter_map(|(item, mut needs)| {
+                needs.retain(|need| idle[need.index()]);
+                self.finding(*item, &needs)
             })
             .collect()
     }
@@ -58,29 +60,25 @@ impl Finished<'_> {
         reached
     }
 
-    /// A part is used if anything in it is, or in its parts.
-    fn is_used(&self, item: ItemId, used: &[bool]) -> bool {
+    /// The parts in which something is used, or in a part of which.
+    fn used_parts(&self, used: &[bool]) -> HashSet<InstanceId> {
+        let mut parts = HashSet::new();
+        for item in self.names.items().filter(|item| used[item.index()]) {
+            let mut at = Some(self.names.item(item).instance);
+            while let Some(id) = at.filter(|id| parts.insert(*id)) {
+                at = self.names.parts().get(id).origin.map(|origin| origin.user);
+            }
+        }
+        parts
+    }
+
+    fn is_used(&self, item: ItemId, used: &[bool], used_parts: &HashSet<InstanceId>) -> bool {
         let at = self.names.item(item);
         if !matches!(self.names.declaration(item).kind, DeclarationKind::Use { .. }) {
             return used[item.index()];
         }
-        let Some(made) = self.names.parts().made.get(&(at.instance, at.declaration)).copied() else {
-            return true;
-        };
-        self.names
-            .items()
-            .any(|item| used[item.index()] && self.lies_in(self.names.item(item).instance, made))
-    }
-
-    fn lies_in(&self, instance: InstanceId, part: InstanceId) -> bool {
-        let mut at = Some(instance);
-        while let Some(id) = at {
-            if id == part {
-                return true;
-            }
-            at = self.names.parts().get(id).origin.map(|origin| origin.user);
-        }
-        false
+        let made = self.names.parts().made.get(&(at.instance, at.declaration));
+        made.is_none_or(|made| used_parts.contains(made))
     }
 
     /// What an unused declaration is made from; for a part, what sets its parameters.

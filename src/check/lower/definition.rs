@@ -4,12 +4,16 @@ use super::not_yet::Later;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::{Kind, Named};
 use crate::check::names::ItemId;
-use crate::check::value::{Value, Varying};
+use crate::check::value::{Number, Value, Varying};
 use crate::covariance::kernel::Unavailable;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Declaration, DefinitionKeyword, Expression, UnitExpression, Word};
-use crate::units::Unit;
+use crate::units::{Dimension, Unit, show};
 use std::rc::Rc;
+
+/// What to do with a margin that crosses nothing.
+pub(super) const TIME_INVARIANT: &str = "what does not vary is safe or failed for ever: compare the numbers by hand, or, \
+    where they are uncertain, by a time-invariant method such as FORM; for what varies in time, declare a `process`";
 
 impl<'p, 'l> Lowering<'p, 'l, '_> {
     pub(super) fn definition(
@@ -63,7 +67,7 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
             Value::Fault => return Value::Fault,
             Value::Form(varying) if !varying.form.is_constant() => varying,
             Value::Form(_) | Value::Scalar(_) => {
-                self.nothing_varies(kind, name, expression);
+                self.nothing_varies(kind, name, expression, &value);
                 return Value::Fault;
             }
             Value::Kernel(_) | Value::Spectrum(_) => {
@@ -134,18 +138,14 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
         sound
     }
 
-    pub(super) fn nothing_varies(&mut self, kind: Kind, name: &Word, expression: &Expression) {
+    pub(super) fn nothing_varies(&mut self, kind: Kind, name: &Word, expression: &Expression, value: &Value) {
         let name = &name.text;
         let (what, help) = match kind {
             Kind::Process => (
                 "process",
                 format!("write `constant {name} = ...`, or give it a `gaussian(...)`"),
             ),
-            Kind::Margin => (
-                "margin",
-                "a margin without a process needs no crossings: compare the numbers, or use a time-invariant method"
-                    .to_string(),
-            ),
+            Kind::Margin => ("margin", TIME_INVARIANT.to_string()),
         };
         self.report(
             Diagnostic::new(
@@ -153,9 +153,26 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
                 expression.span,
                 format!("nothing in the {what} `{name}` varies in time"),
             )
-            .here("a number, whatever the time")
+            .here(format!("{}, whatever the time", self.shown_number(value)))
             .help(help),
         );
+    }
+
+    /// A value that does not vary, for a message.
+    pub(super) fn shown_number(&self, value: &Value) -> String {
+        let (number, dimension, unit) = match value {
+            Value::Scalar(scalar) => (scalar.value, scalar.dimension, scalar.unit.as_ref()),
+            Value::Form(varying) => (
+                Number::Known(varying.form.mean()),
+                varying.dimension,
+                varying.unit.as_ref(),
+            ),
+            Value::Kernel(_) | Value::Spectrum(_) | Value::Fault => (Number::Unset, Dimension::PLAIN, None),
+        };
+        match number {
+            Number::Known(number) => show(number, &unit_or_si(unit, dimension), 6),
+            Number::Open(_) | Number::Unset => "a number".to_string(),
+        }
     }
 
     /// The comment lines above an item, without their `#`.

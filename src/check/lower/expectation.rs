@@ -1,6 +1,7 @@
 //! Checks of the model by its author.
 
 use super::extremes::{EXTREME, MEAN_EXTREME, RARITIES};
+use super::mismatch::Wanted;
 use super::{Lowering, Scope, unit_or_si, word_text};
 use crate::check::model::{Expectation, Kind, LimitQuantity, ProcessQuantity, Subject, Tolerance};
 use crate::check::names::{self, ItemId, Resolved, choice};
@@ -8,6 +9,7 @@ use crate::check::value::{Number, Scalar};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::{Call, Declaration, Expression, ExpressionKind, Path};
 use crate::units::Dimension;
+use std::rc::Rc;
 
 const QUANTITIES: &[(&str, ProcessQuantity)] = &[
     ("mean", ProcessQuantity::Mean),
@@ -46,13 +48,18 @@ impl Lowering<'_, '_, '_> {
         let Some((subject, dimension)) = self.expected_subject(quantity, scope) else {
             return;
         };
-        let expected = self.number(
-            value,
-            scope,
+        let unit = match subject {
+            Subject::Varying(index, ProcessQuantity::Mean | ProcessQuantity::StandardDeviation) => {
+                self.model.varying.get(index).map(|named| Rc::clone(&named.unit))
+            }
+            _ => None,
+        };
+        let wanted = Wanted {
             dimension,
-            "the expected value",
-            Some((quantity.span, "expected of this")),
-        );
+            unit: unit.as_deref(),
+        };
+        let why = Some((quantity.span, "expected of this"));
+        let expected = self.number(value, scope, wanted, "the expected value", why);
         let place = quantity.span.to(tolerance.span);
         let text = self.as_written(place);
         let tolerance = self.tolerance(tolerance, dimension, scope);

@@ -1,6 +1,7 @@
 //! The kernels the language knows by name, with their arguments.
 
 use super::arguments::Arguments;
+use super::mismatch::literal;
 use super::spectrum_family::SPECTRA;
 use super::{Context, Lowering, Scope};
 use crate::check::value::{Covariance, Number, Value};
@@ -149,10 +150,22 @@ impl Lowering<'_, '_, '_> {
                     "frequency" | "low_frequency" | "lower" | "upper" => " rad/s",
                     _ => "",
                 };
-                let here = format!("this is {}{unit}", show_number(fault.value, 6));
+                let written = self.as_written(place);
+                let here = match literal(&written) {
+                    Some(_) if place != span => format!("this is {written}"),
+                    _ => format!("this is {}{unit}", show_number(fault.value, 6)),
+                };
                 let mut finding = Diagnostic::new(Code::ValueRange, place, message).here(here);
-                if fault.parameter.ends_with("damping") && fault.value >= 1.0 {
-                    finding.help = Some("write it as a share of critical damping, such as `2 %`".to_string());
+                finding.help = match fault.parameter {
+                    parameter if parameter.ends_with("damping") && fault.value >= 1.0 => {
+                        Some("write it as a share of critical damping, such as `2 %`".to_string())
+                    }
+                    "upper" if fault.value > 0.0 => Some("write the smaller frequency as `lower`".to_string()),
+                    _ if fault.value < 0.0 => Some("remove the sign".to_string()),
+                    _ => None,
+                };
+                if let Some(lower) = arguments.get("lower").filter(|_| fault.parameter == "upper") {
+                    finding = finding.label(lower.span, "not below the other");
                 }
                 self.report(finding);
                 None
@@ -176,7 +189,11 @@ impl Lowering<'_, '_, '_> {
         let fluctuation = arguments.get("scale_of_fluctuation");
         if let (Some(_), Some(word)) = (arguments.get("length"), arguments.word("scale_of_fluctuation")) {
             let message = "`length` and `scale_of_fluctuation` say the same thing in two ways";
-            self.report(Diagnostic::new(Code::CallArgument, word.span, message).help("keep one of the two"));
+            let mut finding = Diagnostic::new(Code::CallArgument, word.span, message).help("keep one of the two");
+            if let Some(first) = arguments.word("length") {
+                finding = finding.label(first.span, "the other way");
+            }
+            self.report(finding);
             return None;
         }
         let (name, expression) = match fluctuation {

@@ -154,6 +154,17 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
+    /// Shows the call with what was found since in a body that it led to.
+    pub(super) fn with_these_arguments(&mut self, before: usize, call: &Call) {
+        for Found {
+            diagnostic: finding, ..
+        } in self.diagnostics.iter_mut().skip(before)
+        {
+            *finding = std::mem::replace(finding, Diagnostic::new(Code::KernelInvalid, call.brackets, ""))
+                .label(call.brackets, "with these arguments");
+        }
+    }
+
     /// The body of a kernel made of kernels, with the values of its arguments.
     fn expanded(&mut self, item: ItemId, call: &Call, scalars: Vec<(&str, Scalar)>) -> Value {
         let Some(value) = self.expanding(item, call, |lowering| lowering.body_with(item, call, scalars)) else {
@@ -209,13 +220,7 @@ impl Lowering<'_, '_, '_> {
         };
         let before = self.diagnostics.len();
         let value = self.value(value, scope);
-        for Found {
-            diagnostic: finding, ..
-        } in self.diagnostics.iter_mut().skip(before)
-        {
-            *finding = std::mem::replace(finding, Diagnostic::new(Code::KernelInvalid, call.brackets, ""))
-                .label(call.brackets, "with these arguments");
-        }
+        self.with_these_arguments(before, call);
         match self.as_kernel_value(value) {
             Some(covariance) => Value::Kernel(covariance),
             None => Value::Fault,

@@ -1,5 +1,7 @@
 //! Limit states: what failure is, over how long, by which method, and what is required.
 
+use super::definition::TIME_INVARIANT;
+use super::mismatch::{Wanted, in_brackets, literal};
 use super::not_yet::Later;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::{LimitQuantity, LimitState, Requirement, Time};
@@ -201,13 +203,12 @@ impl Lowering<'_, '_, '_> {
         };
         let (quantity_found, dimension) = found?;
         let what = format!("the demand on `{}`", quantity.text);
-        let scalar = self.number(
-            value,
-            scope,
-            dimension,
-            &what,
-            Some((quantity.span, "demanded of this")),
-        )?;
+        let demanded = (quantity.span, "demanded of this");
+        let given = self.value(value, scope);
+        if self.rate_of_a_probability(&given, dimension, quantity, value.span) {
+            return None;
+        }
+        let scalar = self.of_dimension(given, value.span, dimension, &what, Some(demanded))?;
         let Number::Known(limit) = scalar.value else {
             return None;
         };
@@ -223,6 +224,27 @@ impl Lowering<'_, '_, '_> {
             over: over?,
             basis: line.basis.as_ref().map(|text| text.value.to_string()),
         })
+    }
+
+    /// A probability or an index per time: it belongs to a period, which `over` names.
+    fn rate_of_a_probability(&mut self, given: &Value, dimension: Dimension, quantity: &Word, place: Span) -> bool {
+        let is_rate = matches!(given, Value::Scalar(scalar) if scalar.dimension == Dimension::RATE);
+        if !(is_rate && dimension.is_plain()) {
+            return false;
+        }
+        let message = format!("`{}` belongs to a period, and has no rate in time", quantity.text);
+        let written = self.as_written(place);
+        let help = match literal(&written) {
+            Some(digits) => format!("write `{digits}`, and the period behind it: `over 1 year`"),
+            None => "write the number for a period, and the period behind it: `over 1 year`".to_string(),
+        };
+        self.report(
+            Diagnostic::new(Code::UnitMismatch, place, message)
+                .here("a rate (1/time); over another period the number is another")
+                .label(quantity.span, "demanded of this")
+                .help(format!("{help}; events per time are demanded by `upcrossing_rate`")),
+        );
+        true
     }
 
     /// Refuses a demand that no probability, rate or time can meet or miss.
@@ -281,13 +303,13 @@ impl Lowering<'_, '_, '_> {
                     return None;
                 }
                 let varying = self.margin_of(margin, level, ">", scope)?;
-                let level = self.level(level, &varying, margin.span, scope)?;
+                let level = self.level(level, &varying, (margin.span, Some("<")), scope)?;
                 Some((varying, FailureRegion::Below(level)))
             }
             ConditionKind::Above(margin, level) => {
                 if let Some(inner) = absolute(margin) {
                     let varying = self.margin_of(inner, level, "<", scope)?;
-                    let value = self.level(level, &varying, margin.span, scope)?;
+                    let value = self.level(level, &varying, (margin.span, None), scope)?;
                     if value < 0.0 {
                         let message = "a level for `abs(...)` must not be negative: failure would be certain";
                         self.report(Diagnostic::new(Code::ValueRange, level.span, message).help("remove the sign"));
@@ -296,13 +318,13 @@ impl Lowering<'_, '_, '_> {
                     return Some((varying, FailureRegion::Outside(-value, value)));
                 }
                 let varying = self.margin_of(margin, level, "<", scope)?;
-                let level = self.level(level, &varying, margin.span, scope)?;
+                let level = self.level(level, &varying, (margin.span, Some(">")), scope)?;
                 Some((varying, FailureRegion::Above(level)))
             }
             ConditionKind::Outside(margin, lower, upper) => {
                 let varying = self.margin_of(margin, lower, "<", scope)?;
-                let low = self.level(lower, &varying, margin.span, scope);
-                let high = self.level(upper, &varying, margin.span, scope);
+                let low = self.level(lower, &varying, (margin.span, None), scope);
+                let high = self.level(upper, &varying, (margin.span, None), scope);
                 let (low, high) = (low?, high?);
                 if low >= high {
                     let message = "the first level of `outside` must be below the second";
@@ -326,7 +348,8 @@ impl Lowering<'_, '_, '_> {
         turned: &str,
         scope: Scope<'_>,
     ) -> Option<Varying> {
-        match self.value(margin, scope) {
+        let value = self.value(margin, scope);
+        match value {
             Value::Form(varying) if !varying.form.is_constant() => Some(varying),
             Value::Fault => None,
             Value::Form(_) | Value::Scalar(_) => {
@@ -342,8 +365,8 @@ impl Lowering<'_, '_, '_> {
                 } else {
                     let message = "nothing in this condition varies in time, so there are no crossings to count";
                     Diagnostic::new(Code::MarginNoProcess, margin.span, message)
-                        .here("a number, whatever the time")
-                        .help("compare the numbers, or use a time-invariant method; a margin needs a process")
+                        .here(format!("{}, whatever the time", self.shown_number(&value)))
+                        .help(TIME_INVARIANT)
                 };
                 self.report(finding);
                 None
@@ -355,7 +378,14 @@ impl Lowering<'_, '_, '_> {
         }
     }
 
-    fn level(&mut self, level: &Expression, varying: &Varying, margin: Span, scope: Scope<'_>) -> Option<f64> {
+    /// The level of a condition. `mark` is the comparison with 0 that the difference of the two would have.
+    fn level(
+        &mut self,
+        level: &Expression,
+        varying: &Varying,
+        (margin, mark): (Span, Option<&str>),
+        scope: Scope<'_>,
+    ) -> Option<f64> {
         let value = self.value(level, scope);
         if let Value::Form(_) = value {
             self.report(
@@ -365,20 +395,26 @@ impl Lowering<'_, '_, '_> {
                     "the level of a condition must be a number",
                 )
                 .here("this varies in time")
-                .help("declare the difference as a `margin` and compare it with 0"),
+                .label(margin, "and so does this")
+                .help(match mark {
+                    Some(mark) => format!(
+                        "compare their difference with 0: `{} - {} {mark} 0`",
+                        self.as_written(margin),
+                        in_brackets(&self.as_written(level.span))
+                    ),
+                    None => "make a limit state of each side, on the difference of the two".to_string(),
+                }),
             );
             return None;
         }
         let scalar = self.scalar(value, level.span, "the level of a condition")?;
         if scalar.dimension != varying.dimension && !scalar.bare_zero {
             let why = Some((margin, "compared with this"));
-            self.mismatch(
-                level.span,
-                &scalar,
-                varying.dimension,
-                "the level of this condition",
-                why,
-            );
+            let wanted = Wanted {
+                dimension: varying.dimension,
+                unit: varying.unit.as_deref(),
+            };
+            self.mismatch(level.span, &scalar, wanted, "the level of this condition", why);
             return None;
         }
         match scalar.value {

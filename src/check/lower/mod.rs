@@ -46,6 +46,7 @@ use crate::language::tree::{DeclarationKind, Expression, ExpressionKind, Functio
 use crate::source::Span;
 use crate::units::{Dimension, Unit};
 use kernel::KernelDefinition;
+use mismatch::Wanted;
 use not_yet::Later;
 use spectrum::SpectrumDefinition;
 use std::collections::HashMap;
@@ -386,7 +387,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             Value::Scalar(scalar) => Some(scalar),
             Value::Fault => None,
             Value::Form(_) => {
-                let help = "use its mean or standard deviation as a constant, or declare a margin";
+                let help = "declare what is made from it as a `process` or a `margin`, or write the number that is meant, such as its mean";
                 self.wrong_kind(place, "a process", &format!("a number for {what}"), help);
                 None
             }
@@ -409,22 +410,35 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
 
     /// The known number of a dimension that an expression is, in SI units; anything else is reported. `what` names
     /// what the number is for, and `why` a place that says so.
-    fn number(
+    fn number<'w>(
         &mut self,
         expression: &Expression,
         scope: Scope<'_>,
-        dimension: Dimension,
+        wanted: impl Into<Wanted<'w>>,
         what: &str,
         why: Option<(Span, &str)>,
     ) -> Option<Scalar> {
         let value = self.value(expression, scope);
-        let mut scalar = self.scalar(value, expression.span, what)?;
-        if scalar.dimension != dimension {
+        self.of_dimension(value, expression.span, wanted, what, why)
+    }
+
+    /// The same of a value that is there already.
+    fn of_dimension<'w>(
+        &mut self,
+        value: Value,
+        place: Span,
+        wanted: impl Into<Wanted<'w>>,
+        what: &str,
+        why: Option<(Span, &str)>,
+    ) -> Option<Scalar> {
+        let wanted = wanted.into();
+        let mut scalar = self.scalar(value, place, what)?;
+        if scalar.dimension != wanted.dimension {
             if !scalar.bare_zero {
-                self.mismatch(expression.span, &scalar, dimension, what, why);
+                self.mismatch(place, &scalar, wanted, what, why);
                 return None;
             }
-            scalar.dimension = dimension;
+            scalar.dimension = wanted.dimension;
             scalar.bare_zero = false;
         }
         Some(scalar)

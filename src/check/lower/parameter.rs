@@ -1,5 +1,6 @@
 //! Parameters: their defaults, and the values that a `use` or the command line gives them.
 
+use super::mismatch::Wanted;
 use super::{Lowering, Scope, unit_or_si, word_text};
 use crate::check::model::Parameter;
 use crate::check::names::{ItemId, Names, choice, near, place};
@@ -94,7 +95,11 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
         };
         if scalar.dimension != shape.dimension && !scalar.bare_zero {
             let why = Some((name.span, "the parameter is declared here"));
-            self.mismatch(expression.span, &scalar, shape.dimension, &what, why);
+            let wanted = Wanted {
+                dimension: shape.dimension,
+                unit: shape.unit.as_deref(),
+            };
+            self.mismatch(expression.span, &scalar, wanted, &what, why);
             return Value::Fault;
         }
         scalar.dimension = shape.dimension;
@@ -193,9 +198,15 @@ impl<'p, 'l> Lowering<'p, 'l, '_> {
                 self.report(finding);
                 // What it was meant to be is looked at all the same.
                 self.value(&argument.value, Scope::plain(instance));
-            } else if arguments[..index].iter().any(same) {
+            } else if let Some(first) = arguments[..index].iter().find(|other| same(other)) {
                 let message = format!("the parameter `{}` is set twice", word.text);
-                self.report(Diagnostic::new(Code::PartArgument, word.span, message).help("remove one of them"));
+                let place = first.name.as_ref().map_or(first.value.span, |first| first.span);
+                self.report(
+                    Diagnostic::new(Code::PartArgument, word.span, message)
+                        .here("set again here")
+                        .label(place, "first set here")
+                        .help("remove one of them"),
+                );
             }
         }
     }

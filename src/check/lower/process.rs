@@ -2,6 +2,7 @@
 
 use super::arguments::Arguments;
 use super::covariance::{constant_of, table_notes};
+use super::mismatch::Wanted;
 use super::{Lowering, Scope, unit_or_si};
 use crate::check::model::Kind;
 use crate::check::names::ItemId;
@@ -31,6 +32,7 @@ const ARGUMENTS: &[&str] = &[
 #[derive(Clone, Copy)]
 pub(super) struct Subject<'a> {
     pub name: &'a Word,
+    pub unit: Option<&'a Unit>,
     pub dimension: Option<Dimension>,
     pub scope: Scope<'a>,
 }
@@ -64,9 +66,11 @@ impl Lowering<'_, '_, '_> {
         if kind == Kind::Margin {
             return self.source_in_margin(expression.span, name);
         }
+        let declared = declared.flatten();
         let subject = Subject {
             name,
-            dimension: declared.flatten().map(|unit| unit.dimension()),
+            unit: declared.as_deref(),
+            dimension: declared.as_ref().map(|unit| unit.dimension()),
             scope,
         };
         let Some(description) = self.description(call, subject) else {
@@ -218,16 +222,17 @@ impl Lowering<'_, '_, '_> {
 
     /// Refuses a scatter that is given twice.
     fn scattered_once(&mut self, arguments: &Arguments<'_>, subject: Subject<'_>) -> bool {
-        let (Some(_), Some(word)) = (
-            arguments.get("standard_deviation"),
-            arguments.word("coefficient_of_variation"),
-        ) else {
+        let words = ["standard_deviation", "coefficient_of_variation"].map(|name| arguments.word(name));
+        let [Some(first), Some(word)] = words else {
             return true;
         };
+        let first = first.span;
         let message = format!("the process `{}` has its scatter given twice", subject.name.text);
         self.report(
             Diagnostic::new(Code::ProcessDescription, word.span, message)
-                .help("keep `standard_deviation` or `coefficient_of_variation`, not both"),
+                .here("a second scatter")
+                .label(first, "a first one")
+                .help("keep one of the two, and state the other as an `expect`"),
         );
         false
     }
@@ -271,7 +276,13 @@ impl Lowering<'_, '_, '_> {
         };
         let what = format!("the mean of `{}`", subject.name.text);
         match subject.dimension {
-            Some(dimension) => self.number(expression, subject.scope, dimension, &what, None),
+            Some(dimension) => {
+                let wanted = Wanted {
+                    dimension,
+                    unit: subject.unit,
+                };
+                self.number(expression, subject.scope, wanted, &what, None)
+            }
             None => {
                 let value = self.value(expression, subject.scope);
                 self.scalar(value, expression.span, &what)
@@ -285,7 +296,11 @@ impl Lowering<'_, '_, '_> {
             .dimension
             .or(mean.filter(|mean| !mean.bare_zero).map(|mean| mean.dimension));
         let deviation = match wanted {
-            Some(dimension) => self.number(expression, subject.scope, dimension, &what, None)?,
+            Some(dimension) => {
+                let of_mean = mean.and_then(|mean| mean.unit.as_deref());
+                let unit = subject.unit.or(of_mean);
+                self.number(expression, subject.scope, Wanted { dimension, unit }, &what, None)?
+            }
             None => {
                 let value = self.value(expression, subject.scope);
                 self.scalar(value, expression.span, &what)?
@@ -313,8 +328,8 @@ impl Lowering<'_, '_, '_> {
                 subject.name.text
             );
             let mut finding = Diagnostic::new(Code::ProcessZeroMean, expression.span, message)
-                .here("this share of the mean is 0")
-                .help("give `standard_deviation` instead");
+                .here("any share of 0 is 0: the process would not vary at all")
+                .help("give `standard_deviation` instead, in the unit of the process");
             if let Some(place) = arguments.get("mean") {
                 finding = finding.label(place.span, "the mean");
             }
@@ -332,7 +347,16 @@ impl Lowering<'_, '_, '_> {
             Number::Known(value) => {
                 let message = format!("{what} must be greater than 0");
                 let shown = show(value, &unit_or_si(scalar.unit.as_ref(), scalar.dimension), 6);
-                self.report(Diagnostic::new(Code::ValueRange, place, message).here(format!("this is {shown}")));
+                let help = if value < 0.0 {
+                    "remove the sign"
+                } else {
+                    "give the scatter; what does not vary is a `constant`"
+                };
+                self.report(
+                    Diagnostic::new(Code::ValueRange, place, message)
+                        .here(format!("this is {shown}"))
+                        .help(help),
+                );
                 None
             }
             Number::Open(_) | Number::Unset => None,
@@ -375,7 +399,10 @@ impl Lowering<'_, '_, '_> {
             (Some(wanted), _) => {
                 let square = wanted.power_i32(2)?;
                 let what = format!("a covariance of `{}`", subject.name.text);
-                let found = Scalar::new(Number::Unset, covariance.dimension);
+                let own = covariance.dimension == wanted;
+                let value = covariance.kernel.value(0.0).map_or(Number::Unset, Number::Known);
+                let unit = subject.unit.filter(|_| own).map(|unit| Rc::new(unit.clone()));
+                let found = Scalar::new(value, covariance.dimension).shown_in(unit);
                 self.mismatch(place, &found, square, &what, None);
                 None
             }
@@ -404,8 +431,10 @@ impl Lowering<'_, '_, '_> {
             );
             self.report(
                 Diagnostic::new(Code::ProcessMeanSquare, expression.span, message)
-                    .here(format!("{total} at lag 0, against {square} from the mean"))
-                    .help("check the mean, or give the function as `autocovariance` if the mean has been taken off"),
+                    .here(format!(
+                        "{total} at lag 0, against {square} from the mean: nothing, or less, would be left as variance"
+                    ))
+                    .help("give the function as `autocovariance` if the mean has been taken off, or check the mean"),
             );
             return None;
         }
@@ -426,7 +455,9 @@ impl Lowering<'_, '_, '_> {
             );
             self.report(
                 Diagnostic::new(Code::ProcessMeanSquare, expression.span, message)
-                    .here(format!("{found_how} {constant}, the square of the mean is {square}"))
+                    .here(format!(
+                        "{found_how} {constant}, the square of the mean is {square}: the difference would count as variance"
+                    ))
                     .help(
                         "a raw autocorrelation E[X(t) X(t+tau)] holds the square of the mean: add it, or give the \
                          function as `autocovariance`",

@@ -292,10 +292,7 @@ impl Lowering<'_, '_, '_> {
         };
         let before = self.diagnostics.len();
         let value = self.value(value, scope);
-        for finding in self.diagnostics.iter_mut().skip(before) {
-            *finding = std::mem::replace(finding, Diagnostic::new(Code::SpectrumInvalid, call.brackets, ""))
-                .label(call.brackets, "with these arguments");
-        }
+        self.with_these_arguments(before, call);
         match value {
             Value::Spectrum(density) => Value::Spectrum(density),
             _ => Value::Fault,
