@@ -3,6 +3,7 @@
 
 use super::acceptance::Acceptances;
 use super::names::ItemId;
+use crate::covariance::coherence::Coherences;
 use crate::covariance::form::LinearForm;
 use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
@@ -24,6 +25,8 @@ pub struct Model {
     pub parameters: Vec<Parameter>,
     /// Everything random, each independent of the others.
     pub sources: Vec<Source>,
+    /// Which of the sources are coherent; all others are independent of each other.
+    pub coherences: Coherences,
     /// Processes and margins in the order of the text, parts after those who use them.
     pub varying: Vec<Named>,
     /// The limit states.
@@ -231,6 +234,7 @@ impl Model {
             title: None,
             parameters: Vec::new(),
             sources: Vec::new(),
+            coherences: Coherences::default(),
             varying: Vec::new(),
             limit_states: Vec::new(),
             expectations: Vec::new(),

@@ -142,6 +142,9 @@ pub(super) fn made_from(names: &Names<'_>, item: ItemId) -> Vec<ItemId> {
         }
         kind => each_expression(kind, &mut |value| expression(value, here)),
     }
+    if let DeclarationKind::Correlate { names: paths, .. } = &names.declaration(item).kind {
+        paths.iter().for_each(|path| look(path, here, &mut found));
+    }
     found
 }
 

@@ -93,6 +93,8 @@ catalogue! {
     ProcessZeroMean Error "process/zero-mean" "a coefficient of variation of a process whose mean is zero"
     ProcessNotDifferentiable Error "process/not-differentiable" "a process without a derivative where crossings are counted"
     ProcessInfiniteVariance Error "process/infinite-variance" "a process of infinite variance where a finite one is needed"
+    CoherenceSubject Error "coherence/subject" "a coherence of something that cannot have it, or has it already"
+    CoherenceImpossible Error "coherence/impossible" "coherences that no processes have together"
     MarginNoProcess Error "margin/no-process" "a margin in which nothing varies"
     LimitLine Error "limit/line" "a line that a limit state lacks or has twice"
     LimitCondition Error "limit/condition" "a condition of failure that cannot be judged"

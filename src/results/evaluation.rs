@@ -39,7 +39,7 @@ const ROUNDING: f64 = 1e-14;
 
 /// Computes everything. `only` names the limit states wanted; empty for all. `warnings` are those of the check.
 pub fn evaluate(files: &Files, model: &Model, warnings: &[Diagnostic], only: &[String]) -> Results {
-    let table = MomentTable::new(&model.sources);
+    let table = MomentTable::new(&model.sources).coherent(&model.coherences);
     let varying: Vec<FormMoments> = model
         .varying
         .iter()

@@ -75,7 +75,7 @@ impl<'a> Finished<'a> {
             names,
             files,
             lowered,
-            table: MomentTable::new(&lowered.model.sources),
+            table: MomentTable::new(&lowered.model.sources).coherent(&lowered.model.coherences),
         }
     }
 

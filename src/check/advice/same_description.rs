@@ -52,6 +52,9 @@ impl Finished<'_> {
 
     fn is_alike(&self, one: SourceId, other: SourceId) -> bool {
         let sources = &self.lowered.model.sources;
+        if self.lowered.model.coherences.between(one, other).is_some() {
+            return false;
+        }
         match (sources.get(one.0 as usize), sources.get(other.0 as usize)) {
             (Some(a), Some(b)) => a.law == b.law && self.mean_of(one) == self.mean_of(other),
             _ => false,

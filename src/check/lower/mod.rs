@@ -4,6 +4,7 @@ mod arguments;
 mod arithmetic;
 mod by_spectrum;
 mod calls;
+mod correlate;
 mod covariance;
 mod definition;
 mod expectation;
@@ -39,6 +40,7 @@ use super::names::{ItemId, Names, place};
 use super::origins::Found;
 use super::parts::{InstanceId, Library};
 use super::value::{Number, Scalar, Value, Varying};
+use crate::covariance::form::SourceId;
 use crate::covariance::source::Source;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::expression::Arena;
@@ -142,6 +144,8 @@ pub struct Lowering<'p, 'l, 'f> {
     expansion_depth: usize,
     expansions: usize,
     model: Model,
+    /// Where the coherence of two sources is given.
+    correlated: HashMap<(SourceId, SourceId), Span>,
     varying: HashMap<ItemId, usize>,
     limit_states: HashMap<ItemId, usize>,
     /// The instance that is being looked at.
@@ -170,6 +174,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             expansion_depth: 0,
             expansions: 0,
             model: Model::empty(tree.file),
+            correlated: HashMap::new(),
             varying: HashMap::new(),
             limit_states: HashMap::new(),
             instance: InstanceId(0),
@@ -192,6 +197,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 break;
             }
         }
+        self.impossible_coherences();
         self.in_order_of_the_text();
         Lowered {
             model: self.model,
@@ -322,7 +328,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
                 name,
             } => self.spectrum_definition(item, name, parameters, unit.as_ref(), value),
             DeclarationKind::Climate { .. } => self.not_yet(declaration.keyword, Later::Climates),
-            DeclarationKind::Correlate { .. } => self.not_yet(declaration.keyword, Later::Correlations),
+            DeclarationKind::Correlate { names, value } => self.correlate(item, names, value),
             // Looked at once everything has been found that it could accept.
             DeclarationKind::Accept { .. } => {}
             DeclarationKind::LimitState { name, lines, close } => {
