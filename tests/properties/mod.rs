@@ -4,5 +4,6 @@ mod covariance;
 mod models;
 mod numbers;
 mod passage;
+mod spectra;
 mod units;
 mod writings;

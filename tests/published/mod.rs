@@ -1,9 +1,13 @@
 //! Checks against published values, one file per source.
 
 mod abramowitz_stegun_1964;
+mod burton_2001;
 mod cartwright_longuet_higgins_1956;
+mod clough_penzien_1975;
+mod davenport_1961;
 mod davenport_1964;
 mod der_kiureghian_1980;
+mod dnv_rp_c205;
 mod en_1990_2002;
 mod hand_calculations;
 mod iso_2394_1998;
@@ -15,9 +19,12 @@ mod kernels_vanmarcke_random_fields;
 mod larrabee_cornell_1981;
 mod leadbetter_lindgren_rootzen_1983;
 mod oeis;
+mod pierson_moskowitz_1964;
 mod rasmussen_williams_2006;
 mod rice_1944;
+mod rice_1944_spectra;
 mod slepian_1961;
+mod tajimi_1960;
 mod units_nist_sp811;
 mod vanmarcke_1972;
 mod vanmarcke_1975;

@@ -847,12 +847,124 @@ def exact_moments(density, exponent, frequencies, parts):
     return exact
 
 
+# ------------------------------------------------------------------------------------ spectra by SciPy's quadrature
+
+
+def random_spectrum(rng):
+    """A spectrum as text, its one-sided density over omega, the powers with which it begins and falls, its frequencies, and
+    declarations it needs."""
+    kind = rng.choice(["sea", "sea", "wind", "ground", "ground", "clough", "band", "power", "gamma", "rational"])
+    index = rng.randrange(10**9)
+    if kind == "sea":
+        hs, tp, gamma = rng.uniform(0.2, 12), rng.uniform(2, 20), rng.choice([1, 3.3, rng.uniform(1, 7)])
+        peak = 2 * math.pi / tp
+
+        def form(x):
+            y = np.maximum(x, 0.05)
+            sharp = np.exp(-0.5 * ((y - 1) / np.where(y < 1, 0.07, 0.09)) ** 2)
+            return np.where(x > 0.05, y**-5 * np.exp(-1.25 * y**-4) * gamma**sharp, 0.0)
+
+        marks = [peak * m for m in (0.3, 0.5, 0.65, 0.8, 0.86, 0.93, 1, 1.09, 1.18, 1.36, 1.8)]
+        area = by_logarithm(form, 5, math.inf, [m / peak for m in marks], 0)
+        density = lambda w: hs**2 / 16 / peak / area * form(w / peak)
+        text = f"jonswap(hs: {number(hs)} m, tp: {number(tp)} s, peak_enhancement: {number(gamma)})"
+        if gamma == 1 and rng.random() < 0.5:
+            text = f"pierson_moskowitz(hs: {number(hs)} m, tp: {number(tp)} s)"
+        return text, density, math.inf, 5, marks, ""
+    if kind == "wind":
+        length, speed = rng.uniform(20, 1500), rng.uniform(2, 60)
+        a = length / speed / (2 * math.pi)
+        name = rng.choice(["kaimal", "von_karman", "davenport"])
+        area = math.sqrt(math.pi) / 2 * math.gamma(1 / 3) / math.gamma(5 / 6)
+        density = {
+            "kaimal": lambda w: 4 * a / (1 + 6 * a * w) ** (5 / 3),
+            "von_karman": lambda w: math.sqrt(70.8) * a / area * (1 + 70.8 * (a * w) ** 2) ** (-5 / 6),
+            "davenport": lambda w: 2 / 3 * a * a * w * (1 + (a * w) ** 2) ** (-4 / 3),
+        }[name]
+        head = 1 if name == "davenport" else 0
+        text = f"{name}(length: {number(length)} m, mean_speed: {number(speed)} m/s)"
+        return f"(1 m)^2 * {text}", density, head, 5 / 3, [1 / a], ""
+    w0, z, level = math.exp(rng.uniform(-1, 4)), math.exp(rng.uniform(-7, -0.2)), math.exp(rng.uniform(-6, 3))
+    ground = lambda w: level * (1 + (2 * z * w / w0) ** 2) / ((1 - (w / w0) ** 2) ** 2 + (2 * z * w / w0) ** 2)
+    here = f"level: {number(level)} m^2/(rad/s), frequency: {number(w0)} rad/s, damping: {number(z)}"
+    if kind == "ground":
+        return f"kanai_tajimi({here})", ground, 0, 2, graded(w0, z * w0), ""
+    if kind == "clough":
+        low, low_z = w0 * rng.uniform(0.02, 1.5), math.exp(rng.uniform(-5, -0.2))
+        density = lambda w: ground(w) * (w / low) ** 4 / ((1 - (w / low) ** 2) ** 2 + (2 * low_z * w / low) ** 2)
+        text = f"clough_penzien({here}, low_frequency: {number(low)} rad/s, low_damping: {number(low_z)})"
+        return text, density, 4, 2, graded(w0, z * w0) + graded(low, low_z * low), ""
+    if kind == "band":
+        upper = w0
+        lower = rng.choice([0.0, upper * rng.uniform(0.1, 0.99)])
+        density = lambda w: np.where((w >= lower) & (w <= upper), level, 0.0)
+        text = f"band_limited(level: {number(level)} m^2/(rad/s), lower: {number(lower)} rad/s, upper: {number(upper)} rad/s)"
+        return text, density, math.inf if lower else 0, math.inf, [lower, upper], ""
+    f0 = number(w0 / (2 * math.pi))
+    f0_w = float(f0) * 2 * math.pi
+    name = f"written{index}"
+    head = f"spectrum {name}(f, level: m^2/(rad/s), f0: Hz)"
+    call = f"{name}(level: {number(level)} m^2/(rad/s), f0: {f0} Hz)"
+    if kind == "power":
+        p = rng.choice([2, 4, 6, round(rng.uniform(1.2, 9), 2)])
+        density = lambda w: level / (1 + (w / f0_w) ** p)
+        return call, density, 0, p, [f0_w], f"{head} = level / (1 + (f / f0)^{number(p)})"
+    if kind == "gamma":
+        q, r = rng.choice([0, 2, round(rng.uniform(-0.7, 4), 2)]), rng.choice([1, 2, round(rng.uniform(0.7, 3), 2)])
+        density = lambda w: level * (w / f0_w) ** q * np.exp(-((w / f0_w) ** r))
+        text = f"{head} = level * (f / f0)^({number(q)}) * exp(-(f / f0)^{number(r)})"
+        return call, density, q, math.inf, [f0_w], text
+    density = lambda w: level / ((1 - (w / f0_w) ** 2) ** 2 + (2 * z * w / f0_w) ** 2)
+    body = f"level / ((1 - (f / f0)^2)^2 + (2 * {number(z)} * f / f0)^2)"
+    return call, density, 0, 4, graded(f0_w, z * f0_w), f"{head} = {body}"
+
+
+def by_logarithm(density, tail, head, frequencies, order):
+    """The integral of omega^order over a density, over the logarithm of omega, in which powers are exponentials."""
+    marks = sorted(math.log(w) for w in frequencies if w > 0)
+    below = 40 / min(head + order + 1, 5)
+    above = 40 / min(tail - order - 1, 5) if math.isfinite(tail) else 7
+    points = [marks[0] - below, *marks, marks[-1] + above]
+    cut = np.concatenate([np.linspace(a, b, max(2, math.ceil((b - a) / 0.2) + 1))[:-1] for a, b in zip(points, points[1:])])
+    integrand = lambda x: np.exp((order + 1) * x) * density(np.exp(x))
+    return float(integral(integrand, np.concatenate([cut, points[-1:]])))
+
+
+def spectra(program, rng):
+    families = [Family(f"spectra: lambda_{n}", 1e-9) for n in (0, 1, 2, 4)]
+    for _ in range(12):
+        lines, cases = [], []
+        for case in range(25):
+            parts = [random_spectrum(rng) for _ in range(rng.choice([1, 1, 1, 2]))]
+            weights = [rng.choice([1.0, 2.0, rng.uniform(0.1, 5)]) for _ in parts]
+            terms = [f"two_sided({t})" if w == 2.0 and not closed(t) else f"{number(w)} * {t}" for w, (t, *_) in zip(weights, parts)]
+            lines += [declaration for *_, declaration in parts]
+            lines.append(f"process x{case} : m = gaussian(spectrum: {' + '.join(terms)})")
+            cases.append((parts, weights, "\n".join(lines[-1 - len(parts):])))
+        found = program.named("\n".join(lines))
+        for case, (parts, weights, place) in enumerate(cases):
+            for family, order, value in zip(families, (0, 1, 2, 4), moments_of(found[f"x{case}"])):
+                finite = all(order + 1 < tail for _, _, _, tail, *_ in parts)
+                exact = mp.inf
+                if finite:
+                    exact = mp.fsum(
+                        w * by_logarithm(density, tail, head, marks, order)
+                        for w, (_, density, head, tail, marks, _) in zip(weights, parts)
+                    )
+                family.relative(value, exact, f"{value} not {exact}, order {order}, in\n{place}")
+
+
+def closed(text):
+    """Whether a spectrum is one-sided by definition."""
+    return text.startswith(("jonswap", "pierson", "(1 m)"))
+
+
 def main():
     binary = sys.argv[1]
     seed = int(sys.argv[2]) if len(sys.argv) > 2 else 20
     with tempfile.TemporaryDirectory() as folder:
         program = Program(binary, folder)
-        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables, systems):
+        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables, systems, spectra):
             checks(program, random.Random(f"{seed} {checks.__name__}"))
     if not all([family.report() for family in Family.all]):
         sys.exit(1)
