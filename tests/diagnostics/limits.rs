@@ -165,7 +165,7 @@ fn kernels_within_kernels() {
     text += "process x = gaussian(standard_deviation: 1, correlation: k39())\n";
     assert_eq!(
         refused(&model(&text), "model/too-large"),
-        "kernels made of kernels are followed 32 deep and through 100000 calls, not further"
+        "kernels made of kernels, and spectra of spectra, are followed 32 deep and through 100000 calls, not further"
     );
     let mut text = String::from("kernel k0(tau) = 1 * exponential(length: 1 s)\n");
     for level in 1..20 {
@@ -174,7 +174,7 @@ fn kernels_within_kernels() {
     text += "process x = gaussian(standard_deviation: 1, correlation: k19())\n";
     assert_eq!(
         refused(&model(&text), "model/too-large"),
-        "kernels made of kernels are followed 32 deep and through 100000 calls, not further"
+        "kernels made of kernels, and spectra of spectra, are followed 32 deep and through 100000 calls, not further"
     );
 }
 
@@ -198,6 +198,29 @@ fn expressions_in_kernels() {
     }
     assert_eq!(
         refused(&model(&uses).with("part.limit", &text), "model/too-large"),
-        "the kernels written out up to here have more than 2000000 operations and numbers"
+        "the kernels and spectra written out up to here have more than 2000000 operations and numbers"
     );
+}
+
+#[test]
+fn spectra() {
+    let sum = vec!["white(level: 1 /Hz)"; 257].join(" + ");
+    let text = format!("process x = gaussian(spectrum: {sum})\n");
+    assert_eq!(
+        refused(&model(&text), "model/too-large"),
+        "this spectrum is made of more than 256 parts"
+    );
+    let body = vec!["f / 1 Hz"; 30_000].join(" + ");
+    let text = format!("spectrum s(f) = 1 s / (1 + ({body})^2)\nprocess x = gaussian(spectrum: s())\n");
+    assert_eq!(
+        refused(&model(&text), "model/too-large"),
+        "the written spectra up to here have more than 100000 operations together"
+    );
+    // As large as it may be: computed in time.
+    let body = vec!["f / 1 Hz"; 20_000].join(" + ");
+    let text = format!("spectrum s(f) = 1 s / (1 + ({body})^2)\nprocess x = gaussian(spectrum: s())\n");
+    let start = Instant::now();
+    let run = model(&text).run("model.limit", true);
+    assert!(run.model.is_some(), "{}", run.shown());
+    assert!(start.elapsed() < PATIENCE, "took {:?}", start.elapsed());
 }

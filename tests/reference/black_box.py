@@ -687,7 +687,7 @@ def tables(program, rng):
 # ------------------------------------------------------------------------------------ responses by SciPy's quadrature
 
 
-def random_source(rng):
+def random_kernel(rng):
     """A kernel as text, its one-sided density over omega, the power with which that falls, and frequencies of its shape."""
     kind = rng.choice(["se", "exponential", "matern", "matern", "cosine", "oscillator"])
     length = math.exp(rng.uniform(-1.5, 1.5))
@@ -799,7 +799,7 @@ def systems(program, rng):
     for batch in range(25):
         lines, cases = [], []
         for case in range(12):
-            text, density, exponent, frequencies = random_source(rng)
+            text, density, exponent, frequencies = random_kernel(rng)
             parts = [(1.0, Response(rng, exponent))]
             parts += [(rng.uniform(-2, 2), Response(rng, exponent)) for _ in range(rng.randint(0, 2))]
             unit = lambda part: f" s^{part.power}" if part.power else ""
@@ -931,7 +931,7 @@ def by_logarithm(density, tail, head, frequencies, order):
 
 
 def spectra(program, rng):
-    families = [Family(f"spectra: lambda_{n}", 1e-9) for n in (0, 1, 2, 4)]
+    families = [Family(f"spectra: lambda_{n}", 1e-11) for n in (0, 1, 2, 4)]
     for _ in range(12):
         lines, cases = [], []
         for case in range(25):

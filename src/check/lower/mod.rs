@@ -231,7 +231,9 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             )
         } else if self.arena.len() > MOST_NODES {
             (
-                format!("the kernels written out up to here have more than {MOST_NODES} operations and numbers"),
+                format!(
+                    "the kernels and spectra written out up to here have more than {MOST_NODES} operations and numbers"
+                ),
                 "use fewer parts that write out long kernels, or give the kernels as tables",
             )
         } else {

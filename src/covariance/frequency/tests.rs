@@ -2,7 +2,6 @@ use super::*;
 use crate::covariance::form::{LinearForm, SourceId};
 use crate::covariance::kernel::{
     DampedCosine, Estimate, Exponential, Kernel, Line, Matern, Oscillator as OscillatorKernel, SquaredExponential,
-    Triangular,
 };
 use crate::covariance::moments::MomentTable;
 use crate::covariance::response::{self, Average, FirstOrder, Oscillator};
