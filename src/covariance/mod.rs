@@ -11,3 +11,4 @@ pub mod response;
 pub mod source;
 pub mod spectral;
 pub mod spectrum;
+pub mod validity;

@@ -84,7 +84,7 @@ impl Source {
         }
     }
 
-    /// Why it has no more derivatives than it has.
+    /// Why it has no more derivatives than it has, and which part of its kernel is to blame.
     pub fn roughness_in_words(&self) -> String {
         if let Law::Spectrum(spectrum) = &self.law {
             return tail_in_words(spectrum.tail());
@@ -99,24 +99,37 @@ impl Source {
                 } else {
                     format!("tau^{power}{logarithm}")
                 };
+                let correlation = self.limiting_correlation();
                 match derivatives {
                     0 if limiting.exponent <= 1.0 => {
-                        format!("its correlation has a kink at lag 0 (it falls like {term}), so it has no derivative")
+                        format!("{correlation} has a kink at lag 0 (it falls like {term}), so it has no derivative")
                     }
-                    0 => format!(
-                        "its correlation falls like {term} at lag 0, slower than tau^2, so it has no derivative"
-                    ),
-                    1 => format!("its correlation has a term {term} at lag 0, so it has one derivative and no more"),
+                    0 => {
+                        format!("{correlation} falls like {term} at lag 0, slower than tau^2, so it has no derivative")
+                    }
+                    1 => format!("{correlation} has a term {term} at lag 0, so it has one derivative and no more"),
                     several => {
-                        format!(
-                            "its correlation has a term {term} at lag 0, so it has {several} derivatives and no more"
-                        )
+                        format!("{correlation} has a term {term} at lag 0, so it has {several} derivatives and no more")
                     }
                 }
             }
             Smoothness::AtLeast { derivatives } => format!("{derivatives} derivatives are known to exist, no more"),
             Smoothness::Unclear { reason } => reason.clone(),
         }
+    }
+
+    /// The correlation, or the one of its parts that limits how smooth it is.
+    fn limiting_correlation(&self) -> String {
+        let Some(whole) = self.kernel().map(without_factor) else {
+            return "its correlation".to_string();
+        };
+        let part = whole.roughest_part();
+        if std::ptr::eq(whole, part) {
+            return "its correlation".to_string();
+        }
+        let name = part.to_string();
+        let name = name.split('(').next().unwrap_or_default();
+        format!("the part `{name}` of its correlation")
     }
 
     /// How smooth it is.
@@ -160,5 +173,12 @@ fn power_in_words(exponent: f64) -> String {
         format!("({}/3)", thirds.round())
     } else {
         crate::units::show_number(exponent, 6)
+    }
+}
+
+fn without_factor(kernel: &Kernel) -> &Kernel {
+    match kernel {
+        Kernel::Scaled(_, inner) => without_factor(inner),
+        other => other,
     }
 }

@@ -82,6 +82,44 @@ impl Tape {
         })
     }
 
+    /// How many operations and operands an evaluation takes.
+    pub fn length(&self) -> usize {
+        self.nodes.len() + self.nodes.operands_len()
+    }
+
+    /// Whether its value is a sum of terms in the lag of which one or more are subtracted.
+    pub fn subtracts_terms(&self) -> bool {
+        let mut in_lag: Vec<bool> = Vec::with_capacity(self.nodes.len());
+        let mut negative: Vec<bool> = Vec::with_capacity(self.nodes.len());
+        let mut subtracts = false;
+        for node in self.nodes.nodes() {
+            let lag = |id: NodeId| in_lag.get(id.index()).copied().unwrap_or(false);
+            let minus = |id: NodeId| negative.get(id.index()).copied().unwrap_or(false);
+            let (has_lag, is_negative) = match node {
+                Node::Number(value) => (false, value < 0.0),
+                Node::Symbol(symbol) => (symbol == Symbol::Lag, false),
+                Node::Sum(operands) => {
+                    let terms = || operands.iter().filter(|operand| lag(operand.node));
+                    subtracts = terms().count() > 1 && terms().any(|term| term.inverse != minus(term.node));
+                    (terms().count() > 0, false)
+                }
+                Node::Product(operands) => (
+                    operands.iter().any(|operand| lag(operand.node)),
+                    operands.iter().filter(|operand| minus(operand.node)).count() % 2 == 1,
+                ),
+                Node::Negative(node) => (lag(node), !minus(node)),
+                Node::Power(base, exponent) => (lag(base) || lag(exponent), false),
+                Node::Apply(_, arguments) => (arguments.iter().any(|argument| lag(*argument)), false),
+            };
+            if !matches!(node, Node::Sum(_)) {
+                subtracts = false;
+            }
+            in_lag.push(has_lag);
+            negative.push(is_negative);
+        }
+        subtracts
+    }
+
     /// The symbols it contains, each once, sorted.
     pub fn symbols(&self) -> Vec<Symbol> {
         let symbols: BTreeSet<Symbol> = self

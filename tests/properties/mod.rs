@@ -6,4 +6,5 @@ mod numbers;
 mod passage;
 mod spectra;
 mod units;
+mod validity;
 mod writings;

@@ -1,4 +1,4 @@
-//! Covariance functions as arguments of a process: what they must be, and what a few lags already show.
+//! Covariance functions as arguments of a process: what they must be.
 
 use super::{Lowering, Scope};
 use crate::check::value::{Covariance, Number, Scalar, Value};
@@ -10,9 +10,6 @@ use crate::units::{Dimension, show_number};
 
 /// A correlation function must be 1 at lag 0 to within this: weights such as `0.3` and `0.7` add up no better.
 const ONE: f64 = 1e-9;
-
-/// The highest power of the lag with which a kernel can begin to fall.
-const FLATTEST: f64 = 2.0;
 
 /// A kernel of one process is made of at most so many others.
 const MOST_PARTS: usize = 256;
@@ -117,85 +114,6 @@ impl Lowering<'_, '_, '_> {
         self.report(Diagnostic::new(Code::ValueRange, place, message).here(format!("this is {shown} at lag 0")));
         None
     }
-
-    /// What a handful of lags can already show: a kernel is never larger than at lag 0, and bends down there. Kernels of
-    /// the language pass by construction; this is for those written out or tabulated.
-    pub(super) fn sample_for_validity(&mut self, kernel: &Kernel, place: Span) -> Option<()> {
-        if kernel.is_valid_by_construction() {
-            return Some(());
-        }
-        let at_zero = self.at_zero(kernel, place)?;
-        for lag in probing_lags(kernel) {
-            let value = match kernel.value(lag) {
-                Ok(value) => value,
-                Err(Unavailable::NoValue { .. }) => f64::NAN,
-                Err(_) => continue,
-            };
-            if value.abs() <= at_zero * (1.0 + 1e-9) {
-                continue;
-            }
-            let lag = show_number(lag, 4);
-            let (message, here) = if value.is_finite() {
-                let ratio = show_number(value / at_zero, 6);
-                (
-                    format!("no process has this kernel: at a lag of {lag} s it is larger than at lag 0"),
-                    format!("{ratio} times its value at lag 0"),
-                )
-            } else {
-                (
-                    format!("this kernel has no value at a lag of {lag} s"),
-                    "undefined or infinite there".to_string(),
-                )
-            };
-            self.report(
-                Diagnostic::new(Code::KernelInvalid, place, message)
-                    .here(here)
-                    .help("a correlation lies between -1 and 1 at every lag; check the signs and the brackets"),
-            );
-            return None;
-        }
-        self.start_for_validity(kernel, at_zero, place)
-    }
-
-    /// A kernel that jumps at lag 0 is that of white noise beside something else. One that is flatter there than tau²
-    /// has a derivative of variance 0, so that only a constant can have it (H. Cramér and M. R. Leadbetter 1967,
-    /// Stationary and Related Stochastic Processes, sec. 7.4).
-    fn start_for_validity(&mut self, kernel: &Kernel, at_zero: f64, place: Span) -> Option<()> {
-        let start = kernel.expansion(FLATTEST + 1.0);
-        if start.reason().is_some() {
-            return Some(());
-        }
-        let varies = |value: f64| (value - at_zero).abs() > ONE * at_zero;
-        let limit = start.coefficient(0.0).filter(|limit| varies(*limit));
-        let bend = start.terms().iter().find(|term| term.exponent > 0.0);
-        let flat = bend.map_or(start.order() > FLATTEST, |term| term.exponent > FLATTEST);
-        let (message, here, help) = if let Some(limit) = limit {
-            let share = show_number(limit / at_zero, 6);
-            (
-                "this kernel jumps at lag 0, which is white noise: no process of finite power can follow it",
-                format!("falls to {share} of its value right behind lag 0"),
-                "leave the jump out, or give that share a kernel with a short length",
-            )
-        } else if flat
-            && probing_lags(kernel)
-                .filter_map(|lag| kernel.value(lag).ok())
-                .any(varies)
-        {
-            (
-                "no process has this kernel: it is flatter than tau² at lag 0, so the process could never move",
-                "falls later, but does not begin to".to_string(),
-                "use a kernel that begins to fall like tau² or faster, such as `squared_exponential(...)`",
-            )
-        } else {
-            return Some(());
-        };
-        self.report(
-            Diagnostic::new(Code::KernelInvalid, place, message)
-                .here(here)
-                .help(help),
-        );
-        None
-    }
 }
 
 fn has_constant_term(kernel: &Kernel) -> bool {
@@ -255,15 +173,4 @@ pub(super) fn table_notes(kernel: &Kernel, process: &str) -> Vec<String> {
         }
         Kernel::Constant | Kernel::Family(_) | Kernel::User(_) => Vec::new(),
     }
-}
-
-/// Lags that show the shape of a kernel, from well below its shortest to well beyond its longest time.
-fn probing_lags(kernel: &Kernel) -> impl Iterator<Item = f64> {
-    const STEPS: i32 = 256;
-    let (shortest, longest) = kernel.times().unwrap_or((1.0, 1.0));
-    let (from, to) = (0.125 * shortest, 16.0 * longest);
-    let ratio = (to / from).powf(1.0 / f64::from(STEPS));
-    (0..=STEPS)
-        .map(move |step| from * ratio.powi(step))
-        .filter(|lag| lag.is_finite())
 }

@@ -30,6 +30,7 @@ mod spectrum_table;
 mod system;
 mod table;
 mod unit;
+mod validity;
 
 pub use parameter::unknown_overrides;
 pub(in crate::check) use process::fresh_source;
@@ -53,6 +54,7 @@ use not_yet::Later;
 use spectrum::SpectrumDefinition;
 use std::collections::HashMap;
 use std::rc::Rc;
+use validity::Judgements;
 
 /// Terms of all forms of a model together; beyond this the model is refused, not computed for hours.
 const MOST_TERMS: usize = 2_000_000;
@@ -137,6 +139,7 @@ pub struct Lowering<'p, 'l, 'f> {
     spectrum_tables: HashMap<std::path::PathBuf, Option<Rc<spectrum_table::Table>>>,
     /// Operations in written spectra that have been looked at, over all calls.
     written: usize,
+    judgements: Judgements,
     terms: usize,
     /// Pairs of terms over one source, in all forms together.
     pairs: usize,
@@ -169,6 +172,7 @@ impl<'p, 'l, 'f> Lowering<'p, 'l, 'f> {
             spectra: HashMap::new(),
             spectrum_tables: HashMap::new(),
             written: 0,
+            judgements: Judgements::default(),
             terms: 0,
             pairs: 0,
             expansion_depth: 0,

@@ -102,7 +102,9 @@ impl Lowering<'_, '_, '_> {
         .help(match source.kernel() {
             Some(_) => {
                 "use a kernel that is smoother at lag 0, such as `matern(smoothness: 5/2, ...)` or \
-                 `squared_exponential(...)`, if the physics allows it: a rough kernel crosses any level infinitely often"
+                 `squared_exponential(...)`, or pass the process through what smooths it, such as `average(...)` or \
+                 `respond(...)`: as it is it crosses any level infinitely often, and a count from samples depends on \
+                 their interval"
             }
             None => {
                 "pass it through what smooths it, such as `average(...)` or `respond(...)`, if the physics has it: what \

@@ -76,13 +76,13 @@ impl Lowering<'_, '_, '_> {
         let Some(description) = self.description(call, subject) else {
             return Value::Fault;
         };
-        let sound = match &description.law {
-            Law::Kernel(kernel) => self.sample_for_validity(kernel, description.place),
+        let tested = match &description.law {
+            Law::Kernel(kernel) => self.valid_kernel(item, kernel, description.place, name),
             // Looked at where it is made.
-            Law::Spectrum(_) => Some(()),
+            Law::Spectrum(_) => Some(Vec::new()),
         };
-        sound
-            .and_then(|()| self.finish(item, name, description))
+        tested
+            .and_then(|tested| self.finish(item, name, description, tested))
             .unwrap_or(Value::Fault)
     }
 
@@ -95,11 +95,12 @@ impl Lowering<'_, '_, '_> {
         Value::Fault
     }
 
-    fn finish(&mut self, item: ItemId, name: &Word, description: Description) -> Option<Value> {
+    fn finish(&mut self, item: ItemId, name: &Word, description: Description, tested: Vec<String>) -> Option<Value> {
         let mut notes = description.notes;
         if let Law::Kernel(kernel) = &description.law {
             notes.extend(table_notes(kernel, &self.names.full_name(item)));
         }
+        notes.extend(tested);
         let source = Source::new(self.names.full_name(item), description.law, name.span, notes);
         if let Smoothness::Unclear { reason } = source.smoothness() {
             let message = format!("it cannot be told how smooth the process `{}` is", name.text);

@@ -13,10 +13,12 @@
 
 mod algebra;
 mod constant;
+mod enclosure;
 mod family;
 mod length;
 mod moments;
 mod rational;
+mod resolution;
 mod smoothness;
 mod spectrum;
 mod spline;

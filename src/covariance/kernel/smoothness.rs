@@ -118,6 +118,24 @@ fn below(exponent: f64) -> u32 {
 }
 
 impl Kernel {
+    /// The part that limits how smooth it is: the roughest term or factor, the kernel itself where it has none.
+    pub fn roughest_part(&self) -> &Self {
+        match self {
+            Self::Scaled(_, kernel) => kernel.roughest_part(),
+            Self::Sum(parts) | Self::Product(parts) => {
+                let (mut roughest, mut least) = (self, (f64::INFINITY, u32::MAX));
+                for part in parts.iter() {
+                    let rank = part.smoothness().rank();
+                    if rank < least {
+                        (roughest, least) = (part.roughest_part(), rank);
+                    }
+                }
+                roughest
+            }
+            Self::Constant | Self::Family(_) | Self::Tabulated(_) | Self::User(_) => self,
+        }
+    }
+
     /// How many mean-square derivatives a process with this covariance has.
     pub fn smoothness(&self) -> Smoothness {
         match self {

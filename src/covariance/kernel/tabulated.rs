@@ -5,7 +5,7 @@ use std::fmt;
 
 use super::family::{Kink, Rough};
 use super::spline::{self, Piece};
-use super::{Estimate, Line, Unavailable};
+use super::{Estimate, Line, Unavailable, resolution};
 use crate::expression::{Series, SeriesTerm};
 use crate::numerics::quadrature::{self, Tolerance};
 
@@ -31,6 +31,8 @@ pub struct Tabulated {
     pieces: Vec<Piece>,
     last: f64,
     beyond: Beyond,
+    /// Half the last digit of its values.
+    resolution: f64,
 }
 
 /// Why a table is no covariance function. Rows count from 0.
@@ -108,6 +110,7 @@ impl Tabulated {
             pieces,
             last,
             beyond,
+            resolution: resolution::half_digit(rows.iter().map(|(_, value)| *value)),
         })
     }
 
@@ -121,12 +124,17 @@ impl Tabulated {
         self.last
     }
 
-    fn variance(&self) -> f64 {
+    /// Half of the last digit to which its values are written, which rounding has left open.
+    pub fn resolution(&self) -> f64 {
+        self.resolution
+    }
+
+    pub(super) fn variance(&self) -> f64 {
         self.pieces.first().map_or(0.0, |piece| piece.coefficients[0])
     }
 
     /// Value and slope at the last lag.
-    fn end(&self) -> (f64, f64) {
+    pub(super) fn end(&self) -> (f64, f64) {
         self.pieces.last().map_or((0.0, 0.0), |piece| {
             let [value, slope, ..] = piece.about(piece.length);
             (value, slope)
@@ -134,11 +142,11 @@ impl Tabulated {
     }
 
     /// The constant it ends in.
-    fn plateau(&self) -> f64 {
+    pub(super) fn plateau(&self) -> f64 {
         if self.beyond == Beyond::Hold { self.end().0 } else { 0.0 }
     }
 
-    fn piece(&self, lag: f64) -> Option<&Piece> {
+    pub(super) fn piece(&self, lag: f64) -> Option<&Piece> {
         let after = self.pieces.partition_point(|piece| piece.from <= lag);
         self.pieces.get(after.checked_sub(1)?).filter(|_| lag <= self.last)
     }

@@ -4,7 +4,7 @@ use std::fmt;
 use std::sync::Arc;
 
 use super::Unavailable;
-use crate::expression::{Number, Series, Tape};
+use crate::expression::{Interval, Number, Series, Tape};
 
 /// An expression in the lag, with its further arguments set.
 #[derive(Clone)]
@@ -70,6 +70,24 @@ impl User {
     /// Its value at a lag, which may be no number.
     fn evaluate(&self, lag: f64) -> f64 {
         self.tape.evaluate(&lag, &self.arguments) - self.constant
+    }
+
+    /// An interval that holds its values over an interval of lags.
+    pub(super) fn enclosure(&self, lag: Interval) -> Interval {
+        let arguments: Vec<Interval> = self.arguments.iter().map(|value| Interval::point(*value)).collect();
+        self.tape
+            .evaluate(&lag, &arguments)
+            .sub(&Interval::point(self.constant))
+    }
+
+    /// The operations that one value takes.
+    pub(super) fn operations(&self) -> u64 {
+        self.tape.length() as u64
+    }
+
+    /// Whether it is written as a sum of which a term in the lag is subtracted.
+    pub fn subtracts_terms(&self) -> bool {
+        self.tape.subtracts_terms()
     }
 
     /// Its series right of a lag, or left of it in terms of the distance.
