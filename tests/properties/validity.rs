@@ -189,14 +189,16 @@ fn written(text: &str) -> Run {
 }
 
 /// The check of a kernel that is given by a table, its values rounded.
-fn tabulated(kernel: &Function, step: f64, rows: usize, decimals: usize) -> Run {
+fn tabulated(kernel: &Function, lags: &[f64], decimals: usize) -> Run {
     let mut table = "lag [s],correlation\n0,1\n".to_string();
-    for row in 1..rows {
-        let lag = row as f64 * step;
-        writeln!(table, "{lag:.9},{:.decimals$}", (kernel.value)(lag)).expect("a text takes everything");
+    for lag in lags {
+        let written = format!("{lag:.9}");
+        let value = (kernel.value)(written.parse().expect("a number"));
+        writeln!(table, "{written},{value:.decimals$}").expect("a text takes everything");
     }
     let half_digit = 0.5 * 0.1_f64.powi(decimals as i32);
-    let mut beyond = (rows..20 * rows).map(|row| (kernel.value)(row as f64 * step));
+    let last = lags.last().copied().unwrap_or(0.0);
+    let mut beyond = (0..2000).map(|step| (kernel.value)(last * (1.0 + 0.01 * f64::from(step))));
     let gone = beyond.all(|value| value.abs() < half_digit);
     let beyond = if gone { "zero" } else { "refuse" };
     let model = process(&format!("tabulated(\"table.csv\", beyond: {beyond})"));
@@ -308,9 +310,22 @@ fn tables_of_valid_kernels_are_accepted() {
         let kernel = valid(&mut chance);
         let step = chance.length() * 0.1;
         let (rows, decimals) = (8 + chance.below(150), 1 + chance.below(7));
-        let run = tabulated(&kernel, step, rows, decimals);
+        // Every second table has uneven lags.
+        let uneven = chance.below(2) == 0;
+        let mut last = 0.0;
+        let lags: Vec<f64> = (1..rows)
+            .map(|_| {
+                last += step * if uneven { chance.between(0.3, 2.0) } else { 1.0 };
+                last
+            })
+            .collect();
+        let run = tabulated(&kernel, &lags, decimals);
         if !run.diagnostics.is_empty() {
-            failures.push(format!("{} {step} {rows} {decimals}\n{}", kernel.text, run.shown()));
+            failures.push(format!(
+                "{} {step} {rows} {decimals} {uneven}\n{}",
+                kernel.text,
+                run.shown()
+            ));
         }
     }
     fine(&failures);
@@ -349,7 +364,8 @@ fn tables_of_other_kernels_are_refused_with_a_proof() {
         };
         tried += 1;
         let step = l / (4 + chance.below(20)) as f64;
-        let run = tabulated(&kernel, step, 60, 4);
+        let lags: Vec<f64> = (1..60).map(|row| f64::from(row) * step).collect();
+        let run = tabulated(&kernel, &lags, 4);
         let text = format!("{} {l} {step}", kernel.text);
         if let Err(why) = proven(&run, &text, &kernel.value) {
             failures.push(why);

@@ -62,7 +62,8 @@ impl Lowering<'_, '_, '_> {
                 Some(vec![format!("{note} A {seen} is too little to be told from rounding.")])
             }
             Validity::Untested => Some(vec![format!(
-                "The kernel of {process} was not tested: the model has more kernels of its own than are tested."
+                "Whether the kernel of {process} is that of a process was not tested: what a model's tests may cost was \
+                 spent."
             )]),
             Validity::Invalid(violation) => {
                 self.report(finding(&violation, place, name));
@@ -109,7 +110,7 @@ fn fault(violation: &Violation) -> (Code, String, String) {
         Kind::JumpAtEnd { lag, from, to } => (
             Code::KernelJump,
             format!(
-                "its table jumps from {} to {} behind the last lag, {} s",
+                "it jumps from {} to {} where its table ends, at {} s",
                 show_number(from, 6),
                 show_number(to, 6),
                 show_number(lag, 6)
@@ -259,17 +260,19 @@ fn mend(violation: &Violation) -> String {
 
 /// What results rest on where a kernel was tested and not proven.
 fn tested(process: &str, kernel: &Kernel, bounds: Bounds) -> String {
-    let resolution = match kernel.rows() {
+    let start =
+        format!("That the kernel of {process} is that of a process was tested, not proven: it shows no negative power");
+    let highest = show_number(bounds.highest() / (2.0 * PI), DIGITS);
+    match kernel.rows() {
         Some((_, resolution)) if resolution > 0.0 => format!(
-            ", its table taken at its rows and to {}, half of its last digit",
+            "{start} up to {highest} Hz, its table taken at its rows and to {}, half of its last digit.",
             show_number(resolution, DIGITS)
         ),
-        _ => String::new(),
-    };
-    format!(
-        "That the kernel of {process} is that of a process was tested, not proven: it shows no negative power up to {} Hz, \
-         to a resolution of {} Hz{resolution}.",
-        show_number(bounds.highest() / (2.0 * PI), DIGITS),
-        show_number(bounds.resolution() / (2.0 * PI), DIGITS),
-    )
+        Some(_) => format!("{start} up to {highest} Hz, its table taken at its rows."),
+        None => format!(
+            "{start} up to {highest} Hz, in bands of {} % of their frequency and no narrower than {} Hz.",
+            show_number(100.0 * bounds.share, 2),
+            show_number(bounds.resolution() / (2.0 * PI), DIGITS),
+        ),
+    }
 }

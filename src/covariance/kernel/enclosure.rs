@@ -59,7 +59,7 @@ impl Kernel {
             Self::Family(_) => Some((self.value(lag).ok()?, CLOSED_FORM)),
             Self::User(_) => {
                 let value = self.value(lag).ok()?;
-                Some((value, EXPRESSION * value.abs().max(self.value(0.0).ok()?.abs())))
+                Some((value, EXPRESSION * value.abs()))
             }
             Self::Tabulated(table) => table.known(lag),
             Self::Scaled(weight, kernel) => {

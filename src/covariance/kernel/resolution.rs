@@ -1,5 +1,6 @@
 //! How far a table can be trusted: to half its last digit at its rows, less between them.
 
+use super::spline::Piece;
 use super::tabulated::{Beyond, Tabulated};
 use crate::expression::Interval;
 
@@ -38,9 +39,9 @@ pub(super) fn half_digit(values: impl Iterator<Item = f64> + Clone) -> f64 {
 impl Tabulated {
     /// What the table says at a lag, and what it leaves open there; `None` where it says nothing.
     ///
-    /// At a row it is half the last digit, except at lag zero, where a correlation is 1. Between two rows it is what the
-    /// straight line between them would have, and twice the distance of the spline from that line. Beyond a table that
-    /// ends in a constant it is half the last digit again, or the step down to that constant.
+    /// At a row it is half the last digit, except at lag zero, where a correlation is 1. Towards the middle between two
+    /// rows it grows to twice the largest distance of the spline from the straight line, here or between the rows next
+    /// to these. Beyond a table that ends in a constant it is half the last digit again, or the step down to it.
     pub(super) fn known(&self, lag: f64) -> Option<(f64, f64)> {
         let lag = if (lag - self.last_lag()).abs() <= SAME * self.last_lag() {
             self.last_lag()
@@ -48,15 +49,14 @@ impl Tabulated {
             lag
         };
         let value = self.value(lag).ok()?;
-        let Some(piece) = self.piece(lag) else {
+        let Some((place, piece)) = self.place(lag) else {
             return Some((value, self.doubt_beyond()));
         };
-        let x = lag - piece.from;
-        let share = x / piece.length;
-        let [at_row, ..] = piece.coefficients;
-        let straight = at_row + share * piece.change(piece.length);
-        let of_row = if piece.from == 0.0 { share } else { 1.0 };
-        Some((value, of_row * self.resolution() + BETWEEN * (value - straight).abs()))
+        let share = (lag - piece.from) / piece.length;
+        let of_row = if place == 0 { share } else { 1.0 };
+        let bend = self.pieces_about(place).iter().map(bend).fold(0.0, f64::max);
+        let between = 4.0 * share * (1.0 - share).max(0.0) * BETWEEN * bend;
+        Some((value, of_row * self.resolution() + between))
     }
 
     /// An interval that holds the values over lags that differ by no more than rounding.
@@ -92,6 +92,15 @@ impl Tabulated {
         let allowed = (ROUNDED_TWICE * self.resolution()).max(FADED * self.variance());
         (self.step_at_end() > allowed).then(|| (self.end().0, self.plateau()))
     }
+}
+
+/// How far a piece of the spline is from the straight line between its rows.
+fn bend(piece: &Piece) -> f64 {
+    let end = piece.change(piece.length);
+    [0.25, 0.5, 0.75]
+        .into_iter()
+        .map(|share| (piece.change(share * piece.length) - share * end).abs())
+        .fold(0.0, f64::max)
 }
 
 /// Both values at a step may be wrong by half a digit.

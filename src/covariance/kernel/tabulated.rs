@@ -146,9 +146,21 @@ impl Tabulated {
         if self.beyond == Beyond::Hold { self.end().0 } else { 0.0 }
     }
 
-    pub(super) fn piece(&self, lag: f64) -> Option<&Piece> {
+    fn piece(&self, lag: f64) -> Option<&Piece> {
+        self.place(lag).map(|(_, piece)| piece)
+    }
+
+    /// The piece that a lag lies in, and its place among all.
+    pub(super) fn place(&self, lag: f64) -> Option<(usize, &Piece)> {
         let after = self.pieces.partition_point(|piece| piece.from <= lag);
-        self.pieces.get(after.checked_sub(1)?).filter(|_| lag <= self.last)
+        let place = after.checked_sub(1)?;
+        Some((place, self.pieces.get(place)?)).filter(|_| lag <= self.last)
+    }
+
+    /// A piece with those next to it.
+    pub(super) fn pieces_about(&self, place: usize) -> &[Piece] {
+        let end = (place + 2).min(self.pieces.len());
+        self.pieces.get(place.saturating_sub(1)..end).unwrap_or_default()
     }
 
     fn refused(&self, lag: f64) -> Unavailable {

@@ -50,6 +50,8 @@ pub struct Bounds {
     pub finest: f64,
     /// The longest lag, in s.
     pub longest: f64,
+    /// The half width of the bands of frequency that were kept apart, as a share of the frequency.
+    pub share: f64,
 }
 
 /// Why a kernel is no covariance function.
@@ -113,8 +115,11 @@ impl Bounds {
         scan::CUT / self.longest
     }
 
-    fn include(&mut self, step: f64, samples: usize) {
+    /// Samples at even steps, of which the next ones are `stride` times as long.
+    fn include(&mut self, step: f64, samples: usize, stride: f64) {
         let end = step * (samples - 1) as f64;
+        let highest = std::f64::consts::PI / step;
+        self.share = self.share.max(stride * scan::CUT / end / highest);
         self.finest = if self.finest == 0.0 {
             step
         } else {
@@ -170,37 +175,38 @@ pub fn examine(kernel: &Kernel, budget: &mut Budget) -> Result<Validity, Unavail
     {
         return Ok(Validity::invalid(Kind::NoValue { lag }));
     }
-    let fault = Start::fault(kernel, variance, probing_lags(times));
-    let power = scan.negative.iter().copied().reduce(deeper);
     let search = Search::new(kernel, variance);
-    let seen = power.is_some() || affordable && search.rows_contradict();
-    let kind = match (fault, too_large, end_of_table(kernel, variance), seen) {
-        (_, Some((lag, ratio)), ..) => Kind::TooLarge { lag, ratio },
-        (Some(Start::Jump(share)), ..) => return Ok(Validity::invalid(Kind::JumpAtZero { share })),
-        (_, _, Some(jump), _) => jump,
-        (Some(Start::Flat), ..) => Kind::Flat,
-        (.., true) => Kind::NegativePower,
-        _ if affordable => return Ok(Validity::Tested(scan.bounds)),
-        _ => return Ok(Validity::Untested),
-    };
-    let witness = match kind {
-        Kind::JumpAtEnd { lag, from, .. } => proof_of_jump(kernel, lag, from),
-        _ => None,
-    };
-    // Looking for a proof costs several times what the scan did.
-    let witness = witness.or_else(|| {
-        let searched = budget.take(work.saturating_mul(4).min(10_000_000));
-        searched.then(|| search.run(times, &scan.negative)).flatten()
-    });
-    let witness = witness.or_else(|| match kind {
-        Kind::TooLarge { lag, ratio } => proof_of_size(kernel, lag, ratio),
-        _ => None,
-    });
-    if kind == Kind::NegativePower && witness.is_none() {
-        return Ok(power.map_or(Validity::Tested(scan.bounds), |power| {
-            Validity::Undecided(scan.bounds, power)
-        }));
+    let start = Start::fault(kernel, variance, probing_lags(times));
+    let jump = jump_of_table(kernel, variance);
+    let power = scan.negative.iter().copied().reduce(deeper);
+    let suspected = too_large.is_some() || power.is_some() || affordable && search.rows_contradict();
+    if let Some(Start::Jump(share)) = start
+        && too_large.is_none()
+    {
+        return Ok(Validity::invalid(Kind::JumpAtZero { share }));
     }
+    let witness = jump
+        .and_then(|jump| proof_of_jump(kernel, jump))
+        .or_else(|| {
+            // Looking for a proof costs several times what the scan did.
+            let look = (suspected || start.is_some()) && budget.take(work.saturating_mul(4).min(DEAREST_SEARCH));
+            look.then(|| search.run(times, &scan.negative)).flatten()
+        })
+        .or_else(|| too_large.and_then(|(lag, ratio)| proof_of_size(kernel, lag, ratio)));
+    let kind = match (too_large, start, jump, &witness) {
+        (_, _, Some(kind), _) => kind,
+        (Some((lag, ratio)), _, _, Some(_)) => Kind::TooLarge { lag, ratio },
+        // That its derivative would have no variance is a proof as well.
+        (_, Some(Start::Flat), ..) => Kind::Flat,
+        (.., Some(_)) => Kind::NegativePower,
+        (.., None) => {
+            return Ok(match power {
+                Some(power) => Validity::Undecided(scan.bounds, power),
+                None if affordable && scan.bounds.finest > 0.0 => Validity::Tested(scan.bounds),
+                None => Validity::Untested,
+            });
+        }
+    };
     Ok(Validity::Invalid(Box::new(Violation {
         kind,
         witness,
@@ -209,6 +215,9 @@ pub fn examine(kernel: &Kernel, budget: &mut Budget) -> Result<Validity, Unavail
         resolution: kernel.rows().map(|(_, resolution)| resolution),
     })))
 }
+
+/// The operations that a search for a proof counts for, at most.
+const DEAREST_SEARCH: u64 = 10_000_000;
 
 impl Validity {
     /// Invalid for a reason that needs no more words.
@@ -302,16 +311,28 @@ fn larger_than_at_zero(kernel: &Kernel, variance: f64, times: (f64, f64)) -> Opt
     largest.1.is_finite().then_some(largest)
 }
 
-/// The jump at the end of a table that is the whole kernel.
-fn end_of_table(kernel: &Kernel, variance: f64) -> Option<Kind> {
+/// The jump where a table in the kernel ends.
+fn jump_of_table(kernel: &Kernel, variance: f64) -> Option<Kind> {
+    /// A lag right behind another.
+    const BEHIND: f64 = 1.0 + 1e-9;
+    /// A share of the variance that is no jump.
+    const NOTHING: f64 = 1e-3;
+    jumping_ends(kernel).into_iter().find_map(|lag| {
+        let (from, to) = (
+            kernel.value(lag).ok()? / variance,
+            kernel.value(BEHIND * lag).ok()? / variance,
+        );
+        ((from - to).abs() > NOTHING).then_some(Kind::JumpAtEnd { lag, from, to })
+    })
+}
+
+/// The last lags of the tables in a kernel that jump there.
+fn jumping_ends(kernel: &Kernel) -> Vec<f64> {
     match kernel {
-        Kernel::Tabulated(table) => table.jump().map(|(from, to)| Kind::JumpAtEnd {
-            lag: table.last_lag(),
-            from: from / variance,
-            to: to / variance,
-        }),
-        Kernel::Scaled(_, inner) => end_of_table(inner, inner.value(0.0).unwrap_or(variance)),
-        _ => None,
+        Kernel::Tabulated(table) => table.jump().map(|_| table.last_lag()).into_iter().collect(),
+        Kernel::Scaled(_, inner) => jumping_ends(inner),
+        Kernel::Sum(parts) | Kernel::Product(parts) => parts.iter().flat_map(jumping_ends).collect(),
+        Kernel::Constant | Kernel::Family(_) | Kernel::User(_) => Vec::new(),
     }
 }
 
@@ -325,15 +346,14 @@ fn proof_of_size(kernel: &Kernel, lag: f64, ratio: f64) -> Option<Witness> {
     })
 }
 
-/// Three instants about a jump from `from` to nothing: X(t) and X(t + e) are nearly the same, but one of them depends on
-/// X(0) and the other does not. With weights 1, -m, m the variance is 1 - 2 m from + 2 m² (1 - rho(e)), about -1
-/// for m = 1 / from and e small enough.
-fn proof_of_jump(kernel: &Kernel, lag: f64, from: f64) -> Option<Witness> {
-    let weight = (1.0 / from.abs()).ceil();
-    if !(weight < 1e6) {
+/// Three instants about a jump: X(t) and X(t + e) are nearly the same, but one of them depends on X(0) more than the
+/// other. With weights 1, -m, m the variance is 1 - 2 m jump + 2 m² (1 - rho(e)), about -1 for m = 1 / jump and e small enough.
+fn proof_of_jump(kernel: &Kernel, kind: Kind) -> Option<Witness> {
+    let Kind::JumpAtEnd { lag, from, to } = kind else {
         return None;
-    }
-    let weight = weight as i64 * if from > 0.0 { 1 } else { -1 };
+    };
+    let weight = (1.0 / (from - to).abs()).ceil() as i64;
+    let weight = if from > to { weight } else { -weight };
     let last = Decimal::of(lag)?;
     (1..12).find_map(|power| {
         let little = Decimal::near(lag * 10.0_f64.powi(-power), 1)?;

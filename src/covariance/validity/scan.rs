@@ -142,7 +142,7 @@ pub(super) fn scan(kernel: &Kernel, variance: f64, times: (f64, f64)) -> Scan {
         if values.len() < 2 {
             continue;
         }
-        scan.bounds.include(step, values.len());
+        scan.bounds.include(step, values.len(), STRIDE);
         scan.negative.extend(deepest(&values, step, &transform));
     }
     scan
