@@ -97,7 +97,7 @@ fn valid(chance: &mut Chance) -> Function {
     let count = 1 + chance.below(3);
     let mut left = 100;
     let mut text = String::new();
-    let mut terms: Vec<(f64, Box<dyn Fn(f64) -> f64>)> = Vec::new();
+    let mut terms: Vec<(f64, Function)> = Vec::new();
     for place in 0..count {
         let percent = if place + 1 == count {
             left
@@ -108,9 +108,11 @@ fn valid(chance: &mut Chance) -> Function {
         let term = valid_term(chance, length);
         let plus = if place > 0 { " + " } else { "" };
         write!(text, "{plus}{percent} % * {}", term.text).expect("a text takes everything");
-        terms.push((percent as f64 / 100.0, term.value));
+        terms.push((percent as f64 / 100.0, term));
     }
-    function(text, move |t| terms.iter().map(|(weight, term)| weight * term(t)).sum())
+    function(text, move |t| {
+        terms.iter().map(|(weight, term)| weight * (term.value)(t)).sum()
+    })
 }
 
 /// A function that is not the correlation of any process.
