@@ -137,8 +137,8 @@ pub struct Budget {
 
 impl Default for Budget {
     fn default() -> Self {
-        /// Operations of expressions: some seconds.
-        const OPERATIONS: u64 = 200_000_000;
+        /// Operations of expressions: about a second, or 500 kernels of usual length.
+        const OPERATIONS: u64 = 60_000_000;
         Self { operations: OPERATIONS }
     }
 }
@@ -162,7 +162,9 @@ pub fn examine(kernel: &Kernel, budget: &mut Budget) -> Result<Validity, Unavail
     let variance = kernel.value(0.0)?;
     let times = times(kernel, variance);
     let (steps, samples) = scan::plan(kernel, times);
+    let of_rows = kernel.rows().map_or(0, |_| ROWS_COST);
     let work = kernel.operations().saturating_mul((steps.len() * samples) as u64);
+    let work = work.saturating_add(of_rows);
     let affordable = budget.take(work);
     let scan = if affordable {
         scan::scan(kernel, variance, times)
@@ -215,6 +217,9 @@ pub fn examine(kernel: &Kernel, budget: &mut Budget) -> Result<Validity, Unavail
         resolution: kernel.rows().map(|(_, resolution)| resolution),
     })))
 }
+
+/// The operations that the matrices of a table's rows count for.
+const ROWS_COST: u64 = 500_000;
 
 /// The operations that a search for a proof counts for, at most.
 const DEAREST_SEARCH: u64 = 10_000_000;
