@@ -124,6 +124,9 @@ fn is_about_values(code: Code) -> bool {
                 | Code::ValueRange
                 | Code::KernelNotOne
                 | Code::KernelInvalid
+                | Code::KernelBound
+                | Code::KernelJump
+                | Code::KernelNegativeSpectrum
                 | Code::KernelFluctuation
                 | Code::ProcessMeanSquare
                 | Code::ProcessZeroMean

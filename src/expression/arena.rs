@@ -182,11 +182,6 @@ impl Arena {
         self.nodes.iter().map(|kept| self.read(*kept))
     }
 
-    /// How many operands its nodes have together.
-    pub(super) fn operands_len(&self) -> usize {
-        self.operands.len() + self.arguments.len()
-    }
-
     /// Adds a node as it is.
     pub(super) fn push(&mut self, node: Node<'_>) -> NodeId {
         let kept = match node {

@@ -82,11 +82,6 @@ impl Tape {
         })
     }
 
-    /// How many operations and operands an evaluation takes.
-    pub fn length(&self) -> usize {
-        self.nodes.len() + self.nodes.operands_len()
-    }
-
     /// Whether its value is a sum of terms in the lag of which one or more are subtracted.
     pub fn subtracts_terms(&self) -> bool {
         let mut in_lag: Vec<bool> = Vec::with_capacity(self.nodes.len());

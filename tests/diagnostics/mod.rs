@@ -7,7 +7,6 @@ mod limits;
 mod mutation;
 mod pages;
 mod parts;
-pub mod random;
 mod rendering;
 mod robustness;
 mod slips;

@@ -2,7 +2,7 @@
 //! as tables.
 
 use crate::support::memory::{Memory, Run};
-use crate::diagnostics::random::Random;
+use crate::support::random::Random;
 use std::f64::consts::FRAC_PI_2;
 use std::fmt::Write;
 

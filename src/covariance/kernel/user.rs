@@ -82,7 +82,7 @@ impl User {
 
     /// The operations that one value takes.
     pub(super) fn operations(&self) -> u64 {
-        self.tape.length() as u64
+        self.tape.size() as u64
     }
 
     /// Whether it is written as a sum of which a term in the lag is subtracted.

@@ -138,7 +138,7 @@ pub struct Budget {
 impl Default for Budget {
     fn default() -> Self {
         /// Operations of expressions: about a second, or 500 kernels of usual length.
-        const OPERATIONS: u64 = 60_000_000;
+        const OPERATIONS: u64 = 40_000_000;
         Self { operations: OPERATIONS }
     }
 }
