@@ -192,13 +192,16 @@ fn quadratic(matrix: &DMatrix<f64>, weights: &[f64]) -> f64 {
         .sum()
 }
 
-/// The vector with its largest entry 1 and the fewest decimals with which its quadratic form is still clearly negative.
+/// The vector with its largest entry 1 or -1, its first not negative, and the fewest decimals with which its quadratic form is still clearly negative.
 fn rounded(matrix: &DMatrix<f64>, vector: &[f64]) -> Vec<f64> {
     let largest = vector.iter().copied().fold(
         0.0,
         |most: f64, entry| if entry.abs() > most.abs() { entry } else { most },
     );
-    let scaled: Vec<f64> = vector.iter().map(|entry| entry / largest).collect();
+    // What counts for nothing has no sign.
+    let first = vector.iter().find(|entry| entry.abs() > 1e-9 * largest.abs());
+    let size = largest.abs().copysign(first.copied().unwrap_or(1.0));
+    let scaled: Vec<f64> = vector.iter().map(|entry| entry / size).collect();
     let exact = quadratic(matrix, &scaled);
     (0..15)
         .map(|decimals| 10.0_f64.powi(decimals))

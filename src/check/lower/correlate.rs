@@ -140,10 +140,15 @@ impl Lowering<'_, '_, '_> {
             return Some(Coherence::Constant(number));
         }
         let message = "a coherence lies between -1 and 1";
-        self.report(
-            Diagnostic::new(Code::ValueRange, value.span, message)
-                .here(format!("this is {}", show_number(number, DIGITS))),
-        );
+        let mut finding = Diagnostic::new(Code::ValueRange, value.span, message)
+            .here(format!("this is {}", show_number(number, DIGITS)));
+        if (1.0..=100.0).contains(&number) {
+            finding.help = Some(format!(
+                "write `{} %` if a percentage is meant",
+                self.as_written(value.span)
+            ));
+        }
+        self.report(finding);
         None
     }
 
