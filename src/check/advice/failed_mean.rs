@@ -15,23 +15,23 @@ impl Finished<'_> {
         })?;
         let state = judged.state;
         let mean = state.margin.mean();
-        let deviation = self.standard_deviation(&state.margin)?;
-        let beyond = |level: f64| (mean - level) / deviation;
-        let failed = match state.region {
+        let beyond = |level: f64| mean - level;
+        let distance = match state.region {
             FailureRegion::Below(level) => -beyond(level),
             FailureRegion::Above(level) => beyond(level),
             FailureRegion::Outside(lower, upper) => (-beyond(lower)).max(beyond(upper)),
         };
-        if failed.is_nan() || failed <= 0.0 {
+        if distance.is_nan() || distance <= 0.0 {
             return None;
         }
-        let safe = show_number(normal::upper(failed), 2);
+        let safe = normal::upper(distance / self.standard_deviation(&state.margin)?);
         let shown = show(mean, &state.unit, 5);
         let message = format!(
             "failure is the normal state of `{}`: the mean of its margin, {shown}, is failed",
             judged.name.text
         );
         let help = match &condition.kind {
+            _ if matches!(state.region, FailureRegion::Outside(..)) => None,
             ConditionKind::Below(margin, level) => Some((margin, ">", level)),
             ConditionKind::Above(margin, level) => Some((margin, "<", level)),
             _ => None,
@@ -47,7 +47,8 @@ impl Finished<'_> {
         Some(
             Diagnostic::new(Code::LimitFailedMean, condition.span, message)
                 .here(format!(
-                    "safe for a share of {safe} of the time only: the result is that of the reverse condition"
+                    "safe for a share of {} of the time only: the result is that of the reverse condition",
+                    show_number(safe, 2)
                 ))
                 .help(help),
         )

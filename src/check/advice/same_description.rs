@@ -1,7 +1,7 @@
 //! Processes of one margin that are described in the same way: independent of each other, or the same one twice?
 
 use super::Finished;
-use crate::covariance::form::{SourceId, Term};
+use crate::covariance::form::{Operator, SourceId, Term};
 use crate::diagnostics::{Code, Diagnostic};
 use crate::source::Span;
 use crate::units::show;
@@ -111,7 +111,10 @@ impl Finished<'_> {
             for (_, others) in &group[index + 1..] {
                 for a in *terms {
                     for b in *others {
-                        if a.operator.derivatives + b.operator.derivatives > 0 {
+                        let is_delay = |term: &Term| {
+                            term.operator.derivatives == 0 && term.operator.systems == Operator::IDENTITY.systems
+                        };
+                        if !(is_delay(a) && is_delay(b)) {
                             return None;
                         }
                         let lag = (a.operator.delay - b.operator.delay).abs();

@@ -2,6 +2,7 @@
 //! is slow is drawn once rather than over and over.
 
 use super::{Finished, Judged};
+use crate::covariance::form::Operator;
 use crate::diagnostics::{Code, Diagnostic};
 use crate::language::tree::LimitLineKind;
 use crate::units::{show, show_number};
@@ -17,6 +18,11 @@ impl Finished<'_> {
     pub(super) fn short_period(&self, judged: &Judged<'_>) -> Option<Diagnostic> {
         let state = judged.state;
         let period = state.reference_period.seconds;
+        // The memory of a response is that of its system, and much work to find.
+        let mut terms = state.margin.terms().iter();
+        if terms.any(|term| term.operator.systems != Operator::IDENTITY.systems) {
+            return None;
+        }
         let variance = self.covariance(&state.margin, 0.0)?;
         let mut least = f64::INFINITY;
         for share in SHARES {
