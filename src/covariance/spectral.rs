@@ -26,6 +26,12 @@ pub trait SpectralDensity {
     /// where it is infinite, infinity where it begins flatter than any power or is 0 up to some frequency.
     fn head(&self) -> f64;
 
+    /// The longest lag whose wave the density has at high frequency, in s: that of a kink of the kernel. 0 where it falls
+    /// without waves.
+    fn wave(&self) -> f64 {
+        0.0
+    }
+
     /// The density as a sum of rational functions, where it is one.
     fn rational(&self) -> Option<Vec<Rational>>;
 }
@@ -128,6 +134,10 @@ impl SpectralDensity for Kernel {
 
     fn tail(&self) -> Tail {
         Tail::from(&self.smoothness())
+    }
+
+    fn wave(&self) -> f64 {
+        self.kinks().last().map_or(0.0, |kink| kink.lag)
     }
 
     /// Kernels are finite at frequency 0 but for those that fade too slowly, whose singularity is integrable.

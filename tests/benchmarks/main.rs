@@ -1,7 +1,7 @@
 //! Speed, each figure beside its baseline: `cargo bench`.
 //!
 //! Baselines: `pest_alone` reads the same text with the grammar and throws the pairs away; `nothing` is a Rust program
-//! that does nothing, run as a whole process.
+//! that does nothing, run as a whole process. That of responses is SciPy (`responses.py` beside this file).
 
 #![allow(missing_docs, reason = "what pest_derive makes has none")]
 #![allow(
@@ -11,6 +11,7 @@
 )]
 
 mod generated;
+mod responses;
 
 use divan::{Bencher, black_box};
 use outcross::check::{Model, Settings, check};

@@ -1,12 +1,14 @@
 //! Checks against published values, one file per source.
 
 mod abramowitz_stegun_1964;
+mod averages_vanmarcke_1983;
 mod burton_2001;
 mod cartwright_longuet_higgins_1956;
 mod clough_penzien_1975;
 mod davenport_1961;
 mod davenport_1964;
 mod der_kiureghian_1980;
+mod der_kiureghian_1981;
 mod dnv_rp_c205;
 mod en_1990_2002;
 mod hand_calculations;
@@ -19,6 +21,7 @@ mod kernels_vanmarcke_random_fields;
 mod larrabee_cornell_1981;
 mod leadbetter_lindgren_rootzen_1983;
 mod oeis;
+mod oscillator_white_noise;
 mod pierson_moskowitz_1964;
 mod rasmussen_williams_2006;
 mod rice_1944;
@@ -30,4 +33,5 @@ mod vanmarcke_1972;
 mod vanmarcke_1975;
 mod vanmarcke_1983;
 mod veneziano_grigoriu_cornell_1977;
+pub mod white;
 mod wong_1966;

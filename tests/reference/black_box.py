@@ -20,7 +20,7 @@ import numpy as np
 from scipy.integrate import quad
 from scipy.interpolate import CubicSpline
 from scipy.optimize import brentq
-from scipy.special import log_ndtr, roots_legendre
+from scipy.special import expit, log_ndtr, roots_legendre
 from sklearn.gaussian_process import kernels as sk
 
 mp.mp.dps = 30
@@ -695,7 +695,7 @@ def random_kernel(rng):
         density = lambda w: math.sqrt(2 / math.pi) * length * np.exp(-0.5 * (w * length) ** 2)
         return f"squared_exponential(length: {number(length)} s)", density, math.inf, [1 / length, 8 / length]
     if kind in ("exponential", "matern"):
-        nu = 0.5 if kind == "exponential" else rng.choice([1.5, 2.5, round(rng.uniform(0.6, 3), 2)])
+        nu = 0.5 if kind == "exponential" else rng.choice([1.5, 2.5, rng.randint(0, 3) + rng.choice([0.7, 0.8, 0.85])])
         a = math.sqrt(2 * nu) / length if kind == "matern" else 1 / length
         factor = 2 / math.sqrt(math.pi) * math.gamma(nu + 0.5) / math.gamma(nu)
         density = lambda w: factor / a * (1 + (w / a) ** 2) ** -(nu + 0.5)
@@ -816,32 +816,40 @@ def systems(program, rng):
 
 
 def exact_moments(density, exponent, frequencies, parts):
-    """lambda_0, lambda_1, lambda_2 and lambda_4; what waves add is left out where it no longer matters."""
+    """lambda_0, lambda_1, lambda_2 and lambda_4. Far out the waves between instants fade out smoothly over many periods,
+    where they add nothing; what is left goes on over the logarithm of frequency."""
     orders = np.array([0, 1, 2, 4])
     finite = orders + 1 < exponent
-    top = max(frequencies)
 
-    def head(w):
-        amplitude = sum(c * part.whole(w) for c, part in parts)
-        return np.array([w**n for n in orders[finite]]) * (density(w) * abs(amplitude) ** 2)
+    def powers(w, values):
+        return np.array([w**n for n in orders[finite]]) * (density(w) * values)
 
-    def tail(x):
-        w = np.exp(x)
+    def with_waves(w):
+        return abs(sum(c * part.whole(w) for c, part in parts)) ** 2
+
+    def without(w):
         instants = {}
         for c, part in parts:
             for at, value in part.by_instant(w).items():
                 instants[at] = instants.get(at, 0) + c * value
-        square = sum(abs(value) ** 2 for value in instants.values())
-        return np.array([w ** (n + 1) for n in orders[finite]]) * (density(w) * square)
+        return sum(abs(value) ** 2 for value in instants.values())
+
+    def fading(w):
+        share = np.clip(w / end - 1, 1e-3, 1 - 1e-3)
+        left = expit(1 / share - 1 / (1 - share))
+        return powers(w, left * with_waves(w) + (1 - left) * without(w))
 
     latest = [at for _, part in parts for at in part.by_instant(np.array([1.0]))]
     span = max(latest) - min(latest)
-    end = top * 400
-    while span * end > 2e5:
+    end = max(frequencies) * 150
+    while span * end > 5e4:
         end /= 2
-    total = integral(head, panels(frequencies, 0.0, end, 2 * math.pi / span if span else end))
+    widest = 2 * math.pi / span if span else 2 * end
+    total = integral(lambda w: powers(w, with_waves(w)), panels(frequencies, 0.0, end, widest))
+    total = total + integral(fading, panels([], end, 2 * end, min(widest, end / 30)))
     far = max(60, min(600, 25 / (exponent - orders[finite].max() - 1))) if math.isfinite(exponent) else 20
-    total = total + integral(tail, np.linspace(math.log(end), math.log(end) + far, 600))
+    beyond = lambda x: powers(np.exp(x), np.exp(x) * without(np.exp(x)))
+    total = total + integral(beyond, np.linspace(math.log(2 * end), math.log(2 * end) + far, 600))
     exact = np.full(4, np.inf)
     exact[finite] = total
     return exact

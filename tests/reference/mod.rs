@@ -3,6 +3,7 @@
 
 mod first_moment;
 mod kernels;
+mod responses;
 mod spectra;
 
 use outcross::numerics::{bessel, gamma, matern, normal};

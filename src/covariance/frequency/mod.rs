@@ -3,12 +3,14 @@
 //! Over one source a form is the response A(omega), the sum of `a (i omega)^n exp(-i omega d) H(omega)` over its terms, and its
 //! one-sided density is |A|² G. Two forms have the cross density conj(A) B G (N. C. Nigam 1983, Introduction to Random
 //! Vibrations, ch. 6, from memory). Where G and every H are rational there is a closed form by residues; whatever it does not
-//! reach, or not accurately, is integrated.
+//! reach, or not accurately, is integrated; averages of a kernel are also had over lags, and the better number counts.
 
+mod averages;
 pub(super) mod coherent;
 mod quadrature;
 mod rational;
 mod response;
+mod sampled;
 
 use super::form::Term;
 use super::kernel::{Beyond, Unavailable};
@@ -19,6 +21,7 @@ use super::spectral::{SpectralDensity, Tail};
 use quadrature::{Cross, ORDERS, Side};
 use rational::Closed;
 use response::{Response, Smooth, by_delay};
+use sampled::Sampled;
 
 /// The relative error above which a closed form is left for the quadrature.
 const CLOSE: f64 = 1e-9;
@@ -70,7 +73,29 @@ pub(super) fn moments(source: &Source, terms: &[Term]) -> [Moment; 4] {
     if beyond_table(source, terms).is_some() {
         return [Moment::Unknown; 4];
     }
-    moments_over(source.spectral(), source.tail(), terms)
+    let spectrum = source.spectral();
+    let over_frequencies = || {
+        if spectrum.is_closed() {
+            return moments_over(spectrum, source.tail(), terms);
+        }
+        match Sampled::new(spectrum) {
+            Ok(sampled) => moments_over(&sampled, source.tail(), terms),
+            Err(why) => [unavailable(&why); 4],
+        }
+    };
+    let mut found = over_frequencies();
+    for (found, order) in found.iter_mut().zip(ORDERS) {
+        if order != 1 && *found != Moment::Infinite {
+            let over_lags = source
+                .kernel()
+                .and_then(|kernel| averages::covariance(kernel, terms, terms, 0.0, order));
+            *found = better(
+                over_lags.map_or(Moment::Unreached, |found| reached(found.into())),
+                *found,
+            );
+        }
+    }
+    found
 }
 
 /// The same over a spectrum and its tail.
@@ -135,7 +160,22 @@ pub(super) fn covariance(source: &Source, one: &[Term], other: &[Term], lag: f64
     if beyond_table(source, one).or(beyond_table(source, other)).is_some() {
         return Moment::Unknown;
     }
-    covariance_over(source.spectral(), source.tail(), (one, other), lag)
+    let over_lags = source
+        .kernel()
+        .and_then(|kernel| averages::covariance(kernel, one, other, lag, 0));
+    let spectrum = source.spectral();
+    let found = if spectrum.is_closed() {
+        covariance_over(spectrum, source.tail(), (one, other), lag)
+    } else {
+        match Sampled::new(spectrum) {
+            Ok(sampled) => covariance_over(&sampled, source.tail(), (one, other), lag),
+            Err(why) => unavailable(&why),
+        }
+    };
+    match found {
+        Moment::Infinite => found,
+        found => better(over_lags.map_or(Moment::Unreached, Moment::from), found),
+    }
 }
 
 /// The same over a spectrum and its tail.
@@ -239,7 +279,7 @@ fn better(one: Moment, other: Moment) -> Moment {
                 other
             }
         }
-        (one @ Moment::Finite { .. }, Moment::Unreached) => one,
+        (one @ Moment::Finite { .. }, Moment::Unreached | Moment::Unknown) => one,
         (_, other) => other,
     }
 }

@@ -3,7 +3,7 @@
 //! The integrand is a density times |A|², or times the cross term of two responses. It is integrated between breakpoints
 //! graded towards the peaks of the density and of every system, all moments from the same values. Beyond the last of
 //! them it is a power law, perhaps with waves where instants differ. The part without waves goes to infinity by omega = E
-//! u^-m, which turns omega^-p into a power of u; each wave goes by half-periods.
+//! u^-m, which turns omega^-p into a power of u, however slowly it falls; each wave goes by half-periods.
 
 use super::super::kernel::Unavailable;
 use super::super::moments::Moment;
@@ -15,17 +15,20 @@ use std::f64::consts::{PI, TAU};
 /// The relative accuracy aimed at.
 const RELATIVE: f64 = 1e-10;
 
-/// Integrand values after which an integral is given up, where a value is cheap.
+/// The same where the density is interpolated between integrals of its own.
+const RELATIVE_OF_TRANSFORMS: f64 = 1e-8;
+
+/// Integrand values after which an integral is given up.
 const EVALUATIONS: usize = 3_000_000;
 
-/// The same where the density of each is an integral of its own.
-const EVALUATIONS_OF_TRANSFORMS: usize = 30_000;
-
 /// Transfer functions evaluated for one form over one source.
-const MOST_TRANSFERS: usize = 400_000_000;
+const MOST_TRANSFERS: usize = 100_000_000;
 
 /// Breakpoints of one integral.
 const MOST_BREAKPOINTS: usize = 100_000;
+
+/// Waves of a density are followed so many radians far.
+const FOLLOWED: f64 = 4_000.0;
 
 /// Neighbouring breakpoints are no further apart than this ratio.
 const GRADE: f64 = 8.0;
@@ -159,7 +162,7 @@ pub(super) fn integrals(
     }
     let groups = cross.groups();
     let waves: Vec<&Group> = groups.iter().filter(|group| group.apart > 0.0).collect();
-    let Some(domain) = Domain::new(grid, cross, &waves, spectrum.head(), wanted) else {
+    let Some(domain) = Domain::new(grid, cross, &waves, (spectrum.head(), spectrum.wave()), wanted) else {
         return Ok([Moment::Unreached; 4]);
     };
     let undelayed = groups.first().filter(|group| group.apart == 0.0);
@@ -171,8 +174,14 @@ pub(super) fn integrals(
             (f64::NAN, f64::NAN)
         }
     };
+    let exponent = cross.exponent;
     let mut integrand = |x: f64| -> [f64; 8] {
-        let Place { omega, slope, beyond } = domain.place(x);
+        let Place {
+            omega,
+            slope,
+            beyond,
+            further,
+        } = domain.place(x);
         let (value, error) = density(omega);
         if value == 0.0 && error == 0.0 {
             return [0.0; 8];
@@ -184,27 +193,26 @@ pub(super) fn integrals(
         };
         let mut values = [0.0; 8];
         for (place, order) in ORDERS.iter().enumerate().filter(|(place, _)| wanted[*place]) {
-            // Far out the powers may leave the range of doubles before the density does.
-            let weight = cross * omega.powi(*order) * slope;
-            let part = value * weight;
-            values[place] = if part.is_nan() && beyond { 0.0 } else { part };
-            values[place + 4] = if part.is_nan() && beyond {
-                0.0
-            } else {
-                error * weight.abs()
-            };
+            let mut weight = cross * omega.powi(*order) * slope;
+            if further > 0.0 {
+                // The power law from there on; nothing is left where it falls faster than any.
+                weight *= (further * (f64::from(*order) + 1.0 - exponent)).exp();
+            }
+            values[place] = value * weight;
+            values[place + 4] = error * weight.abs();
         }
         values
     };
     let cost = (cross.one.size + cross.other.as_ref().map_or(0, |other| other.size)).max(1);
     let closed = spectrum.is_closed();
-    let most = if closed { EVALUATIONS } else { EVALUATIONS_OF_TRANSFORMS }.min(MOST_TRANSFERS / cost);
+    let most = EVALUATIONS.min(MOST_TRANSFERS / cost);
     if domain.breakpoints.len() * POINTS > most {
         return Ok([Moment::Unreached; 4]);
     }
+    let relative = if closed { RELATIVE } else { RELATIVE_OF_TRANSFORMS };
     let tolerances = scales.map(|scale| Tolerance {
-        absolute: RELATIVE * scale,
-        relative: RELATIVE,
+        absolute: relative * scale,
+        relative,
     });
     let unasked = Tolerance {
         absolute: f64::INFINITY,
@@ -281,7 +289,7 @@ struct Domain {
     start: i32,
     end: f64,
     /// omega/end is u^-fall beyond the end.
-    fall: i32,
+    fall: f64,
 }
 
 struct Place {
@@ -289,11 +297,22 @@ struct Place {
     /// d omega / d x.
     slope: f64,
     beyond: bool,
+    /// ln of the frequency meant over `omega`, where it lies so far out that the power law alone is left.
+    further: f64,
 }
+
+/// ln of the ratio to the end beyond which the integrand is its power law to all digits.
+const FAR: f64 = 25.0;
 
 impl Domain {
     /// `None` where it would take too many breakpoints.
-    fn new(grid: Vec<f64>, cross: &Cross<'_>, waves: &[&Group], head: f64, wanted: [bool; 4]) -> Option<Self> {
+    fn new(
+        grid: Vec<f64>,
+        cross: &Cross<'_>,
+        waves: &[&Group],
+        (head, wave): (f64, f64),
+        wanted: [bool; 4],
+    ) -> Option<Self> {
         let sides = [Some(&cross.one), cross.other.as_ref()];
         let mut points = grid;
         points.extend(
@@ -309,11 +328,18 @@ impl Domain {
         if points.is_empty() {
             points.push(end);
         }
-        let longest = waves.last().map_or(0.0, |wave| wave.apart);
+        let mut longest = waves.last().map_or(0.0, |wave| wave.apart);
         // Waves shorter than a radian have not begun to differ from what does not oscillate: the digits would cancel.
         let of_shortest = waves.first().map_or(0.0, |wave| 2.0 / wave.apart);
         if of_shortest > end && of_shortest * longest / TAU < MOST_BREAKPOINTS as f64 {
             end = of_shortest;
+            points.push(end);
+        }
+        // Waves of the density itself are followed until little is left of them; those of a long table are small from
+        // the start.
+        if wave > 0.0 && end * wave < FOLLOWED {
+            end = FOLLOWED / wave;
+            longest += wave;
             points.push(end);
         }
         let first = points.first().copied()?;
@@ -338,27 +364,31 @@ impl Domain {
     }
 
     fn place(&self, x: f64) -> Place {
-        if x < self.first && self.start > 1 {
-            let share = x / self.first;
-            return Place {
-                omega: self.first * share.powi(self.start),
-                slope: f64::from(self.start) * share.powi(self.start - 1),
-                beyond: false,
-            };
-        }
         if x <= self.end {
+            let (omega, slope) = if x < self.first && self.start > 1 {
+                let share = x / self.first;
+                let slope = f64::from(self.start) * share.powi(self.start - 1);
+                (self.first * share.powi(self.start), slope)
+            } else {
+                (x, 1.0)
+            };
             return Place {
-                omega: x,
-                slope: 1.0,
+                omega,
+                slope,
                 beyond: false,
+                further: 0.0,
             };
         }
         let u = ((2.0 * self.end - x) / self.end).max(f64::MIN_POSITIVE);
-        let grown = u.powi(self.fall).recip();
+        let grown = -self.fall * u.ln();
+        let near = grown.min(FAR);
+        let further = grown - near;
         Place {
-            omega: (self.end * grown).min(f64::MAX),
-            slope: f64::from(self.fall) * grown / u,
+            omega: self.end * near.exp(),
+            // The rest of d omega is in what is further out.
+            slope: self.fall * near.exp() / u,
             beyond: true,
+            further,
         }
     }
 }
@@ -386,25 +416,22 @@ fn graded(breakpoints: &mut Vec<f64>, from: f64, to: f64, widest: f64) -> Option
     }
 }
 
-/// The power m of omega = E u^-m that makes omega^(n - p) d omega smooth in u for all moments wanted: u^(m (p - n - 1) - 1)
-/// should have a whole power, or a high one.
-fn fall(exponent: f64, wanted: [bool; 4]) -> i32 {
-    /// A power of u that is smooth enough for the rule.
-    const HIGH: f64 = 6.0;
-    const MOST: i32 = 12;
+/// The power m of omega = E u^-m that makes omega^(n - p) d omega smooth in u for all moments wanted: it becomes
+/// u^(m (p - n - 1) - 1) times a function of u^m.
+fn fall(exponent: f64, wanted: [bool; 4]) -> f64 {
     let highest = ORDERS
         .iter()
         .zip(wanted)
         .filter(|(_, wanted)| *wanted)
         .map(|(order, _)| *order);
     let slowest = exponent - f64::from(highest.max().unwrap_or(0)) - 1.0;
-    if !slowest.is_finite() {
-        return 1;
+    if !(slowest.is_finite() && slowest > 0.0) {
+        return 1.0;
     }
-    let whole = |m: i32| {
-        let power = f64::from(m) * slowest;
+    let whole = |m: f64| {
+        let power = m * slowest;
         power >= 0.999 && (power - power.round()).abs() < 1e-9
     };
-    let enough = (HIGH / slowest).ceil().clamp(1.0, f64::from(MOST)) as i32;
-    (1..=4).find(|m| whole(*m)).unwrap_or(enough)
+    let found = [1.0, 2.0, 3.0, 4.0].into_iter().find(|m| whole(*m));
+    found.unwrap_or((3.0 * slowest).ceil() / slowest)
 }

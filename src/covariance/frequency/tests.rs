@@ -406,3 +406,54 @@ fn a_long_sum_of_modes_is_one_expansion() {
     let quadrature = ground.hidden().moments(&form);
     all_close(found, quadrature, 1e-9);
 }
+
+/// A written kernel, whose density is an integral for every frequency, against the same kernel by name.
+#[test]
+fn a_density_without_closed_form_is_interpolated() {
+    struct Slow(Kernel);
+    impl SpectralDensity for Slow {
+        fn density(&self, omega: f64) -> Result<Estimate, Unavailable> {
+            self.0.density(omega)
+        }
+        fn is_closed(&self) -> bool {
+            false
+        }
+        fn lines(&self) -> Result<Vec<Line>, Unavailable> {
+            SpectralDensity::lines(&self.0)
+        }
+        fn grid(&self) -> Result<Vec<f64>, Unavailable> {
+            SpectralDensity::grid(&self.0)
+        }
+        fn tail(&self) -> Tail {
+            SpectralDensity::tail(&self.0)
+        }
+        fn head(&self) -> f64 {
+            SpectralDensity::head(&self.0)
+        }
+        fn rational(&self) -> Option<Vec<Rational>> {
+            None
+        }
+    }
+    let kernels: [Kernel; 3] = [
+        SquaredExponential::new(2.0).unwrap().into(),
+        Matern::new(2.5, 3.0).unwrap().into(),
+        OscillatorKernel::new(4.0, 0.05).unwrap().into(),
+    ];
+    let forms = [
+        through(&x(), &oscillator(1.3, 0.01)),
+        sum(&[(1.0, &x()), (-1.0, &through(&x(), &average(3.0)))]),
+    ];
+    for kernel in kernels {
+        let slow = Slow(kernel.clone());
+        let sampled = Sampled::new(&slow).unwrap();
+        for form in &forms {
+            let found = moments_over(&sampled, SpectralDensity::tail(&kernel), form.terms());
+            let exact = moments_over(&kernel, SpectralDensity::tail(&kernel), form.terms());
+            // lambda_4 of the second lives where the density is too small to be known.
+            for (found, exact) in found.into_iter().zip(exact).take(3) {
+                let (found, exact) = (known(found), known(exact));
+                assert!((found / exact - 1.0).abs() < 1e-7, "{kernel}: {found} against {exact}");
+            }
+        }
+    }
+}
