@@ -3,9 +3,12 @@
 //! All numbers are in coherent SI units (N, m, s; angles in rad). A number that does not exist is left out; an infinite
 //! one is the string `"infinite"`.
 
+mod assumptions;
+mod coherences;
 mod evaluation;
 mod extremes;
 mod findings;
+mod limit_state;
 mod number;
 mod responses;
 

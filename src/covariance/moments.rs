@@ -173,6 +173,11 @@ impl<'s> MomentTable<'s> {
         self
     }
 
+    /// The coherences of the sources, where there are any.
+    pub fn coherences(&self) -> Option<&'s Coherences> {
+        self.coherences
+    }
+
     /// The sources.
     pub fn sources(&self) -> &'s [Source] {
         self.sources
