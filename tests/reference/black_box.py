@@ -962,6 +962,62 @@ def spectra(program, rng):
                 family.relative(value, exact, f"{value} not {exact}, order {order}, in\n{place}")
 
 
+# ----------------------------------------------------------------------------------------------------- coherence
+
+
+def coherences(program, rng):
+    """Margins of processes that go together by a constant share or by the distance of points, some of them delayed, by the
+    Gauss-Legendre rule on the whole cross-spectral matrix."""
+    families = [Family(f"coherent processes: lambda_{n}", 1e-8) for n in (0, 1, 2)]
+    for _ in range(60):
+        count = rng.randint(2, 5)
+        scale = math.exp(rng.uniform(-3, 4))
+        lines, densities = [], []
+        for index in range(count):
+            deviation, length = rng.uniform(0.5, 3), scale * rng.uniform(0.3, 3)
+            if rng.random() < 0.5:
+                kernel = f"squared_exponential(length: {number(length)} s)"
+                densities.append(lambda w, s=deviation, l=length: s * s * math.sqrt(2 / math.pi) * l * np.exp(-((w * l) ** 2) / 2))
+            else:
+                kernel = f"matern(smoothness: 7/2, length: {number(length)} s)"
+                # 2 sigma^2 Gamma(4)/(sqrt(pi) Gamma(7/2)) a^7 / (a^2 + w^2)^4, a = sqrt(7)/length.
+                constant = 2 * math.gamma(4) / (math.sqrt(math.pi) * math.gamma(3.5))
+                densities.append(lambda w, s=deviation, a=math.sqrt(7) / length: s * s * constant * a**7 / (a * a + w * w) ** 4)
+            lines.append(f"process x{index} = gaussian(standard_deviation: {number(deviation)}, correlation: {kernel})")
+        names = [f"x{index}" for index in range(count)]
+        if rng.random() < 0.5:
+            loadings = np.array([rng.uniform(-1, 1) for _ in names])
+            for i in range(count):
+                for j in range(i + 1, count):
+                    lines.append(f"correlate x{i}, x{j} with {number(loadings[i] * loadings[j])}")
+            matrix = lambda w: (np.outer(loadings, loadings) + np.diag(1 - loadings**2))[:, :, None] * np.ones_like(w)
+        else:
+            points = np.array([[rng.uniform(0, 80), rng.uniform(0, 60)] for _ in names])
+            decays, speed = np.array([rng.uniform(1, 12), rng.uniform(1, 12)]), 200 / scale
+            at = ", ".join(f"(x: {number(x)} m, z: {number(z)} m)" for x, z in points)
+            lines.append(
+                f"correlate {', '.join(names)} with exponential_coherence(mean_speed: {number(speed)} m/s,"
+                f" decay: (x: {number(decays[0])}, z: {number(decays[1])}), at: points({at}))"
+            )
+            apart = np.sqrt((((points[:, None] - points[None, :]) * decays) ** 2).sum(axis=2)) / (2 * math.pi * speed)
+            matrix = lambda w, apart=apart: np.exp(-apart[:, :, None] * w)
+        weights = np.array([rng.uniform(-2, 2) for _ in names])
+        late = rng.random() < 0.5
+        delays = np.array([rng.uniform(0, 2) * scale if late else 0.0 for _ in names])
+        terms = [f"{number(a)} * delay({x}, by: {number(d)} s)" for a, x, d in zip(weights, names, delays)]
+        lines.append(f"margin m = {' + '.join(terms)}")
+
+        def power(w):
+            waves = np.array([a * np.sqrt(g(w)) * np.exp(-1j * w * d) for a, g, d in zip(weights, densities, delays)])
+            return np.einsum("iw,ijw,jw->w", waves.conj(), matrix(w), waves).real
+
+        edges = np.concatenate([np.linspace(0, 40, 400), np.geomspace(40, 4e4, 400)[1:]]) / scale
+        exact = integral(lambda w: np.array([power(w), w * power(w), w * w * power(w)]), edges)
+        reported = moments_of(program.named("\n".join(lines))["m"])
+        for family, value, reference in zip(families, reported, exact):
+            family.relative(value, mp.mpf(reference), f"{value} not {reference} in\n" + "\n".join(lines))
+
+
 def closed(text):
     """Whether a spectrum is one-sided by definition."""
     return text.startswith(("jonswap", "pierson", "(1 m)"))
@@ -972,7 +1028,7 @@ def main():
     seed = int(sys.argv[2]) if len(sys.argv) > 2 else 20
     with tempfile.TemporaryDirectory() as folder:
         program = Program(binary, folder)
-        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables, systems, spectra):
+        for checks in (kernels, forms, differences, passages, extremes, written_kernels, tables, systems, spectra, coherences):
             checks(program, random.Random(f"{seed} {checks.__name__}"))
     if not all([family.report() for family in Family.all]):
         sys.exit(1)
