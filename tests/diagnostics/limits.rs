@@ -210,7 +210,7 @@ fn spectra() {
         refused(&model(&text), "model/too-large"),
         "this spectrum is made of more than 256 parts"
     );
-    let body = vec!["f / 1 Hz"; 30_000].join(" + ");
+    let body = vec!["f / 1 Hz"; 50_000].join(" + ");
     let text = format!("spectrum s(f) = 1 s / (1 + ({body})^2)\nprocess x = gaussian(spectrum: s())\n");
     assert_eq!(
         refused(&model(&text), "model/too-large"),

@@ -42,10 +42,7 @@ impl Lowering<'_, '_, '_> {
         let mean = self.mean(arguments, subject);
         let scattered = ["standard_deviation", "coefficient_of_variation"];
         let given = scattered.iter().find_map(|name| arguments.get(name));
-        let deviation = match given {
-            Some(_) => Some(self.scatter(arguments, mean.as_ref(), subject)),
-            None => None,
-        };
+        let deviation = given.map(|_| self.scatter(arguments, mean.as_ref(), subject));
         let density = self.density_of(expression, subject);
         let (mean, density) = (mean?, density?);
         let deviation = match (deviation, given) {

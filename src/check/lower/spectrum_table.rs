@@ -196,8 +196,8 @@ fn table_note(table: &Tabulated, process: &str) -> String {
             format!("is held constant below {from} and above {to}, so that its variance is infinite")
         }
         Beyond::Hold => format!(
-            "is held constant below {from}, which makes {} of its variance, and is 0 above {to}",
-            format!("{} %", show_number(100.0 * below / (table.area() + below), 2))
+            "is held constant below {from}, which makes {} % of its variance, and is 0 above {to}",
+            show_number(100.0 * below / (table.area() + below), 2)
         ),
         Beyond::Refuse => format!("ends at 0, at {from} and at {to}, so that nothing depends on what lies beyond"),
     };

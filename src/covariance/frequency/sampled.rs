@@ -14,6 +14,13 @@ const MOST_VALUES: usize = 2_000;
 /// The accuracy aimed at, as a share of the largest density.
 const SHARE: f64 = 1e-10;
 
+/// Pieces beyond the grid, each so many times as long as what is before it.
+const TAIL_PIECES: usize = 12;
+const STRETCH: f64 = 1.6;
+
+/// A density is known as long as it is not wrong by more than that share.
+const KNOWN: f64 = 1e-4;
+
 /// A spectrum with its density interpolated in pieces.
 pub(super) struct Sampled<'s> {
     spectrum: &'s dyn SpectralDensity,
@@ -66,9 +73,26 @@ impl<'s> Sampled<'s> {
             }
             found.pieces.push(piece);
         }
+        found.follow_the_tail()?;
         found.grid = found.pieces.iter().map(|piece| piece.from).collect();
         found.grid.extend(found.pieces.last().map(|piece| piece.to));
         Ok(found)
+    }
+
+    /// Pieces beyond the grid, as long as the density is known there: the further out, the better the power law that
+    /// follows.
+    fn follow_the_tail(&mut self) -> Result<(), Unavailable> {
+        for _ in 0..TAIL_PIECES {
+            let Some(last) = self.pieces.last() else { break };
+            let piece = Piece::new(self.spectrum, last.to, STRETCH * last.to)?;
+            let end = piece.values.last().copied().unwrap_or(0.0);
+            let known = piece.noise + piece.miss <= KNOWN * end;
+            if !known {
+                break;
+            }
+            self.pieces.push(piece);
+        }
+        Ok(())
     }
 
     /// The density and its error, continued by the power law beyond the last piece.

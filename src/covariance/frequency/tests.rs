@@ -150,7 +150,7 @@ fn white_noise_through_an_oscillator() {
         for frequency in [1e-3, 1.0, 400.0] {
             let response = through(&x(), &oscillator(frequency, damping));
             let variance = PI * frequency / (2.0 * damping);
-            let damped = ((1.0 - damping) * (1.0 + damping) as f64).sqrt();
+            let damped = ((1.0_f64 - damping) * (1.0 + damping)).sqrt();
             let first = FRAC_2_PI * damped.atan2(damping) / damped;
             let exact = [
                 variance,

@@ -6,8 +6,9 @@ use crate::expression::{Series, SeriesTerm, Tape};
 /// The order of a series from which on its function is flatter than any power.
 const FLAT: f64 = 1e5;
 
-/// How far a series may differ from the expression where it takes its place, relatively.
-pub(super) const AGREEMENT: f64 = 1e-12;
+/// How far a series may differ from the expression where it takes its place, relatively: more where the expression is so
+/// long that its rounding is.
+const AGREEMENT: f64 = 1e-12;
 
 /// One end, over h: omega itself at frequency 0, 1/omega at infinity.
 #[derive(Clone, Debug)]
@@ -18,6 +19,8 @@ pub(super) struct End {
     order: f64,
     /// The h up to which the end reaches; 0 until it has been found.
     pub reach: f64,
+    /// How far the series may differ from the expression at the reach, relatively.
+    pub agreement: f64,
 }
 
 impl End {
@@ -33,6 +36,7 @@ impl End {
                 terms: series.terms().to_vec(),
                 order: series.order(),
                 reach: 0.0,
+                agreement: AGREEMENT.max(f64::EPSILON * tape.size() as f64),
             }),
         }
     }
@@ -80,7 +84,7 @@ impl End {
 
     /// Whether the series says what the expression says.
     pub fn agrees(&self, h: f64, density: f64) -> bool {
-        (self.value(h) - density).abs() <= AGREEMENT * density.abs()
+        (self.value(h) - density).abs() <= self.agreement * density.abs()
     }
 
     /// The integral of h^power times the density over h from 0 to where the end reaches: each term in closed form. The

@@ -7,7 +7,7 @@ use crate::covariance::kernel::{Estimate, Unavailable};
 use crate::covariance::spectral::Tail;
 use crate::expression::Tape;
 use crate::numerics::quadrature::{self, Tolerance};
-use ends::{AGREEMENT, End};
+use ends::End;
 use std::fmt;
 use std::sync::Arc;
 
@@ -152,7 +152,7 @@ impl User {
         let ends = self.head.integral(power) + self.tail.integral(-power - 2.0);
         let ends = Estimate {
             value: ends,
-            error: AGREEMENT * ends.abs(),
+            error: self.head.agreement * ends.abs(),
         };
         let integrand = |omega: f64| omega.powi(order as i32) * self.tape.evaluate(&omega, &self.arguments);
         let tolerance = Tolerance {
