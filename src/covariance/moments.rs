@@ -156,6 +156,7 @@ pub struct MomentTable<'s> {
 impl<'s> MomentTable<'s> {
     /// Nothing found out yet.
     pub fn new(sources: &'s [Source]) -> Self {
+        kernel::transform::begin();
         Self {
             sources,
             coherences: None,

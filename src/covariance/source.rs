@@ -1,9 +1,12 @@
 //! Sources: what is random in a model.
 
-use super::kernel::{Kernel, Smoothness};
+use super::frequency::sampled::Sampled;
+use super::kernel::{Kernel, Smoothness, Unavailable};
 use super::spectral::{SpectralDensity, Tail};
 use super::spectrum::Spectrum;
 use crate::source::Span;
+use std::cell::OnceCell;
+use std::rc::Rc;
 
 /// What a source is described by: all that there is to know of it.
 #[derive(Clone, Debug, PartialEq)]
@@ -38,6 +41,8 @@ pub struct Source {
     /// What was taken for granted to get the description, for the reader of results.
     pub notes: Vec<String>,
     smoothness: Smoothness,
+    /// Its density where each value is an integral, looked at once.
+    sampled: OnceCell<Result<Rc<Sampled>, Unavailable>>,
     tail: Tail,
 }
 
@@ -59,6 +64,7 @@ impl Source {
             place,
             notes,
             smoothness,
+            sampled: OnceCell::new(),
             tail,
         }
     }
@@ -74,6 +80,13 @@ impl Source {
             Law::Kernel(kernel) => Some(kernel),
             Law::Spectrum(_) => None,
         }
+    }
+
+    /// Its density in pieces, where each value is an integral of its own.
+    pub(super) fn sampled(&self) -> Result<Rc<Sampled>, Unavailable> {
+        self.sampled
+            .get_or_init(|| Ok(Rc::new(Sampled::new(self.spectral())?)))
+            .clone()
     }
 
     /// Its spectrum, for integrals over frequency.

@@ -16,6 +16,19 @@ fn same(results: &Results, relative: f64) {
     }
 }
 
+/// A power whose multiples of the corner frequency leave the range of doubles within a few terms.
+#[test]
+fn a_steep_tail_beyond_a_high_corner() {
+    same(
+        &results(
+            "spectrum over_f(f, corner: Hz) = 1 m^2/Hz / (1 + (f / corner)^7.7052032940859885)
+             process one = gaussian(spectrum: over_f(corner: 48.4 Hz))
+             process two = gaussian(spectrum: over_f(corner: 304.10616886749195 rad/s))",
+        ),
+        1e-11,
+    );
+}
+
 proptest! {
     #![proptest_config(ProptestConfig::with_cases(24))]
 

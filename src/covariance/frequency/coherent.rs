@@ -12,8 +12,10 @@ use super::super::source::Source;
 use super::super::spectral::{Rational, SpectralDensity, Tail};
 use super::quadrature::{self, Cross, ORDERS};
 use super::response::{Response, by_delay};
+use super::sampled::Sampled;
 use super::{Side, fall, moments_over, side};
 use crate::covariance::form::LinearForm;
+use std::rc::Rc;
 
 /// Pairs of sources of one form whose waves are integrated one by one.
 const MOST_PAIRS: usize = 2_000;
@@ -25,29 +27,58 @@ pub(in crate::covariance) struct Member<'t> {
     pub(in crate::covariance) terms: &'t [Term],
 }
 
+/// The spectrum of a member, looked at once where each value is an integral.
+enum Known<'t> {
+    Closed(&'t dyn SpectralDensity),
+    Sampled(Rc<Sampled>),
+}
+
+impl<'t> Known<'t> {
+    fn new(member: &Member<'t>) -> Result<Self, Unavailable> {
+        let spectrum = member.source.spectral();
+        if spectrum.is_closed() {
+            return Ok(Self::Closed(spectrum));
+        }
+        Ok(Self::Sampled(member.source.sampled()?))
+    }
+
+    fn spectral(&self) -> &dyn SpectralDensity {
+        match self {
+            Self::Closed(spectrum) => *spectrum,
+            Self::Sampled(sampled) => &**sampled,
+        }
+    }
+}
+
 /// lambda_0, lambda_1, lambda_2 and lambda_4 of a form over a group of sources. `own` are those of each source by itself.
 pub(in crate::covariance) fn moments(
     members: &[Member<'_>],
     coherences: &Coherences,
     own: impl Fn(&Member<'_>) -> [Moment; 4],
 ) -> [Moment; 4] {
+    let known: Result<Vec<Known<'_>>, Unavailable> = members.iter().map(Known::new).collect();
+    let known = match known {
+        Ok(known) => known,
+        Err(why) => return [super::unavailable(&why); 4],
+    };
     let all: Vec<Term> = members.iter().flat_map(|member| member.terms.iter().cloned()).collect();
     if by_delay(&all).len() == 1 {
-        return together(members, coherences);
+        return together(members, &known, coherences);
     }
     let own: Vec<[Moment; 4]> = members.iter().map(own).collect();
     let mut sum = own.iter().fold([ZERO; 4], plus);
     if members.len() * members.len() > 2 * MOST_PAIRS {
         return [Moment::Unreached; 4];
     }
-    for (index, one) in members.iter().enumerate() {
-        for (other, its_own) in members[index + 1..].iter().zip(&own[index + 1..]) {
-            if let Some(coherence) = coherences.between(one.id, other.id) {
+    let all: Vec<((&Member<'_>, &Known<'_>), &[Moment; 4])> = members.iter().zip(&known).zip(&own).collect();
+    for (index, (one, own)) in all.iter().enumerate() {
+        for (other, its_own) in &all[index + 1..] {
+            if let Some(coherence) = coherences.between(one.0.id, other.0.id) {
                 let scales = std::array::from_fn(|place| {
                     let size = |moment: &Moment| moment.value().filter(|size| size.is_finite()).unwrap_or(0.0);
-                    (size(&own[index][place]) * size(&its_own[place])).sqrt()
+                    (size(&own[place]) * size(&its_own[place])).sqrt()
                 });
-                let pair = cross(one, other, coherence, 0.0, scales);
+                let pair = cross(*one, *other, coherence, 0.0, scales);
                 sum = plus(sum, &pair.map(|moment| moment.times(2.0)));
             }
         }
@@ -63,7 +94,10 @@ pub(in crate::covariance) fn covariance(
     lag: f64,
     scale: f64,
 ) -> Moment {
-    cross(one, other, coherence, lag, [scale, 0.0, 0.0, 0.0])[0]
+    match (Known::new(one), Known::new(other)) {
+        (Ok(a), Ok(b)) => cross((one, &a), (other, &b), coherence, lag, [scale, 0.0, 0.0, 0.0])[0],
+        (Err(why), _) | (_, Err(why)) => super::unavailable(&why),
+    }
 }
 
 const ZERO: Moment = Moment::Finite { value: 0.0, error: 0.0 };
@@ -73,10 +107,16 @@ fn plus(sum: [Moment; 4], part: &[Moment; 4]) -> [Moment; 4] {
 }
 
 /// The moments of the cross density of two members; those that do not exist are infinite.
-fn cross(one: &Member<'_>, other: &Member<'_>, coherence: Coherence, lag: f64, scales: [f64; 4]) -> [Moment; 4] {
+fn cross(
+    (one, its): (&Member<'_>, &Known<'_>),
+    (other, others): (&Member<'_>, &Known<'_>),
+    coherence: Coherence,
+    lag: f64,
+    scales: [f64; 4],
+) -> [Moment; 4] {
     let density = CrossDensity {
-        one: one.source.spectral(),
-        other: other.source.spectral(),
+        one: its.spectral(),
+        other: others.spectral(),
         coherence,
     };
     let tails = [one, other].map(|member| member.source.tail().steeper(2.0 * fall(member.terms)));
@@ -157,7 +197,7 @@ impl SpectralDensity for CrossDensity<'_> {
     }
 }
 
-fn together(members: &[Member<'_>], coherences: &Coherences) -> [Moment; 4] {
+fn together(members: &[Member<'_>], known: &[Known<'_>], coherences: &Coherences) -> [Moment; 4] {
     let tail = members
         .iter()
         .map(|member| member.source.tail().steeper(2.0 * fall(member.terms)))
@@ -165,13 +205,8 @@ fn together(members: &[Member<'_>], coherences: &Coherences) -> [Moment; 4] {
     let density = Together {
         members: members
             .iter()
-            .map(|member| {
-                (
-                    member.source.spectral(),
-                    Response::new(member.terms),
-                    side(member.terms),
-                )
-            })
+            .zip(known)
+            .map(|(member, known)| (known.spectral(), Response::new(member.terms), side(member.terms)))
             .collect(),
         pairs: pairs(members, coherences),
         tail,

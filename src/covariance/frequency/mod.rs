@@ -10,7 +10,7 @@ pub(super) mod coherent;
 mod quadrature;
 mod rational;
 mod response;
-mod sampled;
+pub(super) mod sampled;
 
 use super::form::Term;
 use super::kernel::{Beyond, Unavailable};
@@ -21,7 +21,6 @@ use super::spectral::{SpectralDensity, Tail};
 use quadrature::{Cross, ORDERS, Side};
 use rational::Closed;
 use response::{Response, Smooth, by_delay};
-use sampled::Sampled;
 
 /// The relative error above which a closed form is left for the quadrature.
 const CLOSE: f64 = 1e-9;
@@ -78,8 +77,8 @@ pub(super) fn moments(source: &Source, terms: &[Term]) -> [Moment; 4] {
         if spectrum.is_closed() {
             return moments_over(spectrum, source.tail(), terms);
         }
-        match Sampled::new(spectrum) {
-            Ok(sampled) => moments_over(&sampled, source.tail(), terms),
+        match source.sampled() {
+            Ok(sampled) => moments_over(&*sampled, source.tail(), terms),
             Err(why) => [unavailable(&why); 4],
         }
     };
@@ -167,8 +166,8 @@ pub(super) fn covariance(source: &Source, one: &[Term], other: &[Term], lag: f64
     let found = if spectrum.is_closed() {
         covariance_over(spectrum, source.tail(), (one, other), lag)
     } else {
-        match Sampled::new(spectrum) {
-            Ok(sampled) => covariance_over(&sampled, source.tail(), (one, other), lag),
+        match source.sampled() {
+            Ok(sampled) => covariance_over(&*sampled, source.tail(), (one, other), lag),
             Err(why) => unavailable(&why),
         }
     };

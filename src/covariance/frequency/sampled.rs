@@ -22,12 +22,16 @@ const STRETCH: f64 = 1.6;
 const KNOWN: f64 = 1e-4;
 
 /// A spectrum with its density interpolated in pieces.
-pub(super) struct Sampled<'s> {
-    spectrum: &'s dyn SpectralDensity,
+#[derive(Clone, Debug)]
+pub(in crate::covariance) struct Sampled {
+    lines: Vec<Line>,
+    tail: Tail,
+    head: f64,
     pieces: Vec<Piece>,
     grid: Vec<f64>,
 }
 
+#[derive(Clone, Debug)]
 struct Piece {
     from: f64,
     to: f64,
@@ -39,10 +43,12 @@ struct Piece {
     miss: f64,
 }
 
-impl<'s> Sampled<'s> {
-    pub(super) fn new(spectrum: &'s dyn SpectralDensity) -> Result<Self, Unavailable> {
+impl Sampled {
+    pub(in crate::covariance) fn new(spectrum: &dyn SpectralDensity) -> Result<Self, Unavailable> {
         let mut found = Self {
-            spectrum,
+            lines: spectrum.lines()?,
+            tail: spectrum.tail(),
+            head: spectrum.head(),
             pieces: Vec::new(),
             grid: spectrum.grid()?,
         };
@@ -73,7 +79,7 @@ impl<'s> Sampled<'s> {
             }
             found.pieces.push(piece);
         }
-        found.follow_the_tail()?;
+        found.follow_the_tail(spectrum)?;
         found.grid = found.pieces.iter().map(|piece| piece.from).collect();
         found.grid.extend(found.pieces.last().map(|piece| piece.to));
         Ok(found)
@@ -81,10 +87,10 @@ impl<'s> Sampled<'s> {
 
     /// Pieces beyond the grid, as long as the density is known there: the further out, the better the power law that
     /// follows.
-    fn follow_the_tail(&mut self) -> Result<(), Unavailable> {
+    fn follow_the_tail(&mut self, spectrum: &dyn SpectralDensity) -> Result<(), Unavailable> {
         for _ in 0..TAIL_PIECES {
             let Some(last) = self.pieces.last() else { break };
-            let piece = Piece::new(self.spectrum, last.to, STRETCH * last.to)?;
+            let piece = Piece::new(spectrum, last.to, STRETCH * last.to)?;
             let end = piece.values.last().copied().unwrap_or(0.0);
             let known = piece.noise + piece.miss <= KNOWN * end;
             if !known {
@@ -102,7 +108,7 @@ impl<'s> Sampled<'s> {
             (Some(piece), _) => (piece.at(omega), piece.miss + piece.noise),
             (None, Some(last)) => {
                 let end = last.values.last().copied().unwrap_or(0.0).max(0.0);
-                let fallen = (omega / last.to).powf(-self.spectrum.tail().exponent());
+                let fallen = (omega / last.to).powf(-self.tail.exponent());
                 (end * fallen, (last.miss + last.noise) * fallen)
             }
             (None, None) => (0.0, 0.0),
@@ -169,7 +175,7 @@ fn miss(values: &[f64; NODES]) -> f64 {
     (NODES - 3..NODES).map(coefficient).fold(0.0, f64::max)
 }
 
-impl SpectralDensity for Sampled<'_> {
+impl SpectralDensity for Sampled {
     fn density(&self, omega: f64) -> Result<Estimate, Unavailable> {
         let (value, error) = self.at(omega);
         Ok(Estimate { value, error })
@@ -180,7 +186,7 @@ impl SpectralDensity for Sampled<'_> {
     }
 
     fn lines(&self) -> Result<Vec<Line>, Unavailable> {
-        self.spectrum.lines()
+        Ok(self.lines.clone())
     }
 
     fn grid(&self) -> Result<Vec<f64>, Unavailable> {
@@ -188,11 +194,11 @@ impl SpectralDensity for Sampled<'_> {
     }
 
     fn tail(&self) -> Tail {
-        self.spectrum.tail()
+        self.tail
     }
 
     fn head(&self) -> f64 {
-        self.spectrum.head()
+        self.head
     }
 
     fn rational(&self) -> Option<Vec<Rational>> {

@@ -1,3 +1,4 @@
+use super::sampled::Sampled;
 use super::*;
 use crate::covariance::form::{LinearForm, SourceId};
 use crate::covariance::kernel::{

@@ -23,7 +23,7 @@ mod smoothness;
 mod spectrum;
 mod spline;
 mod tabulated;
-mod transform;
+pub(super) mod transform;
 mod user;
 
 #[cfg(test)]

@@ -17,6 +17,8 @@ pub(super) struct End {
     terms: Vec<SeriesTerm>,
     /// The power of h it is known to fall with at least, where no term says so.
     order: f64,
+    /// The series is in powers of h times this.
+    scale: f64,
     /// The h up to which the end reaches; 0 until it has been found.
     pub reach: f64,
     /// How far the series may differ from the expression at the reach, relatively.
@@ -25,16 +27,18 @@ pub(super) struct End {
 
 impl End {
     /// From the expression and its arguments; else why there is no series. `at_infinity` says which end.
-    pub fn new(tape: &Tape, arguments: &[f64], at_infinity: bool) -> Result<Self, String> {
+    /// The series is in powers of h over a unit: of `unit` at frequency 0, of its reciprocal at infinity.
+    pub fn new(tape: &Tape, arguments: &[f64], at_infinity: bool, unit: f64) -> Result<Self, String> {
         let arguments: Vec<Series> = arguments.iter().map(|value| Series::constant(*value)).collect();
         let power = if at_infinity { -1.0 } else { 1.0 };
-        let omega = Series::from_terms(vec![SeriesTerm::new(1.0, power, 0)], f64::INFINITY);
+        let omega = Series::from_terms(vec![SeriesTerm::new(unit, power, 0)], f64::INFINITY);
         let series = tape.evaluate(&omega, &arguments);
         match series.reason() {
             Some(reason) => Err(reason.to_string()),
             None => Ok(Self {
                 terms: series.terms().to_vec(),
                 order: series.order(),
+                scale: if at_infinity { unit } else { unit.recip() },
                 reach: 0.0,
                 agreement: AGREEMENT.max(f64::EPSILON * tape.size() as f64),
             }),
@@ -69,12 +73,13 @@ impl End {
                 _ => 0.0,
             };
         }
-        let ln = h.ln();
+        let x = h * self.scale;
+        let ln = x.ln();
         let value = |term: &SeriesTerm| {
             let power = if term.exponent.fract() == 0.0 {
-                h.powi(term.exponent as i32)
+                x.powi(term.exponent as i32)
             } else {
-                h.powf(term.exponent)
+                x.powf(term.exponent)
             };
             term.coefficient * power * ln.powi(term.logs as i32)
         };
@@ -90,10 +95,11 @@ impl End {
     /// The integral of h^power times the density over h from 0 to where the end reaches: each term in closed form. The
     /// whole exponents must be above -1.
     pub fn integral(&self, power: f64) -> f64 {
-        let ln = self.reach.ln();
+        let reach = self.reach * self.scale;
+        let ln = reach.ln();
         let term = |term: &SeriesTerm| {
             let s = term.exponent + power + 1.0;
-            let whole = self.reach.powf(s);
+            let whole = reach.powf(s);
             // By parts: the integral of h^(s-1) (ln h)^k is I_k = h^s (ln h)^k / s - k/s I_(k-1).
             let first = whole / s;
             let sum = (1..=term.logs).fold(first, |before, k| {
@@ -101,6 +107,6 @@ impl End {
             });
             term.coefficient * sum
         };
-        self.terms.iter().rev().map(term).sum()
+        self.terms.iter().rev().map(term).sum::<f64>() * self.scale.powf(-(power + 1.0))
     }
 }

@@ -24,6 +24,9 @@ pub struct User {
     breakpoints: Vec<f64>,
 }
 
+/// Units of frequency that a series is tried in.
+const MOST_UNITS: usize = 12;
+
 /// Why an expression is no spectrum.
 #[derive(Clone, Debug, PartialEq)]
 pub enum InvalidSpectrum {
@@ -95,8 +98,40 @@ impl User {
         arguments: Vec<(String, f64)>,
     ) -> Result<Self, InvalidSpectrum> {
         let (names, arguments): (Vec<String>, Vec<f64>) = arguments.into_iter().unzip();
+        let numbers = arguments.iter().copied().chain(tape.numbers());
+        let mut hints: Vec<f64> = numbers.map(f64::abs).filter(|number| number.is_normal()).collect();
+        hints.sort_by(f64::total_cmp);
+        hints.dedup();
+        // Powers of a corner frequency soon leave the range of doubles, unless frequencies are counted in corners.
+        let units = [1.0].into_iter().chain(hints.iter().copied()).take(MOST_UNITS);
+        let mut first = None;
+        for unit in units {
+            match Self::ends(&tape, &arguments, &hints, unit) {
+                Ok((head, tail, breakpoints)) => {
+                    return Ok(Self {
+                        name: name.into(),
+                        tape,
+                        names,
+                        arguments,
+                        head,
+                        tail,
+                        breakpoints,
+                    });
+                }
+                Err(unclear @ InvalidSpectrum::Unclear { .. }) => {
+                    first.get_or_insert(unclear);
+                }
+                Err(other) => return Err(other),
+            }
+        }
+        Err(first.unwrap_or(InvalidSpectrum::Zero))
+    }
+
+    /// The series at both ends, in powers of frequency over a unit of frequency, and the breakpoints between them.
+    fn ends(tape: &Tape, arguments: &[f64], hints: &[f64], unit: f64) -> Result<(End, End, Vec<f64>), InvalidSpectrum> {
         let end = |at_infinity: bool| {
-            End::new(&tape, &arguments, at_infinity).map_err(|reason| InvalidSpectrum::Unclear { at_infinity, reason })
+            End::new(tape, arguments, at_infinity, unit)
+                .map_err(|reason| InvalidSpectrum::Unclear { at_infinity, reason })
         };
         let (mut head, mut tail) = (end(false)?, end(true)?);
         if head.exponent() <= -1.0 {
@@ -110,21 +145,9 @@ impl User {
                 return Err(InvalidSpectrum::Unclear { at_infinity, reason });
             }
         }
-        let numbers = arguments.iter().copied().chain(tape.numbers());
-        let mut hints: Vec<f64> = numbers.map(f64::abs).filter(|number| number.is_normal()).collect();
-        hints.sort_by(f64::total_cmp);
-        hints.dedup();
-        let evaluate = |omega: f64| tape.evaluate(&omega, &arguments);
-        let breakpoints = search::breakpoints(evaluate, &mut head, &mut tail, &hints)?;
-        Ok(Self {
-            name: name.into(),
-            tape,
-            names,
-            arguments,
-            head,
-            tail,
-            breakpoints,
-        })
+        let evaluate = |omega: f64| tape.evaluate(&omega, arguments);
+        let breakpoints = search::breakpoints(evaluate, &mut head, &mut tail, hints)?;
+        Ok((head, tail, breakpoints))
     }
 
     /// The density: the expression between the ends, the series beyond, where the expression may leave the range of a
