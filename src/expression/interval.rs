@@ -8,7 +8,7 @@ use super::Number;
 ///
 /// Every operation returns an interval that holds all results over the numbers in its operands (R. E. Moore 1966,
 /// Interval Analysis): sums, differences, products, quotients and roots are rounded outward by one unit in the last
-/// place, which is what correct rounding leaves open, other functions by [`SLACK`] units. What may have no value, such as
+/// place, which is what correct rounding leaves open, other functions by a few units. What may have no value, such as
 /// a quotient by an interval that holds zero, is [`Interval::WHOLE`].
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Interval {
