@@ -88,7 +88,9 @@ class Program:
         return {one["name"]: one for one in found["processes"] + found["margins"]}
 
     def codes(self, text):
-        return sorted({one["code"] for one in json.loads(self.run(text, "check").stdout)["diagnostics"]})
+        """The codes of the errors; what is only looked at twice does not count."""
+        found = json.loads(self.run(text, "check").stdout)["diagnostics"]
+        return sorted({one["code"] for one in found if one["severity"] == "error"})
 
 
 def number(value):
