@@ -19,9 +19,9 @@ const NOTHING: f64 = 1e-9;
 /// Relative accuracy aimed at.
 const RELATIVE: f64 = 1e-11;
 
-/// Kernel values that densities without closed form may cost one model, about a second: a model of a thousand responses of
+/// Kernel values that densities without closed form may cost one model, some ten seconds: a model of a thousand responses of
 /// such a process ends all the same.
-const MOST_VALUES: u64 = 8_000_000;
+const MOST_VALUES: u64 = 100_000_000;
 
 thread_local! {
     /// Kernel values spent since [`begin`].
